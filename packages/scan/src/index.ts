@@ -1,0 +1,3 @@
+export * from './drive.js';
+export * from './potential.js';
+export * from './profile-document.js';
