@@ -1,0 +1,52 @@
+/** Words of the command line turned into values; each refuses what it cannot mean with a sentence that shows the right form. */
+import { InvalidArgumentError } from 'commander';
+
+/** Four 0-based atom indices, `A,B,C,D`. */
+export function atomQuadruple(text: string): [number, number, number, number] {
+  const atoms = indices(text, ',');
+  if (atoms?.length !== 4 || new Set(atoms).size !== 4) throw new InvalidArgumentError('four different atom indices are meant, such as 0,1,2,3.');
+  return [atoms[0], atoms[1], atoms[2], atoms[3]];
+}
+
+/** Two 0-based atom indices, `B-C`. */
+export function axisPair(text: string): [number, number] {
+  const atoms = indices(text, '-');
+  if (atoms?.length !== 2 || atoms[0] === atoms[1]) throw new InvalidArgumentError('the two atoms of a bond are meant, such as 1-2.');
+  return [atoms[0], atoms[1]];
+}
+
+function indices(text: string, separator: string): number[] | undefined {
+  const words = text.split(separator).map((word) => word.trim());
+  return words.every((word) => /^\d{1,6}$/.test(word)) ? words.map(Number) : undefined;
+}
+
+export function positiveInteger(text: string): number {
+  const value = Number(text);
+  if (!/^\d+$/.test(text.trim()) || value < 1 || !Number.isSafeInteger(value)) throw new InvalidArgumentError('a whole number from 1 up is meant.');
+  return value;
+}
+
+export function nonNegativeInteger(text: string): number {
+  const value = Number(text);
+  if (!/^\d+$/.test(text.trim()) || !Number.isSafeInteger(value)) throw new InvalidArgumentError('a whole number from 0 up is meant.');
+  return value;
+}
+
+export function finiteNumber(text: string): number {
+  const value = Number(text);
+  if (text.trim() === '' || !Number.isFinite(value)) throw new InvalidArgumentError('a number is meant.');
+  return value;
+}
+
+export function positiveNumber(text: string): number {
+  const value = finiteNumber(text);
+  if (value <= 0) throw new InvalidArgumentError('a number above 0 is meant.');
+  return value;
+}
+
+/** `constant:C` or `distance:C`, C the dielectric constant; the constant may be left out (1). */
+export function dielectric(text: string): { model: 'constant' | 'distance'; constant: number } {
+  const [model, constant = '1'] = text.split(':');
+  if (model !== 'constant' && model !== 'distance') throw new InvalidArgumentError('constant:1 (the default), constant:4, distance:1 and the like are meant.');
+  return { model, constant: positiveNumber(constant) };
+}

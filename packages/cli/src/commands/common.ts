@@ -1,0 +1,35 @@
+import { Command, Option } from 'commander';
+import { dielectric, nonNegativeInteger } from '../arguments.js';
+
+/** Tells the entry which exit code the work ended with. */
+export type Finish = (exitCode: number) => void;
+
+/** Options that choose the potential, shared by every command that computes an energy. */
+export interface PotentialFlags {
+  forceField: 'mmff94' | 'mmff94s';
+  dielectric?: { model: 'constant' | 'distance'; constant: number };
+}
+
+export interface CommonFlags extends PotentialFlags {
+  seed: number;
+  unit: 'kcal/mol' | 'kJ/mol';
+  json?: boolean;
+}
+
+export function addPotentialOptions(command: Command): Command {
+  return command
+    .addOption(new Option('--force-field <name>', 'force field').choices(['mmff94s', 'mmff94']).default('mmff94s'))
+    .addOption(new Option('--dielectric <model:constant>', 'constant:C or distance:C').argParser(dielectric).default({ model: 'constant', constant: 1 }, 'constant:1'));
+}
+
+export function addCommonOptions(command: Command): Command {
+  return addPotentialOptions(command)
+    .addOption(new Option('--seed <n>', 'seed of everything random').argParser(nonNegativeInteger).default(1))
+    .addOption(new Option('--unit <unit>', 'unit of energies').choices(['kcal/mol', 'kJ/mol']).default('kcal/mol'))
+    .option('--json', 'print the result as JSON on standard output, all else on standard error');
+}
+
+/** The tail of a help page: one line to try. */
+export function example(line: string, remark = ''): string {
+  return `\nExample:\n  ${line}${remark === '' ? '' : `\n\n${remark}`}`;
+}

@@ -1,0 +1,23 @@
+/** What went wrong, in the user's terms, and what the process says of it when it ends. */
+import { TordialError } from '@tordial/geometry/errors';
+
+/** Codes that tell of a wrong request rather than of a record that cannot be done. */
+const USAGE = /^(usage|file|output|torsion)\/|^scan\/(ring|linear|step|torsion)/;
+
+/** 2 for a wrong request, 1 for a record that could not be done. */
+export function exitCodeOf(error: unknown): 1 | 2 {
+  return error instanceof TordialError && USAGE.test(error.code) ? 2 : 1;
+}
+
+/** One line for people: where, what, and the code to look up. A bug shows its stack, for it is ours to mend. */
+export function describeFailure(error: unknown): string {
+  if (!(error instanceof TordialError)) return `internal error: ${error instanceof Error ? (error.stack ?? error.message) : String(error)}`;
+  const { file, record, line } = error.place;
+  const where = [file, record === undefined ? undefined : `record ${record}`, line === undefined ? undefined : `line ${line}`].filter((part) => part !== undefined);
+  return `${where.length > 0 ? `${where.join(', ')}: ` : ''}${error.message} [${error.code}]`;
+}
+
+/** Writes a failure on standard error. */
+export function report(error: unknown): void {
+  process.stderr.write(`error: ${describeFailure(error)}\n`);
+}
