@@ -1,0 +1,201 @@
+/** A rotor that is driven through its angles: the torsion, the atoms that turn, and the frame in which its geometries are compared. */
+import {
+  angle as bondAngle,
+  bondBetween,
+  type Coordinates,
+  degrees,
+  type Molecule,
+  neighboursOf,
+  sidesOfBond,
+  TordialError,
+  torsion,
+  torsionGradient,
+  turnAbout,
+} from '@tordial/geometry';
+import { type Constraint, largest } from './minimise.js';
+
+export type TorsionAtoms = readonly [number, number, number, number];
+
+export interface DrivenRotor {
+  readonly atomCount: number;
+  /** i, a, b, j: the angle is that of i-a-b-j, the axis a-b. */
+  readonly torsion: TorsionAtoms;
+  /** Atoms that turn with a and with b, both ascending, axis atoms included. */
+  readonly sides: { readonly a: Int32Array; readonly b: Int32Array };
+}
+
+/** Largest angle within the torsion, degrees: beyond it the torsion angle has no meaning. */
+export const STRAIGHTEST = 175;
+
+/**
+ * The rotor of a torsion. Throws `scan/torsion` when the four atoms are not a chain of bonded atoms, `scan/ring` when the middle bond lies in a ring.
+ */
+export function drivenRotor(molecule: Molecule, atoms: TorsionAtoms): DrivenRotor {
+  for (const atom of atoms)
+    if (!(Number.isInteger(atom) && atom >= 0 && atom < molecule.atomCount))
+      throw new TordialError(
+        'scan/torsion',
+        `the torsion ${atoms.join('-')} names atom ${atom}, but the molecule has the atoms 0 to ${molecule.atomCount - 1}`,
+        { atom },
+      );
+  if (new Set(atoms).size < 4)
+    throw new TordialError('scan/torsion', `the torsion ${atoms.join('-')} names an atom twice; give four different atoms`, {
+      atom: atoms[0],
+    });
+  for (let n = 0; n < 3; n++)
+    if (bondBetween(molecule, atoms[n], atoms[n + 1]) < 0)
+      throw new TordialError(
+        'scan/torsion',
+        `atoms ${atoms[n]} and ${atoms[n + 1]} of the torsion ${atoms.join('-')} are not bonded; atom ${atoms[n]} is bonded to ${[...neighboursOf(molecule, atoms[n])].join(', ') || 'nothing'}`,
+        { atom: atoms[n] },
+      );
+  const sides = sidesOfBond(molecule, atoms[1], atoms[2]);
+  if (!sides)
+    throw new TordialError(
+      'scan/ring',
+      `the bond ${atoms[1]}-${atoms[2]} is part of a ring and cannot be turned; choose a torsion about a bond outside rings`,
+      { bond: bondBetween(molecule, atoms[1], atoms[2]) },
+    );
+  return { atomCount: molecule.atomCount, torsion: atoms, sides };
+}
+
+/** Torsion angle of the rotor, radian in (-pi, pi]. */
+export function rotorAngle({ torsion: [i, a, b, j] }: DrivenRotor, x: Coordinates): number {
+  return torsion(x, i, a, b, j);
+}
+
+/** Turns the rotor to `angle` (radian) in place, everything else kept: the smaller side moves. */
+export function turnTo(rotor: DrivenRotor, x: Coordinates, angle: number): void {
+  const {
+    torsion: [, a, b],
+    sides,
+  } = rotor;
+  const by = angle - rotorAngle(rotor, x);
+  if (sides.b.length <= sides.a.length) turnAbout(x, a, b, sides.b, by);
+  else turnAbout(x, b, a, sides.a, by);
+}
+
+/** Throws `scan/linear` when an angle within the torsion is above 175 degrees, where its torsion angle loses its meaning. */
+export function checkBent({ torsion: [i, a, b, j] }: DrivenRotor, x: Coordinates): void {
+  const chain = [i, a, b, j];
+  for (let n = 0; n < 2; n++) {
+    const size = degrees(bondAngle(x, chain[n], chain[n + 1], chain[n + 2]));
+    if (size > STRAIGHTEST)
+      throw new TordialError(
+        'scan/linear',
+        `the angle ${chain[n]}-${chain[n + 1]}-${chain[n + 2]} is ${size.toFixed(1)} degrees: the torsion ${chain.join('-')} has no angle there; define it by atoms that are not in line`,
+        { atom: chain[n + 1] },
+      );
+  }
+}
+
+/** dx/dphi of turning side b rigidly about the axis: g . dx/dphi for a gradient g, kcal/mol/radian. */
+export function rigidTorque({ torsion: [, a, b], sides }: DrivenRotor, x: Coordinates, g: Float64Array): number {
+  const ox = x[3 * b],
+    oy = x[3 * b + 1],
+    oz = x[3 * b + 2];
+  const ax = ox - x[3 * a],
+    ay = oy - x[3 * a + 1],
+    az = oz - x[3 * a + 2];
+  // sum of r x g over the side, along the axis
+  let mx = 0,
+    my = 0,
+    mz = 0;
+  for (let n = 0; n < sides.b.length; n++) {
+    const at = 3 * sides.b[n];
+    const rx = x[at] - ox,
+      ry = x[at + 1] - oy,
+      rz = x[at + 2] - oz;
+    const gx = g[at],
+      gy = g[at + 1],
+      gz = g[at + 2];
+    mx += ry * gz - rz * gy;
+    my += rz * gx - rx * gz;
+    mz += rx * gy - ry * gx;
+  }
+  return (ax * mx + ay * my + az * mz) / Math.hypot(ax, ay, az);
+}
+
+/** The rotor held at `angle` (radian). */
+export function heldAt(rotor: DrivenRotor, angle: number): Constraint {
+  const [i, a, b, j] = rotor.torsion;
+  const slope = new Float64Array(12);
+  const places = [3 * i, 3 * a, 3 * b, 3 * j];
+  const trial = new Float64Array(3 * rotor.atomCount);
+  return {
+    retract: (x) => turnTo(rotor, x, angle),
+    reduce: (x, gradient) => {
+      torsionGradient(x, i, a, b, j, slope);
+      let along = 0;
+      let square = 0;
+      places.forEach((at, p) => {
+        for (let k = 0; k < 3; k++) {
+          along += gradient[at + k] * slope[3 * p + k];
+          square += slope[3 * p + k] ** 2;
+        }
+      });
+      const torque = rigidTorque(rotor, x, gradient);
+      // E(retract(x)) does not change when side b turns: what is left of the gradient has no torque about the axis
+      trial.set(gradient);
+      places.forEach((at, p) => {
+        for (let k = 0; k < 3; k++) {
+          trial[at + k] -= (along / square) * slope[3 * p + k];
+          gradient[at + k] -= torque * slope[3 * p + k];
+        }
+      });
+      return largest(trial);
+    },
+  };
+}
+
+/**
+ * Moves x in place into the rotor's frame: a at the origin, b on the positive z axis, i in the half plane y = 0, x > 0.
+ * In this frame side a of neighbouring points of a scan lies almost still, and so does side b once its turn is taken back.
+ */
+export function intoRotorFrame({ torsion: [i, a, b] }: DrivenRotor, x: Coordinates): void {
+  const ox = x[3 * a],
+    oy = x[3 * a + 1],
+    oz = x[3 * a + 2];
+  let zx = x[3 * b] - ox,
+    zy = x[3 * b + 1] - oy,
+    zz = x[3 * b + 2] - oz;
+  const zLength = Math.hypot(zx, zy, zz);
+  zx /= zLength;
+  zy /= zLength;
+  zz /= zLength;
+  let xx = x[3 * i] - ox,
+    xy = x[3 * i + 1] - oy,
+    xz = x[3 * i + 2] - oz;
+  const along = xx * zx + xy * zy + xz * zz;
+  xx -= along * zx;
+  xy -= along * zy;
+  xz -= along * zz;
+  const xLength = Math.hypot(xx, xy, xz);
+  xx /= xLength;
+  xy /= xLength;
+  xz /= xLength;
+  const yx = zy * xz - zz * xy,
+    yy = zz * xx - zx * xz,
+    yz = zx * xy - zy * xx;
+  for (let at = 0; at < x.length; at += 3) {
+    const rx = x[at] - ox,
+      ry = x[at + 1] - oy,
+      rz = x[at + 2] - oz;
+    x[at] = rx * xx + ry * xy + rz * xz;
+    x[at + 1] = rx * yx + ry * yy + rz * yz;
+    x[at + 2] = rx * zx + ry * zy + rz * zz;
+  }
+}
+
+/** Turns the vectors of side b (3 values an atom, from `offset` on) about the z axis of the rotor's frame by `angle` radian, in place. */
+export function turnSide({ sides }: DrivenRotor, vectors: Float64Array, angle: number, offset = 0): void {
+  const cosine = Math.cos(angle);
+  const sine = Math.sin(angle);
+  for (let n = 0; n < sides.b.length; n++) {
+    const at = offset + 3 * sides.b[n];
+    const vx = vectors[at],
+      vy = vectors[at + 1];
+    vectors[at] = cosine * vx - sine * vy;
+    vectors[at + 1] = sine * vx + cosine * vy;
+  }
+}

@@ -1,0 +1,225 @@
+/**
+ * Minimisation by limited-memory BFGS with a preconditioner, on geometries that may be bound to a constraint.
+ *
+ * A constraint is kept exactly: after each step `retract` brings the geometry back onto it, and the function that is minimised is the energy
+ * of the geometry so brought back. Its gradient follows from the chain rule (`reduce`), so nothing else here knows of constraints.
+ *
+ * Sources: J. Nocedal, Math. Comput. 35, 773 (1980); the approximate Wolfe condition where rounding hides the decrease:
+ * W. W. Hager and H. Zhang, SIAM J. Optim. 16, 170 (2005).
+ */
+import { type Coordinates, type Molecule, TordialError } from '@tordial/geometry';
+import { drive } from './drive.js';
+import { modelHessian, preconditionerAt } from './model-hessian.js';
+import type { Calculation, Potential, Question } from './potential.js';
+import { forget, remember, renew, type SecantMemory, searchDirection, secantMemory } from './secant-memory.js';
+
+/** A symmetric positive definite approximation P of the Hessian. */
+export interface Preconditioner {
+  /** Writes P^-1 v into `out`; all of the length of the coordinates. */
+  solve(v: Float64Array, out: Float64Array): void;
+  /** Adapts P to the geometry x if that has moved far from where P was made; says whether P changed. */
+  follow?(x: Coordinates): boolean;
+}
+
+/** A set of geometries that the minimiser may not leave. */
+export interface Constraint {
+  /** Moves x back onto the constraint, in place. */
+  retract(x: Coordinates): void;
+  /**
+   * Turns dE/dx at x (on the constraint) into the gradient of E(retract(x)), in place, and returns the largest component of the part of
+   * dE/dx that is tangent to the constraint.
+   */
+  reduce(x: Coordinates, gradient: Float64Array): number;
+}
+
+export interface MinimiseOptions {
+  /** Converged when no component of the gradient (tangent to the constraint, if there is one) exceeds this, kcal/mol/angstrom; 1e-3. */
+  readonly tolerance?: number;
+  /** Evaluations after which it gives up; 1000. */
+  readonly maxEvaluations?: number;
+  /** The farthest that an atom may go in one step, angstrom; 0.3. */
+  readonly maxStep?: number;
+  readonly constraint?: Constraint;
+  /** What earlier minimisations of the same molecule nearby have learnt; extended in place. */
+  readonly memory?: SecantMemory;
+}
+
+export interface Relaxed {
+  /** Angstrom. */
+  readonly coordinates: Coordinates;
+  /** kcal/mol. */
+  readonly energy: number;
+  /** dE/dx at the result, not reduced by any constraint, kcal/mol/angstrom. */
+  readonly gradient: Float64Array;
+  /** Largest component of the gradient (tangent to the constraint), kcal/mol/angstrom. */
+  readonly gradientMax: number;
+  readonly converged: boolean;
+  /** Energies and gradients asked for. */
+  readonly evaluations: number;
+}
+
+/** Pairs of steps and gradient changes that a minimisation keeps. */
+export const MEMORY = 12;
+
+/** Fraction of the decrease that the slope promises which a step must bring (Armijo). */
+const SUFFICIENT = 1e-4;
+/** Energies that differ by less than this, relative to their size, are equal but for rounding. */
+const ROUNDING = 1e-11;
+
+/**
+ * Minimises the energy from `start` (left as it is). The preconditioner must be made at a geometry like `start`.
+ * A minimisation that cannot go on returns its best geometry with `converged` false.
+ * Throws `scan/energy` when the energy or gradient at the start is not finite.
+ */
+export function* minimise(start: Coordinates, preconditioner: Preconditioner, options: MinimiseOptions = {}): Calculation<Relaxed> {
+  const { tolerance = 1e-3, maxEvaluations = 1000, maxStep = 0.3, constraint } = options;
+  const length = start.length;
+  const memory = options.memory ?? secantMemory(length, MEMORY);
+  const x = start.slice();
+  const raw = new Float64Array(length);
+  const gradient = new Float64Array(length);
+  const solved = new Float64Array(length);
+  const direction = new Float64Array(length);
+  const work = new Float64Array(length);
+  const trialReduced = new Float64Array(length);
+  const trialSolved = new Float64Array(length);
+  const question: Question = { x: new Float64Array(length), gradient: new Float64Array(length) };
+
+  constraint?.retract(x);
+  question.x.set(x);
+  let energy = yield question;
+  let evaluations = 1;
+  raw.set(question.gradient);
+  gradient.set(raw);
+  let residual = constraint ? constraint.reduce(x, gradient) : largest(gradient);
+  if (!Number.isFinite(energy) || !Number.isFinite(residual))
+    throw new TordialError(
+      'scan/energy',
+      'the potential gives no finite energy and gradient for the geometry that a relaxation starts from',
+    );
+  if (residual > tolerance && preconditioner.follow?.(x)) renew(memory, preconditioner);
+  let radius = maxStep;
+  let solvedAt = false;
+
+  while (residual > tolerance && evaluations < maxEvaluations) {
+    if (!solvedAt) preconditioner.solve(gradient, solved);
+    solvedAt = true;
+    searchDirection(memory, gradient, solved, direction, work);
+    let slope = dot(gradient, direction);
+    if (!(slope < 0)) {
+      forget(memory);
+      searchDirection(memory, gradient, solved, direction, work);
+      slope = dot(gradient, direction);
+      if (!(slope < 0)) break;
+    }
+    const reach = farthest(direction);
+    let scale = reach > radius ? radius / reach : 1;
+    const limited = scale < 1;
+
+    let accepted = false;
+    let tries = 0;
+    for (; tries < 12 && evaluations < maxEvaluations; tries++) {
+      for (let k = 0; k < length; k++) question.x[k] = x[k] + scale * direction[k];
+      constraint?.retract(question.x);
+      const trial = yield question;
+      evaluations++;
+      trialReduced.set(question.gradient);
+      const trialResidual = constraint ? constraint.reduce(question.x, trialReduced) : largest(trialReduced);
+      if (!Number.isFinite(trial) || !Number.isFinite(trialResidual)) {
+        scale *= 0.1;
+        continue;
+      }
+      const trialSlope = dot(trialReduced, direction);
+      const decrease = trial - energy;
+      const hidden = Math.abs(decrease) <= ROUNDING * (1 + Math.abs(energy)) && trialSlope <= (2 * SUFFICIENT - 1) * slope;
+      if (decrease <= SUFFICIENT * scale * slope || hidden || (trialResidual <= tolerance && decrease <= 1e-9)) {
+        preconditioner.solve(trialReduced, trialSolved);
+        // direction becomes the step that was really made, `work` the change of gradient, `solved` that of P^-1 g
+        for (let k = 0; k < length; k++) {
+          direction[k] = question.x[k] - x[k];
+          work[k] = trialReduced[k] - gradient[k];
+          solved[k] = trialSolved[k] - solved[k];
+        }
+        remember(memory, direction, work, solved);
+        x.set(question.x);
+        raw.set(question.gradient);
+        gradient.set(trialReduced);
+        solved.set(trialSolved);
+        energy = trial;
+        residual = trialResidual;
+        accepted = true;
+        break;
+      }
+      scale *= shorter(decrease, scale * slope, scale * trialSlope);
+    }
+    if (!accepted) {
+      // nothing shorter helps: either what is remembered misleads, or rounding is reached
+      if (memory.count === 0) break;
+      forget(memory);
+      radius = maxStep;
+      continue;
+    }
+    if (tries > 0) radius = Math.max(0.02, Math.min(radius, scale * reach));
+    else if (limited) radius = Math.min(2 * radius, 2 * maxStep);
+    if (preconditioner.follow?.(x)) {
+      forget(memory);
+      solvedAt = false;
+    }
+  }
+  return { coordinates: x, energy, gradient: raw, gradientMax: residual, converged: residual <= tolerance, evaluations };
+}
+
+/** By how much to shorten a step: the minimum of the cubic through both ends' energies and slopes, kept within a tenth and a half. */
+function shorter(change: number, slope: number, trialSlope: number): number {
+  const a = slope + trialSlope - 2 * change;
+  const b = 3 * change - 2 * slope - trialSlope;
+  const root = Math.sqrt(Math.max(0, b * b - 3 * a * slope));
+  const best = Math.abs(a) > 1e-14 * Math.abs(b) ? (root - b) / (3 * a) : -slope / (2 * b);
+  return Number.isFinite(best) ? Math.min(Math.max(best, 0.1), 0.5) : 0.25;
+}
+
+function dot(u: Float64Array, v: Float64Array): number {
+  let sum = 0;
+  for (let k = 0; k < u.length; k++) sum += u[k] * v[k];
+  return sum;
+}
+
+/** Largest component by size; NaN if there is one. */
+export function largest(v: Float64Array): number {
+  let most = 0;
+  for (let k = 0; k < v.length; k++) {
+    const size = Math.abs(v[k]);
+    if (!(size <= most)) most = size;
+  }
+  return most;
+}
+
+/** Longest displacement of an atom. */
+function farthest(step: Float64Array): number {
+  let most = 0;
+  for (let at = 0; at < step.length; at += 3) {
+    const square = step[at] * step[at] + step[at + 1] * step[at + 1] + step[at + 2] * step[at + 2];
+    if (square > most) most = square;
+  }
+  return Math.sqrt(most);
+}
+
+/** Throws `potential/atoms` when coordinates do not fit the molecule or the potential. */
+export function checkSizes(molecule: Molecule, potential: { readonly atomCount: number }, x: Coordinates): void {
+  if (potential.atomCount !== molecule.atomCount || x.length !== 3 * molecule.atomCount)
+    throw new TordialError(
+      'potential/atoms',
+      `molecule, potential and coordinates must agree: ${molecule.atomCount}, ${potential.atomCount} and ${x.length / 3} atoms`,
+    );
+}
+
+/** Relaxes a geometry freely. Throws as `minimise` does, and `potential/atoms` when sizes differ. */
+export function relax(
+  molecule: Molecule,
+  potential: Potential,
+  x: Coordinates,
+  options: Omit<MinimiseOptions, 'constraint' | 'memory'> = {},
+): Relaxed {
+  checkSizes(molecule, potential, x);
+  return drive(minimise(x, preconditionerAt(modelHessian(molecule), x), options), potential);
+}

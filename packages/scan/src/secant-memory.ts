@@ -1,0 +1,107 @@
+/** What a minimiser has learnt about the curvature: the last few steps and what they did to the gradient. */
+import type { Preconditioner } from './minimise.js';
+
+/** Rows of `length` values; row (next - 1) is the newest pair. */
+export interface SecantMemory {
+  readonly length: number;
+  readonly capacity: number;
+  /** Steps s, changes of the gradient y, and P^-1 y. */
+  readonly s: Float64Array;
+  readonly y: Float64Array;
+  readonly z: Float64Array;
+  /** 1 / (s . y) of each row. */
+  readonly rho: Float64Array;
+  readonly alpha: Float64Array;
+  count: number;
+  next: number;
+}
+
+/** An empty memory for vectors of `length` values. */
+export function secantMemory(length: number, capacity: number): SecantMemory {
+  return {
+    length,
+    capacity,
+    s: new Float64Array(length * capacity),
+    y: new Float64Array(length * capacity),
+    z: new Float64Array(length * capacity),
+    rho: new Float64Array(capacity),
+    alpha: new Float64Array(capacity),
+    count: 0,
+    next: 0,
+  };
+}
+
+/** Forgets everything. */
+export function forget(memory: SecantMemory): void {
+  memory.count = 0;
+  memory.next = 0;
+}
+
+/** Keeps a pair s, y with z = P^-1 y, if the curvature along s is positive; says whether it did. */
+export function remember(memory: SecantMemory, s: Float64Array, y: Float64Array, z: Float64Array): boolean {
+  const { length, capacity } = memory;
+  let sy = 0;
+  let ss = 0;
+  let yy = 0;
+  for (let k = 0; k < length; k++) {
+    sy += s[k] * y[k];
+    ss += s[k] * s[k];
+    yy += y[k] * y[k];
+  }
+  if (!(sy > 1e-8 * Math.sqrt(ss * yy))) return false;
+  const at = memory.next * length;
+  memory.s.set(s, at);
+  memory.y.set(y, at);
+  memory.z.set(z, at);
+  memory.rho[memory.next] = 1 / sy;
+  memory.next = (memory.next + 1) % capacity;
+  memory.count = Math.min(memory.count + 1, capacity);
+  return true;
+}
+
+/**
+ * Writes the search direction -H g into `direction`, where H is P^-1 corrected by the remembered pairs; `solved` is P^-1 g, `work` is overwritten.
+ *
+ * Source: J. Nocedal, Math. Comput. 35, 773 (1980), with P^-1 y kept beside y so that one solution with P serves a step.
+ */
+export function searchDirection(
+  memory: SecantMemory,
+  g: Float64Array,
+  solved: Float64Array,
+  direction: Float64Array,
+  work: Float64Array,
+): void {
+  const { length, capacity, s, y, z, rho, alpha, count, next } = memory;
+  work.set(g);
+  direction.set(solved);
+  for (let n = 1; n <= count; n++) {
+    const row = (next - n + capacity) % capacity;
+    const at = row * length;
+    let sum = 0;
+    for (let k = 0; k < length; k++) sum += s[at + k] * work[k];
+    const a = rho[row] * sum;
+    alpha[row] = a;
+    for (let k = 0; k < length; k++) {
+      work[k] -= a * y[at + k];
+      direction[k] -= a * z[at + k];
+    }
+  }
+  for (let n = count; n >= 1; n--) {
+    const row = (next - n + capacity) % capacity;
+    const at = row * length;
+    let sum = 0;
+    for (let k = 0; k < length; k++) sum += y[at + k] * direction[k];
+    const b = alpha[row] - rho[row] * sum;
+    for (let k = 0; k < length; k++) direction[k] += b * s[at + k];
+  }
+  for (let k = 0; k < length; k++) direction[k] = -direction[k];
+}
+
+/** Recomputes P^-1 y of every remembered pair, for a preconditioner that has changed. */
+export function renew(memory: SecantMemory, preconditioner: Preconditioner): void {
+  const { length, count, next, capacity } = memory;
+  for (let n = 1; n <= count; n++) {
+    const at = ((next - n + capacity) % capacity) * length;
+    preconditioner.solve(memory.y.subarray(at, at + length), memory.z.subarray(at, at + length));
+  }
+}
