@@ -1,1 +1,4 @@
-export {};
+export * from './group-label.js';
+export * from './newman.js';
+export * from './profile-plot.js';
+export * from './theme.js';

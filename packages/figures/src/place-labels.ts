@@ -1,0 +1,106 @@
+import { type Box, boxesOverlap, segmentMeetsBox } from './boxes.js';
+
+/** A label that wants to stand near the point (x, y), px. */
+export interface LabelRequest {
+  readonly x: number;
+  readonly y: number;
+  readonly width: number;
+  readonly height: number;
+  /** The side that is tried first. */
+  readonly side: 'above' | 'below';
+}
+
+export type Segment = readonly [x0: number, y0: number, x1: number, y1: number];
+
+/** What labels must not touch, and what they should rather not cover. */
+export interface Obstacles {
+  readonly boxes: readonly Box[];
+  readonly segments: readonly Segment[];
+  readonly avoided: readonly Segment[];
+}
+
+export interface PlacedLabel {
+  readonly box: Box;
+  /** A line from the point to a label that stands apart from it. */
+  readonly tie: Segment | undefined;
+}
+
+/** Distances between the point and its label that are tried, px. */
+const DISTANCES = [8, 11, 15, 20, 27, 36, 48, 64, 84];
+/** Directions as turns away from the preferred side, degrees, with the extra cost of each. */
+const DIRECTIONS: readonly (readonly [number, number])[] = [0, 20, -20, 40, -40, 65, -65, 90, -90, 115, -115, 140, -140, 180].map(
+  (turn) => [turn, Math.abs(turn) / 9],
+);
+const MARGIN = 3;
+const TIED_FROM = 14;
+const COVERING_COST = 14;
+const PASSES = 4;
+
+interface Candidate extends PlacedLabel {
+  readonly cost: number;
+}
+
+/**
+ * Finds a place for every label such that none touches another one, an obstacle or the frame, near its point and on its preferred side where possible.
+ * The labels with the fewest free places choose first; then each in turn takes the best place that the others leave, until nothing changes.
+ * A label for which nothing is free stays undefined.
+ */
+export function placeLabels(requests: readonly LabelRequest[], obstacles: Obstacles, frame: Box): (PlacedLabel | undefined)[] {
+  const candidates = requests.map((request) => freePlaces(request, obstacles, frame));
+  const chosen = new Array<Candidate | undefined>(requests.length).fill(undefined);
+  const best = (n: number): Candidate | undefined =>
+    candidates[n].find((candidate) => chosen.every((other, m) => m === n || !other || !inConflict(candidate, other)));
+  const order = requests.map((_, n) => n).sort((p, q) => candidates[p].length - candidates[q].length || p - q);
+  for (let pass = 0; pass < PASSES; pass++) {
+    let changed = false;
+    for (const n of order) {
+      const place = best(n);
+      if (place !== chosen[n]) changed = true;
+      chosen[n] = place;
+    }
+    if (!changed) break;
+  }
+  return chosen.map((place) => place && { box: place.box, tie: place.tie });
+}
+
+function inConflict(p: PlacedLabel, q: PlacedLabel): boolean {
+  return (
+    boxesOverlap(p.box, q.box, MARGIN) ||
+    (p.tie !== undefined && segmentMeetsBox(...p.tie, q.box, 1)) ||
+    (q.tie !== undefined && segmentMeetsBox(...q.tie, p.box, 1))
+  );
+}
+
+/** All places that touch no obstacle, the best first. */
+function freePlaces(request: LabelRequest, obstacles: Obstacles, frame: Box): Candidate[] {
+  const places: Candidate[] = [];
+  for (const distance of DISTANCES)
+    for (const [turn, cost] of DIRECTIONS) {
+      const place = placeAt(request, distance, turn);
+      const { box, tie } = place;
+      if (
+        box.left < frame.left + MARGIN ||
+        box.right > frame.right - MARGIN ||
+        box.top < frame.top + MARGIN ||
+        box.bottom > frame.bottom - MARGIN
+      )
+        continue;
+      if (obstacles.boxes.some((other) => boxesOverlap(box, other, 2))) continue;
+      if (obstacles.segments.some((segment) => segmentMeetsBox(...segment, box, MARGIN))) continue;
+      const covered = obstacles.avoided.filter((segment) => segmentMeetsBox(...segment, box, 1)).length;
+      places.push({ box, tie, cost: distance + cost + COVERING_COST * covered });
+    }
+  return places.sort((p, q) => p.cost - q.cost);
+}
+
+function placeAt({ x, y, width, height, side }: LabelRequest, distance: number, turn: number): PlacedLabel {
+  const angle = (turn * Math.PI) / 180;
+  const across = Math.sin(angle);
+  const down = (side === 'above' ? -1 : 1) * Math.cos(angle);
+  const centreX = x + across * (distance + width / 2);
+  const centreY = y + down * (distance + height / 2);
+  const box = { left: centreX - width / 2, right: centreX + width / 2, top: centreY - height / 2, bottom: centreY + height / 2 };
+  const nearX = Math.min(box.right, Math.max(box.left, x));
+  const nearY = Math.min(box.bottom, Math.max(box.top, y));
+  return { box, tie: Math.hypot(nearX - x, nearY - y) > TIED_FROM ? [x, y, nearX, nearY] : undefined };
+}
