@@ -1,0 +1,103 @@
+/**
+ * Three-dimensional structures by distance geometry: bounds from the bonding, triangle smoothing, coordinates from drawn distances in
+ * four dimensions, refinement against bounds and signed volumes, collapse to three, a light strain function, and a check of everything
+ * that must hold; another start where something does not.
+ *
+ * Sources: G. M. Crippen, T. F. Havel, Distance Geometry and Molecular Conformation, Research Studies Press, Taunton (1988);
+ * J. M. Blaney, J. S. Dixon, Rev. Comput. Chem. 5, 299 (1994).
+ */
+import { TordialError } from '../errors.js';
+import type { Coordinates, Molecule } from '../molecule.js';
+import { type Random, seededRandom } from '../random.js';
+import { bondAngles } from './bond-angles.js';
+import { bondLengths } from './bond-lengths.js';
+import { bondDistances, distanceBounds, type IdealGeometry } from './bounds.js';
+import { distanceError } from './distance-error.js';
+import { structureFault } from './faults.js';
+import { connectedFragments, sideBySide } from './fragments.js';
+import { signedVolume, signedVolumes } from './handedness.js';
+import { descend } from './lbfgs.js';
+import { embedDistances, randomCoordinates } from './metric-matrix.js';
+import { atomShapes } from './shapes.js';
+import { strain } from './strain.js';
+import { smoothTriangles } from './triangle-smoothing.js';
+import { turning } from './turning.js';
+
+export interface EmbedOptions {
+  /** Start of the random numbers; the same seed gives the same structure. Default 1. */
+  readonly seed?: number;
+  /** Starts tried for a structure before giving up. Default 60. */
+  readonly attempts?: number;
+}
+
+/**
+ * A three-dimensional structure of the molecule, angstrom, with the configuration that it states; what it leaves open comes out one way or the
+ * other. Separate fragments stand side by side along x without contact. Throws `embed/failed` when no start gives a sound structure.
+ */
+export function embed(molecule: Molecule, options: EmbedOptions = {}): Coordinates {
+  return embedMany(molecule, 1, options)[0];
+}
+
+/** `count` structures from one stream of random numbers, the first as `embed` gives it; they need not differ. Throws as `embed` does. */
+export function embedMany(molecule: Molecule, count: number, { seed = 1, attempts = 60 }: EmbedOptions = {}): Coordinates[] {
+  const fragments = connectedFragments(molecule).map(({ atoms, molecule: part }) => ({ atoms, next: embedder(part) }));
+  const random = seededRandom(seed);
+  return Array.from({ length: count }, () =>
+    sideBySide(
+      molecule,
+      fragments.map(({ atoms, next }) => ({ atoms, x: next(random, attempts) })),
+    ),
+  );
+}
+
+/** Makes structures of one connected molecule; what depends on the bonding alone is worked out once. */
+function embedder(molecule: Molecule): (random: Random, attempts: number) => Coordinates {
+  const shapes = atomShapes(molecule);
+  const lengths = bondLengths(molecule, shapes);
+  const turns = turning(molecule, shapes);
+  const ideal: IdealGeometry = { shapes, lengths, angles: bondAngles(molecule, shapes), flat: turns.flat, apart: bondDistances(molecule) };
+  const bounds = distanceBounds(molecule, ideal);
+  smoothTriangles(bounds);
+  const volumes = signedVolumes(molecule, bounds);
+  const loose = distanceError(bounds, volumes, { volume: 2, fourth: 0.02 });
+  const flattening = distanceError(bounds, volumes, { volume: 1, fourth: 1 });
+  const strained = strain(molecule, ideal, turns, volumes);
+  const { atomCount } = molecule;
+
+  return (random, attempts) => {
+    if (atomCount === 1) return new Float64Array(3);
+    let reason = '';
+    for (let attempt = 0; attempt < attempts; attempt++) {
+      // every fifth start ignores the drawn distances, which may all lead to the same dead end
+      const x4 = attempt % 5 === 4 ? randomCoordinates(atomCount, random) : embedDistances(bounds, random);
+      if (mirrored(x4)) for (let p = 0; p < x4.length; p += 4) x4[p] = -x4[p];
+      descend(loose, x4, { iterations: 200, gradient: 1e-3, decrease: 1e-3 * atomCount, stride: 1 });
+      descend(flattening, x4, { iterations: 100, gradient: 1e-3, decrease: 1e-3 * atomCount, stride: 1 });
+      const x = new Float64Array(3 * atomCount);
+      for (let i = 0; i < atomCount; i++) for (let c = 0; c < 3; c++) x[3 * i + c] = x4[4 * i + c];
+      descend(strained, x, { iterations: 300, gradient: 0.3, decrease: 0.02 * atomCount, stride: 0.3 });
+      const fault = structureFault(molecule, ideal, turns, volumes, x);
+      if (fault === null) return centred(x);
+      reason = fault;
+    }
+    throw new TordialError('embed/failed', `no structure found in ${attempts} attempts: ${reason}; another seed or more attempts may help`);
+  };
+
+  /** More of the signed volumes have the wrong sign than the right one. */
+  function mirrored(x: Float64Array): boolean {
+    let balance = 0;
+    for (let n = 0; n < volumes.count; n++) balance += Math.sign(signedVolume(volumes, n, x, 4) * volumes.least[n]);
+    return balance < 0;
+  }
+}
+
+/** Moves the centre of the atoms to the origin, in place. */
+function centred(x: Coordinates): Coordinates {
+  const count = x.length / 3;
+  for (let c = 0; c < 3; c++) {
+    let mean = 0;
+    for (let p = c; p < x.length; p += 3) mean += x[p] / count;
+    for (let p = c; p < x.length; p += 3) x[p] -= mean;
+  }
+  return x;
+}

@@ -1,0 +1,49 @@
+/** What can be wrong with an embedded structure: each check answers with the reason, or null. */
+import { angle as bend, distance, torsion } from '../internal-coordinates.js';
+import type { Molecule } from '../molecule.js';
+import { contactRadius, type IdealGeometry } from './bounds.js';
+import { type SignedVolumes, signedVolume } from './handedness.js';
+import { threadedRing } from './threading.js';
+import type { Turning } from './turning.js';
+
+const BOND_OFF = 0.22;
+const CONTACT_SHARE = 0.55;
+
+/** The first fault of coordinates x (3 values an atom), or null. */
+export function structureFault(
+  molecule: Molecule,
+  ideal: IdealGeometry,
+  { flat }: Turning,
+  volumes: SignedVolumes,
+  x: Float64Array,
+): string | null {
+  const { atomCount: n, bonds, atomicNumbers, rings } = molecule;
+  const { shapes, lengths, angles, apart } = ideal;
+  for (let m = 0; m < bonds.count; m++)
+    if (!(Math.abs(distance(x, bonds.a[m], bonds.b[m]) - lengths[m]) < BOND_OFF))
+      return `the bond ${bonds.a[m]}-${bonds.b[m]} has a wrong length`;
+  for (let m = 0; m < volumes.count; m++) {
+    const share = signedVolume(volumes, m, x, 3) / volumes.least[m];
+    if (share < 0.35)
+      return `the stereocentre of atoms ${Array.from(volumes.atoms.subarray(4 * m, 4 * m + 4)).join(', ')} has the wrong hand or is flat`;
+  }
+  for (const { a, b, atA, atB, cis } of flat) {
+    const cosine = Math.cos(torsion(x, atA, a, b, atB));
+    if (cis === null ? Math.abs(cosine) < 0.7 : cis ? cosine < 0.5 : cosine > -0.5)
+      return `the flat bond ${a}-${b} is turned by ${Math.round((Math.acos(Math.max(-1, Math.min(1, cosine))) * 180) / Math.PI)} degrees`;
+  }
+  for (let m = 0; m < angles.count; m++) {
+    const [i, j, k] = [angles.i[m], angles.j[m], angles.k[m]];
+    if (shapes.steric[j] > 4) continue;
+    const off = Math.abs(bend(x, i, j, k) - angles.angle[m]);
+    if (off > 0.55 + angles.tolerance[m]) return `the angle ${i}-${j}-${k} is off by ${Math.round((off * 180) / Math.PI)} degrees`;
+  }
+  for (let i = 0; i < n; i++)
+    for (let j = 0; j < i; j++) {
+      if (apart[i * n + j] < 3) continue;
+      const least = CONTACT_SHARE * (contactRadius(atomicNumbers[i]) + contactRadius(atomicNumbers[j]));
+      if (distance(x, i, j) < (apart[i * n + j] === 3 ? 0.9 * least : least)) return `atoms ${j} and ${i} lie on each other`;
+    }
+  const threaded = threadedRing(rings, bonds, x);
+  return threaded;
+}
