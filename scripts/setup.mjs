@@ -58,7 +58,16 @@ export function install() {
   );
 }
 
+/** The vector loop of the force field, from its own source; the product is committed, so that tests run without a build. */
+function buildKernel() {
+  const folder = join(root, 'packages/forcefield');
+  const inputs = [join(folder, 'assembly/non-bonded.ts'), join(folder, 'scripts/compile-kernel.mjs')];
+  const key = digest(inputs, (path) => readFileSync(path, 'utf8'));
+  unlessDone('kernel', key, join(folder, 'src/kernel/non-bonded.generated.ts'), () => run(process.execPath, inputs.slice(1)));
+}
+
 export function build() {
+  buildKernel();
   const inputs = packages()
     .flatMap((folder) => [...sources(folder)])
     .filter((path) => !path.endsWith('.test.ts'));
