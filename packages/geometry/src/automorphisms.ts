@@ -63,6 +63,46 @@ export function automorphisms(molecule: SymmetricGraph, options: AutomorphismOpt
   };
 }
 
+export interface OrbitOptions {
+  /** Atoms that stay where they are. */
+  readonly fixed?: readonly number[];
+  /** Count only permutations that keep every stated stereocentre, double bond and axis (default), or all of them. */
+  readonly stereo?: 'kept' | 'ignored';
+}
+
+/**
+ * Atoms that a permutation takes into each other share a number, that of their lowest member; sharper than `symmetryClasses`, exact also
+ * for regular graphs and with atoms held fixed. Where stereo is kept and the group has more than 4096 elements, some equivalent
+ * atoms may be told apart.
+ */
+export function atomOrbits(molecule: SymmetricGraph, { fixed = [], stereo = 'kept' }: OrbitOptions = {}): Int32Array {
+  const held = molecule.symmetryClasses.slice();
+  const follows = hydrogensThatFollow(molecule);
+  // holding a hydrogen holds the atom it goes with
+  fixed.forEach((atom, n) => {
+    held[follows[atom] ? neighboursOf(molecule, atom)[0] : atom] = molecule.atomCount + n;
+  });
+  const open = { ...molecule, symmetryClasses: held };
+  const free = stereo === 'ignored' || !hasStereo(molecule.stereo);
+  const { automorphisms: list, generators } = automorphisms(open, { limit: free ? 1 : 4096 });
+  const orbit = Int32Array.from({ length: molecule.atomCount }, (_, i) => i);
+  const join = (i: number, j: number): void => {
+    const from = Math.max(orbit[i], orbit[j]);
+    const to = Math.min(orbit[i], orbit[j]);
+    if (from !== to) for (let n = 0; n < orbit.length; n++) if (orbit[n] === from) orbit[n] = to;
+  };
+  for (const { image, preservesStereo } of [...generators, ...list])
+    if (free || preservesStereo) for (let i = 0; i < image.length; i++) join(i, image[i]);
+  // hydrogens that follow one atom never change places above
+  for (let i = 0; i < molecule.atomCount; i++)
+    if (follows[i] && !fixed.includes(i))
+      for (const j of neighboursOf(molecule, neighboursOf(molecule, i)[0]))
+        if (follows[j] && molecule.isotopes[i] === molecule.isotopes[j] && !fixed.includes(j)) join(i, j);
+  return orbit;
+}
+
+const hasStereo = ({ tetrahedral, doubleBonds, axes }: StereoTable): boolean => tetrahedral.length + doubleBonds.length + axes.length > 0;
+
 /** Hydrogens on one heavy atom: wherever that goes they follow, in ascending order. */
 function hydrogensThatFollow(molecule: SymmetricGraph): Uint8Array {
   return Uint8Array.from({ length: molecule.atomCount }, (_, i) => {

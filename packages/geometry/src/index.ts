@@ -1,6 +1,14 @@
 export * from './automorphisms.js';
+export * from './cip-priority.js';
+export * from './elements.js';
+export * from './embed/embed.js';
 export * from './errors.js';
 export * from './internal-coordinates.js';
+export * from './limits.js';
 export * from './molecule.js';
+export * from './random.js';
+export * from './smiles.js';
+export { completeStereo, openStereo } from './stereo.js';
+export * from './stereo-perception.js';
 export * from './superpose.js';
 export * from './turn.js';
