@@ -1,0 +1,102 @@
+import { TordialError } from '@tordial/geometry';
+import { BOLTZMANN_WAVENUMBER } from '../constants.js';
+import { requireTemperature } from '../temperature.js';
+import { bottomOf, torsionalLevels } from './levels.js';
+import { extremaOfSeries, type PeriodicSeries, seriesValue, withoutNoise } from './periodic-series.js';
+import {
+  classicalThermodynamics,
+  type HarmonicWell,
+  harmonicThermodynamics,
+  pitzerGwinnThermodynamics,
+  quantumThermodynamics,
+  type RotorThermodynamics,
+} from './thermodynamics.js';
+import { type Multiplet, multiplets, torsionalSymmetry } from './tunnelling.js';
+
+/** A hindered rotor: the potential and the rotational constant along the turn, cm-1, and how many positions of the turn are identical. */
+export interface HinderedRotor {
+  readonly potential: PeriodicSeries;
+  readonly constant: PeriodicSeries;
+  /** Internal symmetry number: identical positions on a full turn, 3 for a methyl, 1 where none are. */
+  readonly symmetryNumber: number;
+}
+
+/** Thermodynamic functions by four ways at one temperature; the two that need wells are null for a free rotor. */
+export interface RotorRow {
+  readonly temperature: number;
+  readonly quantum: RotorThermodynamics;
+  readonly classical: RotorThermodynamics;
+  readonly harmonic: RotorThermodynamics | null;
+  readonly pitzerGwinn: RotorThermodynamics | null;
+}
+
+/** What one hindered rotor does. */
+export interface RotorResult {
+  /** cm-1 above the bottom of the potential. */
+  readonly levels: Float64Array;
+  /** Lowest level, cm-1 above the bottom: the rotor's zero-point energy. */
+  readonly zeroPoint: number;
+  /** Each level above the lowest, cm-1. */
+  readonly transitions: Float64Array;
+  /** Torsional states with their tunnelling splittings; energies cm-1 above the bottom. */
+  readonly multiplets: readonly Multiplet[];
+  /** From the lowest state to the next in the same wells, mean of the levels of each, cm-1; null where the levels show none. */
+  readonly fundamental: number | null;
+  /** Splitting of the lowest state, cm-1; null where its wells have no equals. */
+  readonly splitting: number | null;
+  /** Every well of the turn as an oscillator, cm-1. */
+  readonly wells: readonly (HarmonicWell & { readonly angle: number })[];
+  readonly periodicity: number;
+  /** Highest harmonic of the converged basis. */
+  readonly basis: number;
+  readonly rows: readonly RotorRow[];
+}
+
+/**
+ * Levels, splittings and thermodynamic functions of a hindered rotor at the temperatures given (K), side by side with the harmonic, the
+ * classical and the Pitzer-Gwinn values. The quantum of a well is sqrt(2 B V''). Throws as `torsionalLevels` does, and `rotor/symmetry` when
+ * the symmetry number does not fit the potential's periodicity.
+ */
+export function hinderedRotor({ potential, constant, symmetryNumber }: HinderedRotor, temperatures: readonly number[]): RotorResult {
+  temperatures.forEach(requireTemperature);
+  const V = withoutNoise(potential);
+  const B = withoutNoise(constant);
+  const { periodicity } = torsionalSymmetry(V, B);
+  if (!(symmetryNumber >= 1) || !Number.isInteger(symmetryNumber))
+    throw new TordialError('rotor/symmetry', `an internal symmetry number of ${symmetryNumber}: give a whole number of 1 or more`);
+  const bottom = bottomOf(V);
+  const wells = (V.cosine.length === 1 ? [] : extremaOfSeries(V))
+    .filter((extremum) => extremum.kind === 'minimum')
+    .map(({ angle, value }) => ({
+      angle,
+      energy: value - bottom,
+      quantum: Math.sqrt(2 * seriesValue(B, angle) * seriesValue(V, angle, 2)),
+    }));
+
+  // beyond 30 kT a level adds less than 1e-13; low temperatures still want the lowest torsional states
+  const hottest = Math.max(...temperatures, 1);
+  const upTo = Math.max(30 * BOLTZMANN_WAVENUMBER * hottest, 4 * Math.max(0, ...wells.map((well) => well.energy + well.quantum)));
+  const solved = torsionalLevels(V, B, { upTo });
+  const levels = solved.energies.map((energy) => energy - bottom);
+  const states = multiplets(solved, V, B).map((state) => ({ ...state, energy: state.energy - bottom }));
+  const lowest = states.find((state) => state.quantumNumber === 0);
+  const next = lowest && states.find((state) => state.quantumNumber === 1 && state.wells === lowest.wells);
+  return {
+    levels,
+    zeroPoint: levels[0],
+    transitions: levels.slice(1).map((energy) => energy - levels[0]),
+    multiplets: states,
+    fundamental: lowest && next ? next.energy - lowest.energy : null,
+    splitting: lowest && lowest.wells.length > 1 ? lowest.splitting : null,
+    wells,
+    periodicity,
+    basis: solved.basis,
+    rows: temperatures.map((temperature) => ({
+      temperature,
+      quantum: quantumThermodynamics(levels, symmetryNumber, temperature),
+      classical: classicalThermodynamics(V, bottom, B, symmetryNumber, temperature),
+      harmonic: wells.length > 0 ? harmonicThermodynamics(wells, symmetryNumber, temperature) : null,
+      pitzerGwinn: wells.length > 0 ? pitzerGwinnThermodynamics(V, bottom, B, wells, symmetryNumber, temperature) : null,
+    })),
+  };
+}
