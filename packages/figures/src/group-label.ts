@@ -1,15 +1,17 @@
 import { bondBetween, elementSymbol, type Molecule, neighboursOf, TordialError } from '@tordial/geometry';
 import { textWidth } from './text-width.js';
 
-/** A group's condensed formula in parts, read from the bond outwards: `[C, H3]` or `[N, (CH3)2]`. */
+/** A group's condensed formula in parts, read from the bond outwards: `[O, CH3]` or `[N, (CH3)2]`. */
 export type GroupLabel = readonly LabelPart[];
 
 export interface LabelPart {
-  /** An element, a name such as Ph, or a formula in parentheses. */
+  /** An element, a unit that is never turned round (Ph, CO, C6H4), or a formula in parentheses; empty for a charge alone. */
   readonly of: string | GroupLabel;
   /** Subscript; 1 is not written. */
   readonly count: number;
-  /** Superscript charge, as '+' or '2−'; empty for none. */
+  /** Hydrogens that follow. */
+  readonly hydrogens: number;
+  /** Superscript charge of what stands before, as '+' or '2−'; empty for none. */
   readonly charge: string;
 }
 
@@ -23,7 +25,7 @@ export interface LabelRun {
 export const SCRIPT_SCALE = 0.72;
 
 /** Labels wider than this (in em) are abbreviated. */
-const LONGEST = 4;
+const LONGEST = 4.3;
 
 /**
  * Name of the substituent that begins at `atom`, seen from the axis atom `from`: H, CH3, OCH3, Ph, CO2H, t-Bu. What is too long to read in a small
@@ -43,9 +45,16 @@ export function groupLabel(molecule: Molecule, atom: number, from: number): Grou
   return condensed(molecule, atom, from, 1);
 }
 
-/** The same group written towards the bond instead of away from it: OCH3 becomes H3CO. */
+/** The same group written towards the bond instead of away from it: OCH3 becomes H3CO, CH2Ph becomes PhCH2. */
 export function reversedLabel(label: GroupLabel): GroupLabel {
-  return label.map((part) => ({ ...part, of: typeof part.of === 'string' ? part.of : reversedLabel(part.of) })).reverse();
+  const charges = label.filter(({ of }) => of === '');
+  const parts = label.filter(({ of }) => of !== '');
+  const reversed = parts.flatMap(({ of, hydrogens, ...rest }, n): LabelPart[] => {
+    const turned = { ...rest, of: typeof of === 'string' ? of : reversedLabel(of), hydrogens };
+    // hydrogens stand outermost where nothing else follows (H3C), else they stay behind their atom (RCH2)
+    return hydrogens > 0 && n === parts.length - 1 ? [{ ...turned, hydrogens: 0 }, part('H', hydrogens)] : [turned];
+  });
+  return [...reversed.reverse(), ...charges];
 }
 
 /** The label in runs of text with their vertical shifts. */
@@ -57,15 +66,17 @@ export function labelRuns(label: GroupLabel): LabelRun[] {
     else runs.push({ text, shift });
   };
   const write = (parts: GroupLabel): void => {
-    for (const part of parts) {
-      if (typeof part.of === 'string') for (const run of nameRuns(part.of)) add(run.text, run.shift);
+    for (const { of, count, hydrogens, charge } of parts) {
+      if (typeof of === 'string') for (const run of nameRuns(of)) add(run.text, run.shift);
       else {
         add('(', 'line');
-        write(part.of);
+        write(of);
         add(')', 'line');
       }
-      if (part.count > 1) add(String(part.count), 'subscript');
-      if (part.charge) add(part.charge, 'superscript');
+      if (count > 1) add(String(count), 'subscript');
+      if (hydrogens > 0) add('H', 'line');
+      if (hydrogens > 1) add(String(hydrogens), 'subscript');
+      if (charge) add(charge, 'superscript');
     }
   };
   write(label);
@@ -92,8 +103,8 @@ function nameRuns(name: string): LabelRun[] {
   return name.split(/(\d+)/).flatMap((text) => (text ? [{ text, shift: /\d/.test(text) ? 'subscript' : 'line' } as const] : []));
 }
 
-function part(of: string | GroupLabel, count = 1, charge = ''): LabelPart {
-  return { of, count, charge };
+function part(of: string | GroupLabel, count = 1, hydrogens = 0): LabelPart {
+  return { of, count, hydrogens, charge: '' };
 }
 
 const REST = part('R');
@@ -134,10 +145,11 @@ function isOxo({ formalCharges }: Molecule, oxygen: number, centre: number, orde
   return order === 2 || (formalCharges[oxygen] === -1 && formalCharges[centre] > 0);
 }
 
-function chargeText(charge: number): string {
-  if (charge === 0) return '';
+/** A charge stands behind everything that bears it. */
+function chargeParts(charge: number): LabelPart[] {
+  if (charge === 0) return [];
   const sign = charge > 0 ? '+' : '−';
-  return Math.abs(charge) === 1 ? sign : `${Math.abs(charge)}${sign}`;
+  return [{ ...part(''), charge: Math.abs(charge) === 1 ? sign : `${Math.abs(charge)}${sign}` }];
 }
 
 /** The substituent's formula down to `depth` atoms from the bond; what lies beyond is R or Ar. */
@@ -150,69 +162,99 @@ function condensed(molecule: Molecule, atom: number, from: number, depth: number
   }
   const named = alkylName(molecule, atom, from);
   if (named) return [part(named)];
+  const symbol = symbolOf(molecule, atom);
+  const chain = chainOfEqualAtoms(molecule, atom, from);
+  if (chain > 1) return [part(symbol, chain)];
 
   const { hydrogens, oxo, others, charge } = surroundings(molecule, atom, from);
   const branches = others.map((other) => ({ ...other, label: branch(molecule, other.atom, atom, inRing ? 0 : depth - 1) }));
-  const symbol = symbolOf(molecule, atom);
-
-  // acids and esters: the oxygens are counted together, and what the single-bonded ones bear follows (CO2H, SO3−, PO3H2)
-  const acidic = oxo > 0 && [6, 15, 16].includes(molecule.atomicNumbers[atom]);
-  const oxygens = acidic
-    ? branches.filter(({ atom: other, order, label }) => order === 1 && molecule.atomicNumbers[other] === 8 && label[0].of === 'O')
-    : [];
-  const rests = oxygens.map(({ label }) => (label[0].count === 1 ? label.slice(1) : undefined));
-  const gathered = oxygens.length > 0 && rests.every((rest) => rest !== undefined && sameLabel(rest, rests[0] ?? [])) ? oxygens : [];
-  const remaining = branches.filter((one) => !gathered.includes(one));
-  const gatheredCharge = gathered.reduce((sum, { atom: oxygen }) => sum + molecule.formalCharges[oxygen], 0);
-
+  const acid = gatheredOxygens(molecule, atom, oxo, branches);
+  const remaining = branches.filter(({ atom: next }) => !acid?.atoms.has(next));
   const label: LabelPart[] = [];
-  const chain = chainOfEqualAtoms(molecule, atom, from);
-  if (chain > 1) return [part(symbol, chain)];
-  label.push(part(symbol));
-  if (hydrogens > 0) label.push(part('H', hydrogens));
-  const oxygenCount = oxo + gathered.length;
-  if (oxygenCount > 0) label.push(part('O', oxygenCount));
-  if (gathered.length > 0) {
-    const rest = (rests[0] ?? []).map((one) => ({ ...one, charge: '' }));
-    if (rest.length === 1) label.push(part(rest[0].of, rest[0].count * gathered.length));
-    else if (rest.length > 1) label.push(...(gathered.length === 1 ? rest : [part(rest, gathered.length)]));
-  }
-  const total = charge + gatheredCharge;
-  if (total !== 0) label[label.length - 1] = { ...label[label.length - 1], charge: chargeText(total) };
+  if (acid) {
+    label.push(part(symbol, 1, hydrogens), { ...acid.oxygens });
+    label.push(...acid.rest);
+  } else if (oxo > 0 && hydrogens === 0 && others.length > 0) {
+    // a carbonyl or sulfonyl keeps its order when the label is reversed: RCO, H2NSO2
+    label.push(part(oxo > 1 ? `${symbol}O${oxo}` : `${symbol}O`));
+  } else if (oxo > 0) label.push(part(symbol), ...(hydrogens > 0 ? [part('H', hydrogens)] : []), part('O', oxo));
+  else label.push(part(symbol, 1, hydrogens));
 
-  // halogens first, then the branches; equal ones share a pair of parentheses and a subscript, the last one stands open
+  // equal branches share a pair of parentheses and a subscript, the last one stands open
   const groups: { label: GroupLabel; order: number; count: number }[] = [];
-  for (const { label: one, order } of remaining.sort((p, q) => p.label.length - q.label.length)) {
+  for (const { label: one, order } of remaining.sort(
+    (p, q) => Number(isRest(p.label)) - Number(isRest(q.label)) || p.label.length - q.label.length,
+  )) {
     const equal = groups.find((group) => group.order === order && sameLabel(group.label, one));
     if (equal) equal.count++;
     else groups.push({ label: one, order, count: 1 });
   }
   groups.forEach((group, n) => {
-    const sign = bondSign(molecule, group, symbol);
-    if (sign) label.push(part(sign));
-    if (group.label.length === 1 && group.label[0].count === 1 && group.label[0].charge === '')
-      label.push(part(group.label[0].of, group.count));
-    else if (group.count === 1 && n === groups.length - 1) label.push(...group.label);
-    else label.push(part(group.label, group.count));
+    const sign = bondSign(group, symbol);
+    const signed = sign ? [part(sign), ...group.label] : group.label;
+    const [only] = signed;
+    if (signed.length === 1 && only.count === 1 && only.hydrogens === 0 && only.charge === '') label.push(part(only.of, group.count));
+    else if (group.count === 1 && n === groups.length - 1) label.push(...signed);
+    else label.push(part(signed, group.count));
   });
-  return label;
+  return [...label, ...chargeParts(charge + (acid?.charge ?? 0))];
+}
+
+interface Branch {
+  readonly atom: number;
+  readonly order: number;
+  readonly label: GroupLabel;
+}
+
+/**
+ * In acids and esters of carbon, phosphorus and sulfur the oxygens are counted together, and what the single-bonded ones bear follows: CO2H, SO3−,
+ * PO3H2, CO2CH3. Undefined where there are none, or where they bear different things.
+ */
+function gatheredOxygens(
+  molecule: Molecule,
+  atom: number,
+  oxo: number,
+  branches: readonly Branch[],
+): { readonly atoms: ReadonlySet<number>; readonly oxygens: LabelPart; readonly rest: GroupLabel; readonly charge: number } | undefined {
+  const single = branches.filter(
+    ({ atom: next, order, label }) => order === 1 && molecule.atomicNumbers[next] === 8 && label[0].of === 'O',
+  );
+  if (oxo === 0 || single.length === 0 || ![6, 15, 16].includes(molecule.atomicNumbers[atom])) return undefined;
+  if (single.some(({ label }) => !sameLabel(label, single[0].label))) return undefined;
+  const [first, ...rest] = single[0].label.filter(({ of }) => of !== '');
+  if (first.count > 1) return undefined;
+  const simple = rest.length === 1 && rest[0].count === 1 && rest[0].hydrogens === 0;
+  return {
+    atoms: new Set(single.map(({ atom: next }) => next)),
+    oxygens: part('O', oxo + single.length, first.hydrogens * single.length),
+    rest: rest.length === 0 || single.length === 1 ? rest : [simple ? part(rest[0].of, single.length) : part(rest, single.length)],
+    charge: single.reduce((sum, { atom: next }) => sum + molecule.formalCharges[next], 0),
+  };
+}
+
+function isRest(label: GroupLabel): boolean {
+  return label[0] === REST || label[0] === AROMATIC_REST;
 }
 
 /** Multiple bonds are written between carbons and between equal atoms, not where the trade leaves them out (CN, NCO). */
-function bondSign(molecule: Molecule, group: { readonly label: GroupLabel; readonly order: number }, symbol: string): string {
-  const next = group.label[0].of;
-  if (group.order === 1 || typeof next !== 'string') return '';
-  if (symbol === next && molecule.atomCount > 0) return group.order === 2 ? '=' : '≡';
-  return symbol === 'C' && next === 'N' && group.order === 2 ? '=' : '';
+function bondSign({ label, order }: { readonly label: GroupLabel; readonly order: number }, symbol: string): string {
+  const next = label[0].of;
+  if (order === 1 || typeof next !== 'string') return '';
+  if (symbol === next || isRest(label)) return order === 2 ? '=' : '≡';
+  return symbol === 'C' && next === 'N' && order === 2 ? '=' : '';
 }
 
 function branch(molecule: Molecule, atom: number, from: number, depth: number): GroupLabel {
-  if (isTerminal(molecule, atom)) return [part(symbolOf(molecule, atom), 1, chargeText(molecule.formalCharges[atom]))];
-  if (depth >= 1) return condensed(molecule, atom, from, depth);
-  const onlyHydrogens = surroundings(molecule, atom, from);
-  if (onlyHydrogens.others.length === 0 && onlyHydrogens.oxo === 0 && molecule.atomicNumbers[atom] !== 6)
-    return condensed(molecule, atom, from, 1);
+  if (isTerminal(molecule, atom)) return [part(symbolOf(molecule, atom)), ...chargeParts(molecule.formalCharges[atom])];
+  if (depth >= 1) return withoutHyphens(condensed(molecule, atom, from, depth));
+  const { others, oxo } = surroundings(molecule, atom, from);
+  if (others.length === 0 && oxo === 0 && molecule.atomicNumbers[atom] !== 6) return condensed(molecule, atom, from, 1);
   return [isAromaticAtom(molecule, atom) ? AROMATIC_REST : REST];
+}
+
+/** t-Bu stands alone, OtBu within a formula. */
+function withoutHyphens(label: GroupLabel): GroupLabel {
+  return label.map((one) => (typeof one.of === 'string' ? { ...one, of: one.of.replace('-', '') } : one));
 }
 
 function sameLabel(p: GroupLabel, q: GroupLabel): boolean {
@@ -276,10 +318,11 @@ function ringName(molecule: Molecule, atom: number, from: number, depth: number)
   const substituents = borne.map(({ next, member }) => branch(molecule, next, member, depth - 1));
   if (substituents.some((one) => !sameLabel(one, substituents[0]))) return [AROMATIC_REST];
   const [first] = substituents;
-  const skeleton = [part('C', 6), ...(borne.length < 5 ? [part('H', 5 - borne.length)] : [])];
-  if (first.length === 1 && first[0].count === 1) return [...skeleton, part(first[0].of, borne.length, first[0].charge)];
-  const long = borne.length > 1 ? [...skeleton, part(first, borne.length)] : [...skeleton, ...first];
-  return labelWidth(long, 1) <= LONGEST ? long : [...skeleton, part('R', borne.length)];
+  const hydrogens = 5 - borne.length;
+  const skeleton = hydrogens === 0 ? part('C', 6) : part(hydrogens === 1 ? 'C6H' : `C6H${hydrogens}`);
+  const single = first.length === 1 && first[0].count === 1 && first[0].hydrogens === 0;
+  const long = [skeleton, ...(single ? [part(first[0].of, borne.length)] : borne.length > 1 ? [part(first, borne.length)] : first)];
+  return labelWidth(long, 1) <= LONGEST ? long : [skeleton, part('R', borne.length)];
 }
 
 const SATURATED_RINGS: Readonly<Record<number, string>> = { 3: 'c-Pr', 4: 'c-Bu', 5: 'c-Pent', 6: 'c-Hex' };
@@ -319,21 +362,21 @@ function hasDoubleBondInRing(molecule: Molecule, atom: number): boolean {
 /** An atom that shares a ring with the axis atom: its element with its hydrogens, and one short substituent. */
 function ringMember(molecule: Molecule, atom: number, from: number): GroupLabel {
   const { hydrogens, oxo, others, charge } = surroundings(molecule, atom, from);
-  const label = [part(symbolOf(molecule, atom)), ...(hydrogens > 0 ? [part('H', hydrogens)] : [])];
-  if (charge !== 0) label[label.length - 1] = { ...label[label.length - 1], charge: chargeText(charge) };
-  if (oxo > 0) return [...label, part(oxo === 1 ? '=' : ''), part('O', oxo)].filter(({ of }) => of !== '');
+  const label = [part(symbolOf(molecule, atom), 1, hydrogens), ...chargeParts(charge)];
+  if (oxo > 0) return [...label, ...(oxo === 1 ? [part('=')] : []), part('O', oxo)];
   const outside = others.filter(({ atom: next }) => !molecule.rings.some((ring) => ring.includes(atom) && ring.includes(next)));
   if (outside.length === 0) return label;
   if (outside.length > 1) {
-    const pair = outside.map(({ atom: next }) => branch(molecule, next, atom, 0));
-    return sameLabel(pair[0], pair[1]) && pair[0].length === 1 ? [...label, part(pair[0][0].of, 2)] : [...label, part('R', 2)];
+    const [p, q] = outside.map(({ atom: next }) => branch(molecule, next, atom, 0));
+    return [...label, part(p.length === 1 && sameLabel(p, q) ? p[0].of : 'R', outside.length)];
   }
-  const sign = outside[0].order === 2 ? '=' : '–';
+  const [{ atom: next, order }] = outside;
+  const sign = part(order === 2 ? '=' : '–');
   for (const depth of [Number.POSITIVE_INFINITY, 1]) {
-    const long = [...label, part(sign), ...branch(molecule, outside[0].atom, atom, depth)];
+    const long = [...label, sign, ...branch(molecule, next, atom, depth)];
     if (labelWidth(long, 1) <= LONGEST) return long;
   }
-  return [...label, part(sign), isAromaticAtom(molecule, outside[0].atom) ? AROMATIC_REST : REST];
+  return [...label, sign, isAromaticAtom(molecule, next) ? AROMATIC_REST : REST];
 }
 
 function symbolOf(molecule: Molecule, atom: number): string {

@@ -4,11 +4,11 @@ import { spread } from './spread.js';
 /** One projection that wants to hang above x (px). */
 export interface StripItem {
   readonly x: number;
-  readonly layout: NewmanLayout;
+  readonly layout: Pick<NewmanLayout, 'bounds'>;
 }
 
 export interface StripCard {
-  /** Centre of the circle, px from the strip's left and top edge. */
+  /** Centre of the circle, px from the strip's left and top edge; the caption stands below it. */
   readonly x: number;
   readonly y: number;
   readonly captionY: number;
@@ -21,48 +21,68 @@ export interface NewmanStrip {
   readonly cards: readonly StripCard[];
 }
 
-const GAP = 12;
-const CAPTION = 17;
-/** Smaller projections than this in one row are set in two. */
-const LEAST_IN_ONE_ROW = 0.82;
+const GAP = 10;
+const CAPTION = 18;
 const ROW_GAP = 8;
+/** Half the width that a caption needs, px. */
+const CAPTION_REACH = 24;
+/** Projections that one row would shrink further than this are set in two. */
+const LEAST_IN_ONE_ROW = 0.82;
+const SHRINKING = 0.98;
 
 /**
- * Sets projections in a strip of given width, each as near to its x as the others allow, all at the same scale; where one row would make them too
- * small they stand alternately high and low, so that leader lines from the upper ones pass between the lower ones.
+ * Sets projections in a strip of given width, each as near to its x as the others allow, all at the same scale (1 or less). Where one row would make
+ * them too small they stand alternately high and low, and leader lines from the upper ones pass between the lower ones.
  */
-export function newmanStrip(items: readonly StripItem[], width: number, largestScale: number): NewmanStrip {
-  if (items.length === 0) return { scale: largestScale, height: 0, cards: [] };
-  const widths = items.map(({ layout: { bounds } }) => bounds.right - bounds.left);
-  const above = Math.max(...items.map(({ layout }) => -layout.bounds.top));
-  const below = Math.max(...items.map(({ layout }) => layout.bounds.bottom));
-  const total = widths.reduce((sum, one) => sum + one, 0);
-  const oneRow = Math.min(largestScale, (width - GAP * items.length) / total);
-  const twoRows = oneRow < LEAST_IN_ONE_ROW && items.length > 2;
-  // in two rows a card is as wide as half its own projection and half the wider neighbour's: the row of lower cards needs room for leaders only
-  const widest = Math.max(...widths);
-  const slots = twoRows ? widths.map(() => widest / 2) : widths;
-  const taken = slots.reduce((sum, one) => sum + one, 0) + (twoRows ? widest / 2 : 0);
-  const scale = twoRows ? Math.min(largestScale, (width - GAP * items.length) / taken) : oneRow;
-  const margin = twoRows ? (scale * widest) / 4 : 0;
+export function newmanStrip(items: readonly StripItem[], width: number): NewmanStrip {
+  if (items.length === 0) return { scale: 1, height: 0, cards: [] };
+  const single = fit(items, width, 1);
+  const { scale, twoRows, distances, from, to } = single.scale >= LEAST_IN_ONE_ROW || items.length < 3 ? single : fit(items, width, 2);
   const centres = spread(
-    items.map(({ x, layout }) => x + (scale * (layout.bounds.left + layout.bounds.right)) / 2),
-    slots.map((one) => scale * one + GAP),
-    margin,
-    width - margin,
+    items.map(({ x }) => x),
+    distances,
+    from,
+    to,
   );
-  const rowHeight = scale * (above + below) + CAPTION;
+  const above = scale * Math.max(...items.map(({ layout }) => -layout.bounds.top));
+  const rowHeight = above + scale * Math.max(...items.map(({ layout }) => layout.bounds.bottom)) + CAPTION;
   return {
     scale,
     height: twoRows ? 2 * rowHeight + ROW_GAP : rowHeight,
-    cards: items.map(({ layout }, n) => {
-      const row = twoRows && n % 2 === 1 ? 1 : 0;
-      const top = row * (rowHeight + ROW_GAP);
-      return {
-        x: centres[n] - (scale * (layout.bounds.left + layout.bounds.right)) / 2,
-        y: top + scale * above,
-        captionY: top + rowHeight - 3,
-      };
+    cards: centres.map((x, n) => {
+      const top = twoRows && n % 2 === 1 ? rowHeight + ROW_GAP : 0;
+      return { x, y: top + above, captionY: top + rowHeight - 3 };
     }),
   };
+}
+
+interface Fit {
+  readonly scale: number;
+  readonly twoRows: boolean;
+  readonly distances: readonly number[];
+  readonly from: number;
+  readonly to: number;
+}
+
+/** The largest scale at which the projections fit into the width, with the distances that keep them apart. */
+function fit(items: readonly StripItem[], width: number, rows: 1 | 2): Fit {
+  for (let scale = 1; ; scale *= SHRINKING) {
+    const left = items.map(({ layout }) => Math.max(CAPTION_REACH, -scale * layout.bounds.left));
+    const right = items.map(({ layout }) => Math.max(CAPTION_REACH, scale * layout.bounds.right));
+    // between rows it is a leader line of the upper one that has to pass by the lower one
+    const distances = items.slice(1).map((_, n) => GAP + (rows === 1 ? right[n] + left[n + 1] : n % 2 === 1 ? right[n] : left[n + 1]));
+    if (rows === 2)
+      for (let n = 0; n + 2 < items.length; n++) {
+        const lacking = right[n] + left[n + 2] + GAP - distances[n] - distances[n + 1];
+        if (lacking > 0) {
+          distances[n] += lacking / 2;
+          distances[n + 1] += lacking / 2;
+        }
+      }
+    const last = items.length - 1;
+    const from = rows === 2 && last > 0 ? Math.max(left[0], left[1] - distances[0]) : left[0];
+    const to = width - (rows === 2 && last > 0 ? Math.max(right[last], right[last - 1] - distances[last - 1]) : right[last]);
+    const fits = distances.reduce((sum, one) => sum + one, 0) <= to - from;
+    if (fits || scale < 0.2) return { scale, twoRows: rows === 2, distances, from, to };
+  }
 }

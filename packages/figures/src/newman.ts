@@ -3,6 +3,7 @@ import { type Box, boundingBox, boxesOverlap, segmentMeetsBox } from './boxes.js
 import { degreesText } from './format.js';
 import { type GroupLabel, groupLabel, labelRuns, labelText, labelWidth, reversedLabel, SCRIPT_SCALE } from './group-label.js';
 import { element, escapeXml, svgDocument } from './svg.js';
+import { textWidth } from './text-width.js';
 import { type FigureTheme, LIGHT_THEME } from './theme.js';
 
 const DEGREES = 180 / Math.PI;
@@ -11,6 +12,7 @@ const DEGREES = 180 / Math.PI;
 const RIM = 18;
 const FRONT_END = 30;
 const REAR_END = 33;
+const LABEL_RADIUS = 33;
 const FONT_SIZE = 11;
 const CAP_HEIGHT = 0.73 * FONT_SIZE;
 const LABEL_GAP = 3;
@@ -116,7 +118,7 @@ export function newmanLayout(
   const circle = { left: -RIM - 1, top: -RIM - 1, right: RIM + 1, bottom: RIM + 1 };
   const extent = boundingBox([circle, ...substituents.map(({ box }) => box), ...bonds.map(bondBox)]);
   const onAxis = lying.map(({ side, text }, n) => {
-    const width = labelWidth([{ of: text, count: 1, charge: '' }], 0.85 * FONT_SIZE);
+    const width = textWidth(text, 0.85 * FONT_SIZE);
     const top = extent.bottom + 4 + n * 1.2 * FONT_SIZE;
     return { side, text, box: { left: -width / 2, top, right: width / 2, bottom: top + FONT_SIZE } };
   });
@@ -178,7 +180,7 @@ function setLabel(bond: Bond, labelAngle: number): NewmanSubstituent {
   const bonded = Math.min(width, labelWidth(bond.label.slice(0, 1), FONT_SIZE, bond.defining));
   // the bonded atom's letters as an ellipse that the bond must not enter
   const reach = Math.hypot((bonded / 2) * sine, (CAP_HEIGHT / 2) * minusCosine) + LABEL_GAP;
-  const [x, y] = pointAt(labelAngle, bondEnd(bond.side) + reach);
+  const [x, y] = pointAt(labelAngle, LABEL_RADIUS + reach);
   const left = leftwards ? x + bonded / 2 - width : x - bonded / 2;
   const lowered = labelRuns(bond.label).some(({ shift }) => shift === 'subscript') ? 0.2 * FONT_SIZE : 0;
   return {

@@ -33,7 +33,9 @@ const DIRECTIONS: readonly (readonly [number, number])[] = [0, 20, -20, 40, -40,
 );
 const MARGIN = 3;
 const TIED_FROM = 14;
+/** Cost of covering a line that should rather stay visible, and of standing nearer to another label's point than to its own. */
 const COVERING_COST = 14;
+const AMBIGUITY_COST = 25;
 const PASSES = 4;
 
 interface Candidate extends PlacedLabel {
@@ -46,15 +48,30 @@ interface Candidate extends PlacedLabel {
  * A label for which nothing is free stays undefined.
  */
 export function placeLabels(requests: readonly LabelRequest[], obstacles: Obstacles, frame: Box): (PlacedLabel | undefined)[] {
-  const candidates = requests.map((request) => freePlaces(request, obstacles, frame));
+  const candidates = requests.map((request, n) => freePlaces(request, requests.toSpliced(n, 1), obstacles, frame));
   const chosen = new Array<Candidate | undefined>(requests.length).fill(undefined);
   const best = (n: number): Candidate | undefined =>
     candidates[n].find((candidate) => chosen.every((other, m) => m === n || !other || !inConflict(candidate, other)));
+  // a label without a free place takes one from others that find another place
+  const makeRoom = (n: number): Candidate | undefined => {
+    for (const candidate of candidates[n]) {
+      const before = [...chosen];
+      chosen[n] = candidate;
+      const evicted = before.flatMap((other, m) => (m !== n && other && inConflict(candidate, other) ? [m] : []));
+      for (const m of evicted) chosen[m] = undefined;
+      for (const m of evicted) chosen[m] = best(m);
+      if (evicted.every((m) => chosen[m])) return candidate;
+      before.forEach((other, m) => {
+        chosen[m] = other;
+      });
+    }
+    return undefined;
+  };
   const order = requests.map((_, n) => n).sort((p, q) => candidates[p].length - candidates[q].length || p - q);
   for (let pass = 0; pass < PASSES; pass++) {
     let changed = false;
     for (const n of order) {
-      const place = best(n);
+      const place = best(n) ?? makeRoom(n);
       if (place !== chosen[n]) changed = true;
       chosen[n] = place;
     }
@@ -72,12 +89,11 @@ function inConflict(p: PlacedLabel, q: PlacedLabel): boolean {
 }
 
 /** All places that touch no obstacle, the best first. */
-function freePlaces(request: LabelRequest, obstacles: Obstacles, frame: Box): Candidate[] {
+function freePlaces(request: LabelRequest, others: readonly LabelRequest[], obstacles: Obstacles, frame: Box): Candidate[] {
   const places: Candidate[] = [];
   for (const distance of DISTANCES)
     for (const [turn, cost] of DIRECTIONS) {
-      const place = placeAt(request, distance, turn);
-      const { box, tie } = place;
+      const box = boxAt(request, distance, turn);
       if (
         box.left < frame.left + MARGIN ||
         box.right > frame.right - MARGIN ||
@@ -87,20 +103,49 @@ function freePlaces(request: LabelRequest, obstacles: Obstacles, frame: Box): Ca
         continue;
       if (obstacles.boxes.some((other) => boxesOverlap(box, other, 2))) continue;
       if (obstacles.segments.some((segment) => segmentMeetsBox(...segment, box, MARGIN))) continue;
+      const [nearX, nearY] = nearestTo(request, box);
+      const gap = Math.hypot(nearX - request.x, nearY - request.y);
+      const ambiguous = others.some((other) => {
+        const [x, y] = nearestTo(other, box);
+        return Math.hypot(x - other.x, y - other.y) < gap + 1;
+      });
+      const tie: Segment | undefined = ambiguous || gap > TIED_FROM ? [request.x, request.y, nearX, nearY] : undefined;
+      if (tie && runsInto(tie, obstacles)) continue;
       const covered = obstacles.avoided.filter((segment) => segmentMeetsBox(...segment, box, 1)).length;
-      places.push({ box, tie, cost: distance + cost + COVERING_COST * covered });
+      places.push({ box, tie, cost: distance + cost + COVERING_COST * covered + (ambiguous ? AMBIGUITY_COST : 0) });
     }
   return places.sort((p, q) => p.cost - q.cost);
 }
 
-function placeAt({ x, y, width, height, side }: LabelRequest, distance: number, turn: number): PlacedLabel {
+/** Whether a tie meets an obstacle other than the point's own marker, where it begins. */
+function runsInto([x0, y0, x1, y1]: Segment, { boxes, segments }: Obstacles): boolean {
+  const length = Math.hypot(x1 - x0, y1 - y0);
+  const t = TIED_FROM / 2 / length;
+  const start = [x0 + t * (x1 - x0), y0 + t * (y1 - y0)] as const;
+  return (
+    boxes.some(
+      (box) => segmentMeetsBox(...start, x1, y1, box) && !(box.left <= x0 && box.right >= x0 && box.top <= y0 && box.bottom >= y0),
+    ) || segments.some((segment) => cross(start[0], start[1], x1, y1, ...segment))
+  );
+}
+
+/** Whether two segments cross. */
+function cross(ax: number, ay: number, bx: number, by: number, cx: number, cy: number, dx: number, dy: number): boolean {
+  const side = (px: number, py: number, qx: number, qy: number, rx: number, ry: number): number =>
+    (qx - px) * (ry - py) - (qy - py) * (rx - px);
+  return side(ax, ay, bx, by, cx, cy) * side(ax, ay, bx, by, dx, dy) < 0 && side(cx, cy, dx, dy, ax, ay) * side(cx, cy, dx, dy, bx, by) < 0;
+}
+
+function boxAt({ x, y, width, height, side }: LabelRequest, distance: number, turn: number): Box {
   const angle = (turn * Math.PI) / 180;
   const across = Math.sin(angle);
   const down = (side === 'above' ? -1 : 1) * Math.cos(angle);
   const centreX = x + across * (distance + width / 2);
   const centreY = y + down * (distance + height / 2);
-  const box = { left: centreX - width / 2, right: centreX + width / 2, top: centreY - height / 2, bottom: centreY + height / 2 };
-  const nearX = Math.min(box.right, Math.max(box.left, x));
-  const nearY = Math.min(box.bottom, Math.max(box.top, y));
-  return { box, tie: Math.hypot(nearX - x, nearY - y) > TIED_FROM ? [x, y, nearX, nearY] : undefined };
+  return { left: centreX - width / 2, right: centreX + width / 2, top: centreY - height / 2, bottom: centreY + height / 2 };
+}
+
+/** The point of a box that lies nearest to a label's point. */
+function nearestTo({ x, y }: LabelRequest, box: Box): [number, number] {
+  return [Math.min(box.right, Math.max(box.left, x)), Math.min(box.bottom, Math.max(box.top, y))];
 }

@@ -23,12 +23,15 @@ export interface ProfilePlotOptions {
 
 const SIDE = { left: 66, right: 26 };
 const HEADER = 60;
-const LEADERS = 24;
+/** Height of the zone in which the leader lines run askew, from the projections to the frame. */
+const LEADERS = { least: 22, most: 64, slope: 0.22 };
 const AXIS = 46;
 const FOOTER = 26;
 const PLOT_HEIGHT = 300;
 const LABEL_SIZE = 11;
 const LINE_HEIGHT = 13;
+/** Angles beyond this are shown at both edges, degrees. */
+const EDGE = 179.95;
 /** More projections than this are not drawn; the lowest wells and the highest barriers go first. */
 const MOST_PROJECTIONS = 12;
 
@@ -89,8 +92,9 @@ interface Projection {
   readonly y: number;
   readonly scale: number;
   readonly caption: string;
-  readonly captionX: number;
   readonly captionY: number;
+  /** Height at which its leader line begins to run askew. */
+  readonly bend: number;
   readonly words: string;
 }
 
@@ -109,10 +113,11 @@ export function profileLayout(document: ProfileDocument, options: ProfilePlotOpt
   const strip = newmanStrip(
     shown.map(({ point }, n) => ({ x: x(shownAngle(point.angle)) - stripLeft, layout: layouts[n] })),
     width - 2 * stripLeft,
-    1,
   );
 
-  const top = HEADER + strip.height + (shown.length > 0 ? LEADERS : 0);
+  const askew = shown.map(({ point }, n) => Math.abs(stripLeft + strip.cards[n].x - x(shownAngle(point.angle))));
+  const leaderZone = Math.min(LEADERS.most, Math.max(LEADERS.least, LEADERS.slope * Math.max(0, ...askew)));
+  const top = HEADER + strip.height + (shown.length > 0 ? leaderZone : 0);
   const height = options.height ?? top + PLOT_HEIGHT + AXIS + FOOTER;
   const plot = { left: SIDE.left, right: width - SIDE.right, top, bottom: height - AXIS - FOOTER };
   if (plot.bottom - plot.top < 80 || innerWidth < 160)
@@ -167,7 +172,6 @@ export function profileLayout(document: ProfileDocument, options: ProfilePlotOpt
   const drawn = new Map(
     shown.map(({ point, shared }, n) => {
       const card = strip.cards[n];
-      const { bounds } = layouts[n];
       return [
         point,
         {
@@ -176,8 +180,8 @@ export function profileLayout(document: ProfileDocument, options: ProfilePlotOpt
           y: HEADER + card.y,
           scale: strip.scale,
           caption: shared ? `±${degreesText(Math.abs(point.angle))}` : degreesText(point.angle),
-          captionX: stripLeft + card.x + (strip.scale * (bounds.left + bounds.right)) / 2,
           captionY: HEADER + card.captionY,
+          bend: HEADER + strip.height + 4,
           words: describeNewman(layouts[n]),
         },
       ] as const;
@@ -204,7 +208,7 @@ function moleculeOf({ elements, formalCharges, bonds, name }: DocumentMolecule):
 
 /** -180 and 180 are the same angle; it stands at the right edge. */
 function shownAngle(angle: number): number {
-  return angle < -179.95 ? angle + 360 : angle;
+  return angle < -EDGE ? angle + 360 : angle;
 }
 
 /**
@@ -217,7 +221,11 @@ function projectedPoints(all: readonly ProfileStationaryPoint[]): { point: Profi
     const mirrored = (p: ProfileStationaryPoint): boolean =>
       p.angle !== 0 &&
       all.some(
-        (q) => q !== p && q.kind === p.kind && Math.abs(q.angle + p.angle) < 0.5 && Math.abs(q.relativeEnergy - p.relativeEnergy) < 0.005,
+        (q) =>
+          q !== p &&
+          q.kind === p.kind &&
+          degreesText(q.angle) === degreesText(-p.angle) &&
+          Math.abs(q.relativeEnergy - p.relativeEnergy) < 0.005,
       );
     chosen = all.filter((point) => point.angle >= 0 || !mirrored(point)).map((point) => ({ point, shared: mirrored(point) }));
   }
@@ -312,7 +320,7 @@ function axes(document: ProfileDocument, { plot, x, y, energyTicks, theme }: Pro
   const { elements } = document.molecule;
   const atoms = document.rotor.torsion.map((atom) => `${elements[atom]}${atom}`).join('–');
   const middle = (plot.top + plot.bottom) / 2;
-  const titleX = 17;
+  const titleX = 20;
   return [
     ...grid,
     element('rect', {
@@ -351,11 +359,11 @@ function leaders({ marks, plot, theme }: ProfileLayout): string[] {
   return marks.flatMap(({ x, y, label, projection }) => {
     if (!projection) return [];
     const start = projection.captionY + 5;
-    const bend = plot.top - LEADERS + 4;
+    const bend = projection.bend;
     const stop = label && label.box.left < x && label.box.right > x && label.box.bottom < y ? label.box.top - 2 : y - 7;
     return [
       element('path', {
-        d: `M ${coordinate(projection.captionX)} ${coordinate(start)} V ${coordinate(bend)} L ${coordinate(x)} ${coordinate(plot.top)}`,
+        d: `M ${coordinate(projection.x)} ${coordinate(start)} V ${coordinate(bend)} L ${coordinate(x)} ${coordinate(plot.top)}`,
         fill: 'none',
         stroke: theme.line,
         'stroke-width': 0.8,
@@ -412,7 +420,8 @@ function markers({ points }: ProfileDocument, { marks, x, y, theme }: ProfileLay
 
 /** A point at -180 is also the one at 180. */
 function atBothEdges(angle: number): number[] {
-  return angle < -179.95 ? [angle, angle + 360] : [angle];
+  if (angle < -EDGE) return [angle, angle + 360];
+  return angle > EDGE ? [angle - 360, angle] : [angle];
 }
 
 function markSymbol(kind: string, x: number, y: number, theme: FigureTheme): string {
@@ -449,10 +458,10 @@ function stationaryLabels(_document: ProfileDocument, { marks, theme }: ProfileL
 function projections({ marks, theme }: ProfileLayout): string[] {
   return marks.flatMap(({ point, projection }) => {
     if (!projection) return [];
-    const { x, y, scale, markup, caption, captionX, captionY } = projection;
+    const { x, y, scale, markup, caption, captionY } = projection;
     return [
       element('g', { transform: `translate(${coordinate(x)} ${coordinate(y)}) scale(${scale.toFixed(4)})` }, markup),
-      text(captionX, captionY, caption, { 'text-anchor': 'middle', 'font-size': 10.5, 'font-weight': 'bold', fill: theme[point.kind] }),
+      text(x, captionY, caption, { 'text-anchor': 'middle', 'font-size': 10.5, 'font-weight': 'bold', fill: theme[point.kind] }),
     ];
   });
 }

@@ -1,5 +1,6 @@
 /** Colours and fonts of a figure. */
 export interface FigureTheme {
+  /** The first face should exist where figures are turned into pixels: some renderers look no further. */
   readonly fontFamily: string;
   readonly background: string;
   readonly ink: string;
@@ -24,7 +25,7 @@ export interface FigureTheme {
  * that every text keeps a contrast of at least 4.5 to 1.
  */
 export const LIGHT_THEME: FigureTheme = {
-  fontFamily: "Helvetica, Arial, 'DejaVu Sans', sans-serif",
+  fontFamily: "'DejaVu Sans', Arial, Helvetica, sans-serif",
   background: '#ffffff',
   ink: '#1c2530',
   quiet: '#5a6673',
