@@ -1,1 +1,3 @@
-export {};
+export * from './engine.js';
+export * from './engine-config.js';
+export * from './qcschema.js';
