@@ -1,11 +1,9 @@
 /** A rotor that is driven through its angles: the torsion, the atoms that turn, and the frame in which its geometries are compared. */
 import {
   angle as bondAngle,
-  bondBetween,
   type Coordinates,
   degrees,
   type Molecule,
-  neighboursOf,
   sidesOfBond,
   TordialError,
   torsion,
@@ -13,13 +11,13 @@ import {
   turnAbout,
 } from '@tordial/geometry';
 import { type Constraint, largest } from './minimise.js';
-
-export type TorsionAtoms = readonly [number, number, number, number];
+import { checkTorsion } from './rotors/check-torsion.js';
+import type { Torsion } from './rotors/defining-torsion.js';
 
 export interface DrivenRotor {
   readonly atomCount: number;
   /** i, a, b, j: the angle is that of i-a-b-j, the axis a-b. */
-  readonly torsion: TorsionAtoms;
+  readonly torsion: Torsion;
   /** Atoms that turn with a and with b, both ascending, axis atoms included. */
   readonly sides: { readonly a: Int32Array; readonly b: Int32Array };
 }
@@ -27,36 +25,12 @@ export interface DrivenRotor {
 /** Largest angle within the torsion, degrees: beyond it the torsion angle has no meaning. */
 export const STRAIGHTEST = 175;
 
-/**
- * The rotor of a torsion. Throws `scan/torsion` when the four atoms are not a chain of bonded atoms, `scan/ring` when the middle bond lies in a ring.
- */
-export function drivenRotor(molecule: Molecule, atoms: TorsionAtoms): DrivenRotor {
-  for (const atom of atoms)
-    if (!(Number.isInteger(atom) && atom >= 0 && atom < molecule.atomCount))
-      throw new TordialError(
-        'scan/torsion',
-        `the torsion ${atoms.join('-')} names atom ${atom}, but the molecule has the atoms 0 to ${molecule.atomCount - 1}`,
-        { atom },
-      );
-  if (new Set(atoms).size < 4)
-    throw new TordialError('scan/torsion', `the torsion ${atoms.join('-')} names an atom twice; give four different atoms`, {
-      atom: atoms[0],
-    });
-  for (let n = 0; n < 3; n++)
-    if (bondBetween(molecule, atoms[n], atoms[n + 1]) < 0)
-      throw new TordialError(
-        'scan/torsion',
-        `atoms ${atoms[n]} and ${atoms[n + 1]} of the torsion ${atoms.join('-')} are not bonded; atom ${atoms[n]} is bonded to ${[...neighboursOf(molecule, atoms[n])].join(', ') || 'nothing'}`,
-        { atom: atoms[n] },
-      );
-  const sides = sidesOfBond(molecule, atoms[1], atoms[2]);
-  if (!sides)
-    throw new TordialError(
-      'scan/ring',
-      `the bond ${atoms[1]}-${atoms[2]} is part of a ring and cannot be turned; choose a torsion about a bond outside rings`,
-      { bond: bondBetween(molecule, atoms[1], atoms[2]) },
-    );
-  return { atomCount: molecule.atomCount, torsion: atoms, sides };
+/** The rotor of a torsion. Throws as `checkTorsion` does. */
+export function drivenRotor(molecule: Molecule, atoms: Torsion): DrivenRotor {
+  const torsion = checkTorsion(molecule, atoms);
+  const sides = sidesOfBond(molecule, torsion[1], torsion[2]);
+  if (!sides) throw new TordialError('torsion/ring', `the bond ${torsion[1]}-${torsion[2]} is part of a ring and cannot be turned`);
+  return { atomCount: molecule.atomCount, torsion, sides };
 }
 
 /** Torsion angle of the rotor, radian in (-pi, pi]. */

@@ -1,4 +1,11 @@
 export * from './drive.js';
+export { type DrivenRotor, drivenRotor } from './driven-rotor.js';
+export { type Constraint, type MinimiseOptions, minimise, type Preconditioner, type Relaxed, relax } from './minimise.js';
+export { type ModelHessian, modelHessian, preconditionerAt } from './model-hessian.js';
 export * from './potential.js';
+export * from './profile-curve.js';
 export * from './profile-document.js';
+export type { StationaryPoint } from './refined-extrema.js';
+export { type RelaxAtOptions, type RelaxedAt, relaxAt, relaxationAt } from './relax-at.js';
 export * from './rotors/index.js';
+export * from './scan-rotor.js';

@@ -21,8 +21,7 @@ import {
   solveFactorised,
 } from './block-cholesky.js';
 import type { Preconditioner } from './minimise.js';
-
-type Torsion = readonly [number, number, number, number];
+import type { Torsion } from './rotors/defining-torsion.js';
 
 /** The internal coordinates of a molecule that its model Hessian is made of, as rows of atoms. Made once a molecule (and rotor). */
 export interface ModelHessian {

@@ -1,10 +1,11 @@
 /** Relaxation of a molecule with one rotor held exactly at an angle. */
 import { type Coordinates, type Molecule, radians } from '@tordial/geometry';
 import { drive } from './drive.js';
-import { checkBent, type DrivenRotor, drivenRotor, heldAt, rigidTorque, type TorsionAtoms } from './driven-rotor.js';
+import { checkBent, type DrivenRotor, drivenRotor, heldAt, rigidTorque } from './driven-rotor.js';
 import { checkSizes, type MinimiseOptions, minimise, type Relaxed } from './minimise.js';
 import { type ModelHessian, modelHessian, preconditionerAt } from './model-hessian.js';
 import type { Calculation, Potential } from './potential.js';
+import type { Torsion } from './rotors/defining-torsion.js';
 
 export interface RelaxedAt extends Relaxed {
   /** dE/dphi along the relaxed path: the constraint's Lagrange multiplier, kcal/mol/radian. */
@@ -42,7 +43,7 @@ export function* relaxationAt(
 export function relaxAt(
   molecule: Molecule,
   potential: Potential,
-  torsion: TorsionAtoms,
+  torsion: Torsion,
   angle: number,
   x: Coordinates,
   options: RelaxAtOptions = {},
