@@ -9,7 +9,7 @@ import type { Molecule } from '../molecule.js';
 import type { AngleTable } from './bond-angles.js';
 import type { Shapes } from './shapes.js';
 import type { DistanceBounds } from './triangle-smoothing.js';
-import type { FlatBond } from './turning.js';
+import type { CrossedAxis, FlatBond } from './turning.js';
 
 const CONTACT_RADII: Readonly<Record<number, number>> = {
   1: 1.1,
@@ -30,6 +30,8 @@ const CONTACT_RADII: Readonly<Record<number, number>> = {
 const BOND_TOLERANCE = 0.01;
 const TORSION_TOLERANCE = 0.06;
 const NO_LIMIT = 1000;
+/** Usual length of a cumulated double bond, angstrom. */
+const CUMULATED = 1.29;
 const TRIGONAL = (2 * Math.PI) / 3;
 
 /** Van der Waals radius, angstrom. */
@@ -67,11 +69,12 @@ export interface IdealGeometry {
   readonly lengths: Float64Array;
   readonly angles: AngleTable;
   readonly flat: readonly FlatBond[];
+  readonly crossed: readonly CrossedAxis[];
   readonly apart: Uint8Array;
 }
 
 /** The bounds before smoothing. */
-export function distanceBounds(molecule: Molecule, { shapes, lengths, angles, flat, apart }: IdealGeometry): DistanceBounds {
+export function distanceBounds(molecule: Molecule, { shapes, lengths, angles, flat, crossed, apart }: IdealGeometry): DistanceBounds {
   const { atomCount: n, atomicNumbers, bonds, neighbours, rings } = molecule;
   const lower = new Float64Array(n * n);
   const upper = new Float64Array(n * n).fill(NO_LIMIT);
@@ -122,7 +125,8 @@ export function distanceBounds(molecule: Molecule, { shapes, lengths, angles, fl
       }
   }
   for (const [key, [l, u]] of spans) set(Math.floor(key / n), key % n, l, u);
-  for (const axis of flat) if (apart[axis.a * n + axis.b] > 1) setAxis(axis);
+  for (const { a, b, atA, atB, cis } of flat) if (cis !== null && apart[a * n + b] > 1) spanAxis(a, b, atA, atB, cis ? 0 : Math.PI);
+  for (const { a, b, atA, atB } of crossed) for (const p of atA) for (const q of atB) spanAxis(a, b, p, q, Math.PI / 2);
 
   for (let i = 0; i < n; i++)
     for (let j = 0; j < i; j++) {
@@ -161,16 +165,16 @@ export function distanceBounds(molecule: Molecule, { shapes, lengths, angles, fl
       for (const ring of ringBondsOf) if (ring.has(i) && ring.has(j) && ring.has(k) && ring.has(l)) return [0, 1.3];
     return [0, Math.PI];
   }
-  function setAxis({ a, b, atA, atB, cis }: FlatBond): void {
-    if (cis === null || apart[atA * n + atB] !== apart[a * n + b] + 2) return;
-    const length =
-      (lower[a * n + b] + upper[a * n + b]) / 2 < NO_LIMIT / 2 ? (lower[a * n + b] + upper[a * n + b]) / 2 : 1.3 * apart[a * n + b];
-    const [first, second] = [lengthOf(atA, a), lengthOf(atB, b)];
+  /** Distance of the substituents p and q at the ends of a straight axis a ... b, at a torsion angle. */
+  function spanAxis(a: number, b: number, p: number, q: number, torsion: number): void {
+    if (apart[p * n + q] !== apart[a * n + b] + 2) return;
+    const known = upper[a * n + b] < NO_LIMIT;
+    const length = known ? (lower[a * n + b] + upper[a * n + b]) / 2 : CUMULATED * apart[a * n + b];
+    const [first, second] = [lengthOf(p, a), lengthOf(q, b)];
     const [up, over] = [first * Math.sin(TRIGONAL), second * Math.sin(TRIGONAL)];
     const along = length - (first + second) * Math.cos(TRIGONAL);
-    const across = cis ? up - over : up + over;
-    const distance = Math.sqrt(along * along + across * across);
-    set(atA, atB, distance - 0.15, distance + 0.15);
+    const distance = Math.sqrt(along * along + up * up + over * over - 2 * up * over * Math.cos(torsion));
+    set(p, q, distance - 0.15, distance + 0.15);
   }
   /** A hydrogen on N or O in front of N, O or a halogen: a hydrogen bond is shorter than contact. */
   function mayBond(i: number, j: number): boolean {

@@ -55,7 +55,14 @@ function embedder(molecule: Molecule): (random: Random, attempts: number) => Coo
   const shapes = atomShapes(molecule);
   const lengths = bondLengths(molecule, shapes);
   const turns = turning(molecule, shapes);
-  const ideal: IdealGeometry = { shapes, lengths, angles: bondAngles(molecule, shapes), flat: turns.flat, apart: bondDistances(molecule) };
+  const ideal: IdealGeometry = {
+    shapes,
+    lengths,
+    angles: bondAngles(molecule, shapes),
+    flat: turns.flat,
+    crossed: turns.crossed,
+    apart: bondDistances(molecule),
+  };
   const bounds = distanceBounds(molecule, ideal);
   smoothTriangles(bounds);
   const volumes = signedVolumes(molecule, bounds);

@@ -13,7 +13,7 @@ const CONTACT_SHARE = 0.55;
 export function structureFault(
   molecule: Molecule,
   ideal: IdealGeometry,
-  { flat }: Turning,
+  { flat, crossed }: Turning,
   volumes: SignedVolumes,
   x: Float64Array,
 ): string | null {
@@ -32,6 +32,8 @@ export function structureFault(
     if (cis === null ? Math.abs(cosine) < 0.7 : cis ? cosine < 0.5 : cosine > -0.5)
       return `the flat bond ${a}-${b} is turned by ${Math.round((Math.acos(Math.max(-1, Math.min(1, cosine))) * 180) / Math.PI)} degrees`;
   }
+  for (const { a, b, atA, atB } of crossed)
+    if (Math.abs(Math.cos(torsion(x, atA[0], a, b, atB[0]))) > 0.7) return `the substituents of the axis ${a}-${b} do not stand across`;
   for (let m = 0; m < angles.count; m++) {
     const [i, j, k] = [angles.i[m], angles.j[m], angles.k[m]];
     if (shapes.steric[j] > 4) continue;

@@ -12,6 +12,8 @@ import type { Turning } from './turning.js';
 
 const BOND = 350;
 const ANGLE = 55;
+/** Cosine of an angle that counts as straight. */
+const STRAIGHT = -0.97;
 const OUT_OF_PLANE = 12;
 const VOLUME = 40;
 const CONTACT = 12;
@@ -115,6 +117,10 @@ export function strain(
         const close = 1.3 + cosine;
         sum += ANGLE * close * close;
         slope = 2 * ANGLE * close;
+      } else if (cosines[n] < STRAIGHT) {
+        // the square of a cosine's deviation is too soft at 180 degrees
+        sum += 2 * ANGLE * (1 + cosine);
+        slope = 2 * ANGLE;
       } else {
         const off = cosine - cosines[n];
         sum += stiffness[n] * off * off;

@@ -31,8 +31,17 @@ export interface TorsionTable {
   readonly c3: Float64Array;
 }
 
+/** An axis of two, four ... cumulated double bonds: the substituents at one end stand across those at the other. */
+export interface CrossedAxis {
+  readonly a: number;
+  readonly b: number;
+  readonly atA: readonly number[];
+  readonly atB: readonly number[];
+}
+
 export interface Turning {
   readonly flat: readonly FlatBond[];
+  readonly crossed: readonly CrossedAxis[];
   readonly torsions: TorsionTable;
 }
 
@@ -52,6 +61,7 @@ export function turning(molecule: Molecule, shapes: Shapes): Turning {
   const others = (i: number, without: number) =>
     Array.from(neighbours.atom.subarray(neighbours.start[i], neighbours.start[i + 1])).filter((j) => j !== without);
   const flat: FlatBond[] = [];
+  const crossed: CrossedAxis[] = [];
   const rows: { i: number; j: number; k: number; l: number; series: Series }[] = [];
   const stated = new Map(stereo.doubleBonds.map((entry) => [entry.a * molecule.atomCount + entry.b, entry]));
 
@@ -69,12 +79,14 @@ export function turning(molecule: Molecule, shapes: Shapes): Turning {
     if (steps === 0) continue;
     if (steps % 2 === 1 && steric[a.atom] === 3 && steric[b.atom] === 3)
       flat.push({ a: a.atom, b: b.atom, atA: atA[0], atB: atB[0], cis: senseOf(a.atom, b.atom, atA[0], atB[0]) });
+    if (steps % 2 === 0) crossed.push({ a: a.atom, b: b.atom, atA, atB });
     const v2 = (steps % 2 === 1 ? -1 : 1) * (40 / (atA.length * atB.length));
     addTorsions(a.atom, b.atom, atA, atB, () => ({ v2 }));
   }
   const shapesOf = rows.map(({ series }) => cubic(series));
   return {
     flat,
+    crossed,
     torsions: {
       count: rows.length,
       i: Int32Array.from(rows, ({ i }) => i),
