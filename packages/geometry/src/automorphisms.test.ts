@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { type AutomorphismOptions, automorphisms } from './automorphisms.js';
+import { type AutomorphismOptions, atomOrbits, automorphisms } from './automorphisms.js';
 import { bondBetween, createMolecule, type Molecule, type StereoTable } from './molecule.js';
 
 type Bond = readonly [number, number];
@@ -81,7 +81,7 @@ describe('automorphisms', () => {
       ],
     );
     expect(order(propane)).toBe(2);
-    expect(order(propane, { hydrogens: 'all' })).toBe(2 * 6 * 6 * 2);
+    expect(order(propane, { following: 'none' })).toBe(2 * 6 * 6 * 2);
     const neopentane = hydrocarbon(
       [0, 3, 3, 3, 3],
       [
@@ -92,7 +92,25 @@ describe('automorphisms', () => {
       ],
     );
     expect(order(neopentane)).toBe(24);
-    expect(order(neopentane, { hydrogens: 'all' })).toBe(24 * 6 ** 4);
+    expect(order(neopentane, { following: 'none' })).toBe(24 * 6 ** 4);
+  });
+
+  it('count the fluorines of CF3 unless terminal atoms follow', () => {
+    const hexafluoroethane = skeleton(
+      [6, 6, 9, 9, 9, 9, 9, 9],
+      [
+        [0, 1],
+        [0, 2],
+        [0, 3],
+        [0, 4],
+        [1, 5],
+        [1, 6],
+        [1, 7],
+      ],
+    );
+    expect(order(hexafluoroethane)).toBe(72);
+    expect(order(hexafluoroethane, { following: 'terminal atoms' })).toBe(2);
+    expect(order(skeleton([17, 17], [[0, 1]]), { following: 'terminal atoms' })).toBe(2);
   });
 
   it('say when the list is cut, and give generators of the whole all the same', () => {
@@ -105,7 +123,7 @@ describe('automorphisms', () => {
         [0, 4],
       ],
     );
-    const cut = automorphisms(neopentane, { hydrogens: 'all', limit: 50 });
+    const cut = automorphisms(neopentane, { following: 'none', limit: 50 });
     expect(cut.automorphisms).toHaveLength(50);
     expect(cut.complete).toBe(false);
     const small = automorphisms(neopentane);
@@ -223,5 +241,44 @@ describe('automorphisms', () => {
       [true, false],
       [true, false],
     ]);
+  });
+});
+
+describe('orbits of atoms', () => {
+  it('hold atoms on request', () => {
+    const ring = carbons(6, cycle(6));
+    expect([...atomOrbits(ring)]).toEqual([0, 0, 0, 0, 0, 0]);
+    expect([...atomOrbits(ring, { fixed: [0] })]).toEqual([0, 1, 2, 3, 2, 1]);
+    expect([...atomOrbits(ring, { fixed: [0, 1] })]).toEqual([0, 1, 2, 3, 4, 5]);
+  });
+  it('put hydrogens of one atom together, isotopes and held ones apart', () => {
+    const ethane = hydrocarbon([3, 3], [[0, 1]], [0, 0, 2]);
+    expect([...atomOrbits(ethane)]).toEqual([0, 1, 2, 3, 3, 5, 5, 5]);
+    expect([...atomOrbits(hydrocarbon([3, 3], [[0, 1]]))]).toEqual([0, 0, 2, 2, 2, 2, 2, 2]);
+    expect([...atomOrbits(hydrocarbon([3, 3], [[0, 1]]), { fixed: [2] })]).toEqual([0, 1, 2, 3, 3, 5, 5, 5]);
+  });
+  it('tell the rungs of a prism from its triangles, which refinement of neighbourhoods does not', () => {
+    // all six atoms of the prism are equivalent, but seen from one of them the neighbours are not
+    const prism = carbons(6, [...cycle(3), [3, 4], [4, 5], [3, 5], [0, 3], [1, 4], [2, 5]]);
+    expect([...atomOrbits(prism)]).toEqual([0, 0, 0, 0, 0, 0]);
+    expect([...atomOrbits(prism, { fixed: [0] })]).toEqual([0, 1, 1, 3, 4, 4]);
+  });
+  it('keep apart what only a permutation that inverts a centre exchanges', () => {
+    const stereo: StereoTable = { tetrahedral: [{ atom: 0, neighbours: [1, 2, 3, 4], sign: 1 }], doubleBonds: [], axes: [] };
+    // a centre with two chains C-C as 1-5 and 2-6, a fluorine and a chlorine, marked as if its chains differed in space
+    const marked = skeleton(
+      [6, 6, 6, 9, 17, 6, 6],
+      [
+        [0, 1],
+        [0, 2],
+        [0, 3],
+        [0, 4],
+        [1, 5],
+        [2, 6],
+      ],
+      { stereo },
+    );
+    expect([...atomOrbits(marked)]).toEqual([0, 1, 2, 3, 4, 5, 6]);
+    expect([...atomOrbits(marked, { stereo: 'ignored' })]).toEqual([0, 1, 1, 3, 4, 5, 5]);
   });
 });

@@ -21,10 +21,10 @@ export interface AutomorphismOptions {
   /** Permutations listed at most. */
   readonly limit?: number;
   /**
-   * `ordered` (default): one permutation for each different one of the heavy atoms, hydrogens of an atom in their order.
-   * `all`: permutations within methyls and the like as well, six times as many with each.
+   * Atoms that follow the one they sit on in ascending order instead of being permuted themselves: its `hydrogens` (default), all
+   * `terminal atoms` (fluorines of CF3, oxygens of a nitro group too), or `none`, which counts a methyl six times.
    */
-  readonly hydrogens?: 'ordered' | 'all';
+  readonly following?: 'hydrogens' | 'terminal atoms' | 'none';
 }
 
 export interface AutomorphismGroup {
@@ -42,8 +42,8 @@ type SymmetricGraph = Pick<Molecule, 'atomCount' | 'atomicNumbers' | 'isotopes' 
 
 /** The automorphisms of a molecule's graph, up to `limit` (1000) of them. */
 export function automorphisms(molecule: SymmetricGraph, options: AutomorphismOptions = {}): AutomorphismGroup {
-  const { limit = 1000, hydrogens = 'ordered' } = options;
-  const follows = hydrogens === 'ordered' ? hydrogensThatFollow(molecule) : new Uint8Array(molecule.atomCount);
+  const { limit = 1000, following = 'hydrogens' } = options;
+  const follows = followers(molecule, following);
   const levels = stabiliserChain(molecule, follows);
 
   const elements: Int32Array[] = [Int32Array.from({ length: molecule.atomCount }, (_, i) => i)];
@@ -54,7 +54,7 @@ export function automorphisms(molecule: SymmetricGraph, options: AutomorphismOpt
       for (let n = 0; n < inner && elements.length < limit; n++) elements.push(elements[n].map((i) => coset[i]));
   }
   const order = levels.reduce((product, transversal) => product * (transversal.length + 1), 1);
-  const withStereo = (image: Int32Array): Automorphism => ({ image, ...effectOnStereo(molecule.stereo, image) });
+  const withStereo = (image: Int32Array): Automorphism => ({ image, ...stereoEffect(molecule.stereo, image) });
   return {
     automorphisms: elements.map(withStereo),
     complete: elements.length === order,
@@ -77,14 +77,14 @@ export interface OrbitOptions {
  */
 export function atomOrbits(molecule: SymmetricGraph, { fixed = [], stereo = 'kept' }: OrbitOptions = {}): Int32Array {
   const held = molecule.symmetryClasses.slice();
-  const follows = hydrogensThatFollow(molecule);
-  // holding a hydrogen holds the atom it goes with
+  const follows = followers(molecule, 'terminal atoms');
+  // holding a terminal atom holds the atom it goes with
   fixed.forEach((atom, n) => {
     held[follows[atom] ? neighboursOf(molecule, atom)[0] : atom] = molecule.atomCount + n;
   });
   const open = { ...molecule, symmetryClasses: held };
   const free = stereo === 'ignored' || !hasStereo(molecule.stereo);
-  const { automorphisms: list, generators } = automorphisms(open, { limit: free ? 1 : 4096 });
+  const { automorphisms: list, generators } = automorphisms(open, { limit: free ? 1 : 4096, following: 'terminal atoms' });
   const orbit = Int32Array.from({ length: molecule.atomCount }, (_, i) => i);
   const join = (i: number, j: number): void => {
     const from = Math.max(orbit[i], orbit[j]);
@@ -93,27 +93,30 @@ export function atomOrbits(molecule: SymmetricGraph, { fixed = [], stereo = 'kep
   };
   for (const { image, preservesStereo } of [...generators, ...list])
     if (free || preservesStereo) for (let i = 0; i < image.length; i++) join(i, image[i]);
-  // hydrogens that follow one atom never change places above
+  // atoms that follow the same one never change places above
   for (let i = 0; i < molecule.atomCount; i++)
     if (follows[i] && !fixed.includes(i))
       for (const j of neighboursOf(molecule, neighboursOf(molecule, i)[0]))
-        if (follows[j] && molecule.isotopes[i] === molecule.isotopes[j] && !fixed.includes(j)) join(i, j);
+        if (follows[j] && held[i] === held[j] && !fixed.includes(j)) join(i, j);
   return orbit;
 }
 
 const hasStereo = ({ tetrahedral, doubleBonds, axes }: StereoTable): boolean => tetrahedral.length + doubleBonds.length + axes.length > 0;
 
-/** Hydrogens on one heavy atom: wherever that goes they follow, in ascending order. */
-function hydrogensThatFollow(molecule: SymmetricGraph): Uint8Array {
-  return Uint8Array.from({ length: molecule.atomCount }, (_, i) => {
+/** 1 for each atom that goes wherever the one it sits on goes. */
+function followers(molecule: SymmetricGraph, following: 'hydrogens' | 'terminal atoms' | 'none'): Uint8Array {
+  const { atomCount, atomicNumbers } = molecule;
+  return Uint8Array.from({ length: atomCount }, (_, i) => {
     const around = neighboursOf(molecule, i);
-    return molecule.atomicNumbers[i] === 1 && around.length === 1 && molecule.atomicNumbers[around[0]] !== 1 ? 1 : 0;
+    if (following === 'none' || around.length !== 1) return 0;
+    const hydrogen = atomicNumbers[i] === 1 && atomicNumbers[around[0]] !== 1;
+    return hydrogen || (following === 'terminal atoms' && neighboursOf(molecule, around[0]).length > 1) ? 1 : 0;
   });
 }
 
 /** For each level one permutation to every other image its base atom can take while all earlier base atoms stay. */
 function stabiliserChain(molecule: SymmetricGraph, follows: Uint8Array): Int32Array[][] {
-  const { atomCount, isotopes, symmetryClasses } = molecule;
+  const { atomCount, symmetryClasses } = molecule;
   const base = connectedOrder(molecule, follows);
   const image = new Int32Array(atomCount).fill(-1);
   const taken = new Uint8Array(atomCount);
@@ -168,18 +171,18 @@ function stabiliserChain(molecule: SymmetricGraph, follows: Uint8Array): Int32Ar
     const whole = image.slice();
     for (let i = 0; i < atomCount; i++) {
       if (follows[i]) continue;
-      const own = hydrogensOf(i);
-      const others = hydrogensOf(image[i]);
-      own.forEach((h, n) => {
-        whole[h] = others[n];
+      const own = followersOf(i);
+      const others = followersOf(image[i]);
+      own.forEach((j, n) => {
+        whole[j] = others[n];
       });
     }
     return whole;
   }
-  function hydrogensOf(i: number): Int32Array {
+  function followersOf(i: number): Int32Array {
     return neighboursOf(molecule, i)
-      .filter((h) => follows[h] === 1)
-      .sort((g, h) => isotopes[g] - isotopes[h] || g - h);
+      .filter((j) => follows[j] === 1)
+      .sort((p, q) => symmetryClasses[p] - symmetryClasses[q] || p - q);
   }
 }
 
@@ -195,8 +198,8 @@ function connectedOrder(molecule: SymmetricGraph, follows: Uint8Array): Int32Arr
   return Int32Array.from(order);
 }
 
-/** What a relabelling does to the stated stereochemistry. */
-function effectOnStereo(stereo: StereoTable, image: Int32Array): { preservesStereo: boolean; invertsStereo: boolean } {
+/** What the relabelling `image` does to the stereochemistry of a table, which must know every neighbour it names. */
+export function stereoEffect(stereo: StereoTable, image: Int32Array): Pick<Automorphism, 'preservesStereo' | 'invertsStereo'> {
   let preservesStereo = true;
   let invertsStereo = true;
   const compare = (here: number, there: number | undefined): void => {

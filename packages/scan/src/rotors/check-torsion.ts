@@ -2,7 +2,7 @@
 import { bondBetween, type Molecule, sidesOfBond, TordialError } from '@tordial/geometry';
 import { atomShape } from './atom-shape.js';
 import type { Torsion } from './defining-torsion.js';
-import { findRotors } from './rotor.js';
+import { findRotors, type Rotor } from './rotor.js';
 
 /** Torsions listed in a message at most. */
 const SUGGESTIONS = 8;
@@ -53,12 +53,14 @@ export function checkTorsion(molecule: Molecule, atoms: readonly number[]): Tors
   return torsion;
 }
 
-/** Rotors that share atoms with the request come first. */
+/** The rotor about the requested inner bond comes first, then those that share most atoms with the request. */
 function suggestions(molecule: Molecule, atoms: readonly number[]): string {
   const rotors = findRotors(molecule);
   if (rotors.length === 0) return 'the molecule has no bond that turns';
-  const shared = (torsion: Torsion) => torsion.filter((atom) => atoms.includes(atom)).length;
-  const ranked = rotors.toSorted((p, q) => shared(q.torsion) - shared(p.torsion));
+  const [, j, k] = atoms;
+  const nearness = ({ axis, torsion }: Rotor) =>
+    (axis.includes(j) && axis.includes(k) ? 4 : 0) + torsion.filter((atom) => atoms.includes(atom)).length;
+  const ranked = rotors.toSorted((p, q) => nearness(q) - nearness(p));
   const listed = ranked.slice(0, SUGGESTIONS).map(({ torsion, kind }) => `${torsion.join(',')} (${kind})`);
   const more = ranked.length > SUGGESTIONS ? ` and ${ranked.length - SUGGESTIONS} more` : '';
   return `torsions that can be driven: ${listed.join('; ')}${more}`;

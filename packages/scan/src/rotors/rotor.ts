@@ -1,11 +1,12 @@
 /** Bonds whose two sides turn against each other. */
-import { atomOrbits, automorphisms, bondBetween, type Molecule, neighboursOf, sidesOfBond } from '@tordial/geometry';
+import { atomOrbits, type Molecule, neighboursOf, sidesOfBond } from '@tordial/geometry';
 import { atomShape } from './atom-shape.js';
 import { bondKinds, type RotorKind } from './bond-kind.js';
 import { type Torsion, torsionOfAxis } from './defining-torsion.js';
+import { type RotorEquivalence, rotorEquivalence } from './equivalence.js';
 import { profilePeriod, symmetryNumberOfSide } from './symmetry-number.js';
 
-export interface Rotor {
+export interface Rotor extends RotorEquivalence {
   /** The two atoms of the bond. */
   readonly axis: readonly [number, number];
   /** The four atoms whose torsion angle describes it; the inner two are the axis in its order. */
@@ -18,12 +19,6 @@ export interface Rotor {
   readonly symmetryNumbers: readonly [number, number];
   /** Degrees after which the profile of two rigid, symmetric sides repeats: 120 for ethane, 60 for toluene, 360 without symmetry. */
   readonly periodicity: number;
-  /** Rotors that the molecule's symmetry makes equivalent share a number; counted from 0 in the order of the list. */
-  readonly equivalenceClass: number;
-  /** Takes the first rotor of the class to this one: atom i of the molecule plays the part of atom `relabelling[i]`. */
-  readonly relabelling: Int32Array;
-  /** The relabelling turns every stereocentre over, so that this rotor's profile at phi is the first one's at -phi. */
-  readonly mirrored: boolean;
 }
 
 /**
@@ -36,14 +31,14 @@ export interface Rotor {
 export function findRotors(molecule: Molecule): Rotor[] {
   const { bonds } = molecule;
   const kindOf = bondKinds(molecule);
-  const found: Omit<Rotor, 'equivalenceClass' | 'relabelling' | 'mirrored'>[] = [];
+  const found: Omit<Rotor, keyof RotorEquivalence>[] = [];
   for (let n = 0; n < bonds.count; n++)
     if (bonds.order[n] === 1 && canTurn(molecule, bonds.a[n], bonds.b[n])) {
       const sides = sidesOfBond(molecule, bonds.a[n], bonds.b[n]);
       if (sides) found.push(describe(molecule, [bonds.a[n], bonds.b[n]], sides, kindOf));
     }
   found.sort((p, q) => p.axis[0] - q.axis[0] || p.axis[1] - q.axis[1]);
-  const classes = equivalence(
+  const classes = rotorEquivalence(
     molecule,
     found.map(({ axis }) => axis),
   );
@@ -90,7 +85,7 @@ function describe(
   axis: readonly [number, number],
   sides: { a: Int32Array; b: Int32Array },
   kindOf: ReturnType<typeof bondKinds>,
-): Omit<Rotor, 'equivalenceClass' | 'relabelling' | 'mirrored'> {
+): Omit<Rotor, keyof RotorEquivalence> {
   const [a, b] = axis;
   const orbits = atomOrbits(molecule, { fixed: axis });
   const symmetryNumbers = [symmetryNumberOfSide(molecule, a, b, orbits), symmetryNumberOfSide(molecule, b, a, orbits)] as const;
@@ -102,41 +97,6 @@ function describe(
     symmetryNumbers,
     periodicity: profilePeriod(...symmetryNumbers),
   };
-}
-
-type Equivalence = Pick<Rotor, 'equivalenceClass' | 'relabelling' | 'mirrored'>;
-
-/** Permutations listed at most when stereochemistry allows only some of them; beyond, equivalent rotors may be told apart. */
-const GROUP_LIMIT = 4096;
-
-function equivalence(molecule: Molecule, axes: readonly (readonly [number, number])[]): Equivalence[] {
-  const { tetrahedral, doubleBonds, axes: stereoAxes } = molecule.stereo;
-  const stereo = tetrahedral.length + doubleBonds.length + stereoAxes.length > 0;
-  const { generators, automorphisms: list } = automorphisms(molecule, { limit: stereo ? GROUP_LIMIT : 1 });
-  const usable = [...generators, ...list.slice(1)].filter(({ preservesStereo, invertsStereo }) => preservesStereo || invertsStereo);
-  const rotorOfBond = new Map(axes.map(([a, b], n) => [bondBetween(molecule, a, b), n]));
-  const result: (Equivalence | undefined)[] = axes.map(() => undefined);
-  let classes = 0;
-  for (let first = 0; first < axes.length; first++) {
-    if (result[first]) continue;
-    const queue = [first];
-    result[first] = { equivalenceClass: classes++, relabelling: identity(molecule), mirrored: false };
-    for (const at of queue) {
-      const here = result[at];
-      if (!here) continue;
-      for (const { image, preservesStereo } of usable) {
-        const target = rotorOfBond.get(bondBetween(molecule, image[axes[at][0]], image[axes[at][1]]));
-        if (target === undefined || result[target]) continue;
-        queue.push(target);
-        result[target] = {
-          equivalenceClass: here.equivalenceClass,
-          relabelling: here.relabelling.map((i) => image[i]),
-          mirrored: here.mirrored !== !preservesStereo,
-        };
-      }
-    }
-  }
-  return result.flatMap((entry) => entry ?? []);
 }
 
 const identity = ({ atomCount }: Molecule): Int32Array => Int32Array.from({ length: atomCount }, (_, i) => i);
