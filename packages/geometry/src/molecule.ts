@@ -89,8 +89,7 @@ const NO_STEREO: StereoTable = { tetrahedral: [], doubleBonds: [], axes: [] };
 /** Builds a molecule from its parts. Throws `molecule/bond` when a bond names an atom that is not there, itself, or a pair twice. */
 export function createMolecule(parts: MoleculeParts): Molecule {
   const atomCount = parts.atomicNumbers.length;
-  const bonds = bondTable(parts.bonds, atomCount);
-  const neighbours = adjacency(atomCount, bonds);
+  const { bonds, neighbours } = createGraph(atomCount, parts.bonds);
   const graph = {
     atomCount,
     atomicNumbers: Uint8Array.from(parts.atomicNumbers),
@@ -106,6 +105,12 @@ export function createMolecule(parts: MoleculeParts): Molecule {
     stereo: parts.stereo ?? NO_STEREO,
     name: parts.name ?? '',
   };
+}
+
+/** Bond table and neighbour rows of `atomCount` atoms from rows of atom, atom, order. Throws `molecule/bond` as `createMolecule` does. */
+export function createGraph(atomCount: number, rows: MoleculeParts['bonds']): Pick<Molecule, 'bonds' | 'neighbours'> {
+  const bonds = bondTable(rows, atomCount);
+  return { bonds, neighbours: adjacency(atomCount, bonds) };
 }
 
 /** The part of a molecule that rings and symmetry are perceived from. */

@@ -1,0 +1,463 @@
+/**
+ * Which atoms, double bonds and cumulated axes of a molecule are stereogenic.
+ *
+ * An element of stereo is real when no symmetry of the structure, all other configurations kept, exchanges its ligands oddly. With
+ * constitutionally different ligands that is plain; ligands that differ only in configuration, and centres that depend on one another
+ * across a ring, are decided by comparing refined colourings of the two exchanged arrangements (individualisation and refinement:
+ * B. D. McKay, Congressus Numerantium 30, 45 (1981)).
+ */
+
+import { elementSymbol } from './elements.js';
+import type { Note } from './errors.js';
+import { augment } from './matching.js';
+import type { AxialStereo, DoubleBondStereo, Molecule, StereoTable, TetrahedralCentre } from './molecule.js';
+import { bondBetween, neighboursOf } from './molecule.js';
+
+/** In a ligand list: a lone pair. */
+const LONE_PAIR = -1;
+
+/** Rings below this size hold their double bonds cis. */
+export const SMALLEST_RING_WITH_TRANS = 8;
+
+/** Colourings that one question may cost before the input's word is taken for it. */
+const COLOURING_BUDGET = 200;
+
+type Sign = -1 | 0 | 1;
+
+/**
+ * One element of stereo. `ligands` are four: all of a tetrahedral centre (ascending, lone pair last), or two at each end of a bond or axis
+ * (each pair ascending, lone pair last). `sign` is the handedness of a centre, +1 for cis of a double bond, the sign of an axis' torsion.
+ */
+interface StereoElement {
+  readonly kind: 'tetrahedral' | 'doubleBond' | 'axis';
+  readonly atoms: readonly number[];
+  readonly ligands: readonly number[];
+  readonly sign: Sign;
+  /** Listed only when the input states it: nitrogen that inverts, N-H of an imine. */
+  readonly onlyIfStated: boolean;
+}
+
+/**
+ * The stereo table of a molecule, from `molecule.stereo` taken as what the input states: stated elements that are not stereogenic are left
+ * out, stereogenic ones that are not stated are added as open (sign 0, cis null).
+ */
+export function completeStereo(molecule: Molecule): StereoTable {
+  const candidates = stereoCandidates(molecule);
+  const kept = new Set<StereoElement>();
+
+  // ligands that differ by constitution, then those that differ by the configurations already found, until nothing is added
+  const base = molecule.symmetryClasses;
+  let colours = base;
+  for (let grown = true; grown; ) {
+    grown = false;
+    for (const element of candidates)
+      if (!kept.has(element) && (element.sign !== 0 || !element.onlyIfStated) && distinct(molecule, element, colours)) {
+        kept.add(element);
+        grown = true;
+      }
+    if (grown) colours = refine(molecule, base, [...kept]).colours;
+  }
+
+  // what is left has equal ligands: stated elements stay when exchanging them gives another structure
+  let stated = candidates.filter((element) => !kept.has(element) && element.sign !== 0 && !exchangesLeaves(molecule, element));
+  for (let before = -1; stated.length !== before; ) {
+    before = stated.length;
+    const all = [...kept, ...stated];
+    stated = stated.filter((element) => isStereogenic(molecule, element, colours, all));
+  }
+  for (const element of stated) kept.add(element);
+  for (const element of openRingCentres(molecule, candidates, kept, colours)) kept.add(element);
+  return toTable(candidates.filter((element) => kept.has(element)));
+}
+
+/**
+ * Everything in a molecule that could be stereogenic by its valence, all open: what a reader of coordinates or wedges asks for. Nitrogen in
+ * three-membered rings and N-H of imines are left out, for they invert and a geometry does not state them.
+ */
+export function possibleStereo(molecule: Molecule): StereoTable {
+  const open = { ...molecule, stereo: { tetrahedral: [], doubleBonds: [], axes: [] } };
+  const states = ({ kind, atoms, onlyIfStated }: StereoElement) =>
+    !onlyIfStated || (kind === 'tetrahedral' && !molecule.rings.some((ring) => ring.length === 3 && ring.includes(atoms[0])));
+  return toTable(stereoCandidates(open).filter(states));
+}
+
+/** A note for each stereocentre, double bond and axis that the input leaves open, naming the atoms; code `stereo/open`. */
+export function openStereo(molecule: Molecule): Note[] {
+  const name = (i: number) => `${elementSymbol(molecule.atomicNumbers[i])}${i}`;
+  const { tetrahedral, doubleBonds, axes } = molecule.stereo;
+  const note = (message: string, atom: number): Note => ({ code: 'stereo/open', message, place: { atom } });
+  return [
+    ...tetrahedral
+      .filter((centre) => centre.sign === 0)
+      .map((centre) => note(`the stereocentre ${name(centre.atom)} is not specified; one form was chosen`, centre.atom)),
+    ...doubleBonds
+      .filter((bond) => bond.cis === null)
+      .map((bond) => note(`the double bond ${name(bond.a)}=${name(bond.b)} is not specified as cis or trans; one form was chosen`, bond.a)),
+    ...axes
+      .filter((axis) => axis.sign === 0)
+      .map((axis) => note(`the axis ${name(axis.a)}...${name(axis.b)} is not specified; one form was chosen`, axis.a)),
+  ];
+}
+
+/** Every element that could be stereogenic by its valence, with the sign that the molecule's table states for it. */
+function stereoCandidates(molecule: Molecule): StereoElement[] {
+  const { atomCount, atomicNumbers, bonds } = molecule;
+  const signs = new Map(molecule.stereo.tetrahedral.map((centre) => [centre.atom, centre.sign]));
+  const cis = new Map(molecule.stereo.doubleBonds.map(({ a, b, cis }) => [`${a} ${b}`, cis === null ? 0 : cis ? 1 : -1]));
+  const axes = new Map(molecule.stereo.axes.map(({ a, b, sign }) => [`${a} ${b}`, sign]));
+  const elements: StereoElement[] = [];
+  for (let i = 0; i < atomCount; i++) {
+    const sign = signs.get(i) ?? 0;
+    const kind = tetrahedralKind(molecule, i, sign !== 0);
+    if (kind === 'none') continue;
+    const ligands = [...neighboursOf(molecule, i)];
+    if (ligands.length === 3) ligands.push(LONE_PAIR);
+    elements.push({ kind: 'tetrahedral', atoms: [i], ligands, sign, onlyIfStated: kind === 'onlyIfStated' });
+  }
+  for (let n = 0; n < bonds.count; n++) {
+    if (bonds.order[n] !== 2) continue;
+    const [a, b] = [bonds.a[n], bonds.b[n]];
+    const ends = [endLigands(molecule, a, b), endLigands(molecule, b, a)];
+    if (!ends[0] || !ends[1]) continue;
+    const sign = (cis.get(`${a} ${b}`) ?? 0) as Sign;
+    const imineHydrogen = ends.some((end) => end?.[1] === LONE_PAIR && atomicNumbers[end[0]] === 1);
+    if (smallestRing(molecule, a, b) < SMALLEST_RING_WITH_TRANS) continue;
+    if (sign === 0 && canAlternate(molecule, a, b)) continue;
+    elements.push({ kind: 'doubleBond', atoms: [a, b], ligands: [...ends[0], ...ends[1]], sign, onlyIfStated: imineHydrogen });
+  }
+  for (const { a, beforeA, b, beforeB } of evenCumulenes(molecule)) {
+    const ends = [endLigands(molecule, a, beforeA), endLigands(molecule, b, beforeB)];
+    if (ends[0] && ends[1])
+      elements.push({
+        kind: 'axis',
+        atoms: [a, b],
+        ligands: [...ends[0], ...ends[1]],
+        sign: axes.get(`${a} ${b}`) ?? 0,
+        onlyIfStated: false,
+      });
+  }
+  return elements;
+}
+
+function tetrahedralKind(molecule: Molecule, i: number, stated: boolean): 'none' | 'always' | 'onlyIfStated' {
+  const { atomicNumbers, formalCharges, neighbours, bonds } = molecule;
+  const degree = neighbours.start[i + 1] - neighbours.start[i];
+  let valence = 0;
+  for (let n = neighbours.start[i]; n < neighbours.start[i + 1]; n++) valence += bonds.order[neighbours.bond[n]];
+  const charge = formalCharges[i];
+  const when = (condition: boolean) => (condition ? 'always' : 'none');
+  switch (atomicNumbers[i]) {
+    case 5:
+    case 6:
+    case 14:
+    case 32:
+    case 50:
+      return when(degree === 4);
+    case 7:
+      if (degree === 3 && charge === 0 && valence === 3) return isHeldNitrogen(molecule, i) ? 'onlyIfStated' : 'none';
+      return when(degree === 4);
+    case 15:
+    case 33:
+    case 51:
+      return when(degree === 4 || (degree === 3 && valence === 3 && charge === 0));
+    case 16:
+    case 34:
+    case 52:
+      return when((degree === 3 && valence + charge === 4) || (degree === 4 && valence + charge === 6));
+    default:
+      return stated && degree === 4 ? 'onlyIfStated' : 'none';
+  }
+}
+
+/** A nitrogen that does not invert freely: in a three-membered ring, or at the head of a bicycle whose rings share more than one bond. */
+function isHeldNitrogen({ rings }: Molecule, i: number): boolean {
+  const own = rings.filter((ring) => ring.includes(i));
+  if (own.some((ring) => ring.length === 3)) return true;
+  return own.some((ring, n) => own.slice(0, n).some((other) => ring.filter((atom) => other.includes(atom)).length > 2));
+}
+
+/** The two ligands at one end of a double bond; null where the end has no two places for them. */
+function endLigands(molecule: Molecule, end: number, other: number): [number, number] | null {
+  const { atomicNumbers, neighbours, bonds } = molecule;
+  const ligands: number[] = [];
+  for (let n = neighbours.start[end]; n < neighbours.start[end + 1]; n++) {
+    if (neighbours.atom[n] === other) continue;
+    if (bonds.order[neighbours.bond[n]] !== 1) return null;
+    ligands.push(neighbours.atom[n]);
+  }
+  const z = atomicNumbers[end];
+  if (ligands.length === 2 && (z === 6 || z === 7 || z === 14 || z === 32)) return [ligands[0], ligands[1]];
+  if (ligands.length === 1 && z === 7) return [ligands[0], LONE_PAIR];
+  return null;
+}
+
+/** Length of the smallest ring that holds a bond; infinity outside rings. */
+function smallestRing({ rings }: Molecule, a: number, b: number): number {
+  for (const ring of rings) {
+    const at = ring.indexOf(a);
+    if (at >= 0 && (ring[(at + 1) % ring.length] === b || ring[(at + ring.length - 1) % ring.length] === b)) return ring.length;
+  }
+  return Number.POSITIVE_INFINITY;
+}
+
+/** Whether another way of writing the alternating bonds makes a ring's double bond single (porphyrins, annulenes). */
+function canAlternate(molecule: Molecule, a: number, b: number): boolean {
+  const { atomCount, bonds } = molecule;
+  if (smallestRing(molecule, a, b) === Number.POSITIVE_INFINITY) return false;
+  const mate = new Int32Array(atomCount).fill(-1);
+  const around: number[][] = Array.from({ length: atomCount }, () => []);
+  for (let n = 0; n < bonds.count; n++)
+    if (bonds.order[n] === 2) {
+      mate[bonds.a[n]] = bonds.b[n];
+      mate[bonds.b[n]] = bonds.a[n];
+    }
+  for (let n = 0; n < bonds.count; n++) {
+    const [p, q] = [bonds.a[n], bonds.b[n]];
+    if (mate[p] < 0 || mate[q] < 0 || bonds.order[n] === 3 || (p === Math.min(a, b) && q === Math.max(a, b))) continue;
+    around[p].push(q);
+    around[q].push(p);
+  }
+  mate[a] = -1;
+  mate[b] = -1;
+  return augment(a, around, mate);
+}
+
+/** Chains of two, four, ... cumulated double bonds, from end to end with the atom before each end; a below b. */
+function evenCumulenes({ atomCount, neighbours, bonds }: Molecule): { a: number; beforeA: number; b: number; beforeB: number }[] {
+  const doubles = (i: number) => {
+    const partners: number[] = [];
+    for (let n = neighbours.start[i]; n < neighbours.start[i + 1]; n++)
+      if (bonds.order[neighbours.bond[n]] === 2) partners.push(neighbours.atom[n]);
+    return partners;
+  };
+  const degree = (i: number) => neighbours.start[i + 1] - neighbours.start[i];
+  const found: { a: number; beforeA: number; b: number; beforeB: number }[] = [];
+  for (let a = 0; a < atomCount; a++) {
+    const first = doubles(a);
+    if (first.length !== 1) continue;
+    let before = a;
+    let at = first[0];
+    let length = 1;
+    for (let next = doubles(at); next.length === 2 && degree(at) === 2 && length < atomCount; next = doubles(at)) {
+      [before, at] = [at, next[0] === before ? next[1] : next[0]];
+      length++;
+    }
+    if (length % 2 === 0 && a < at && doubles(at).length === 1) found.push({ a, beforeA: first[0], b: at, beforeB: before });
+  }
+  return found;
+}
+
+/** Whether the ligands of an element differ in the given colouring. Oxo, hydroxy and oxide on P, S and As exchange protons and count as one. */
+function distinct(molecule: Molecule, element: StereoElement, colours: ArrayLike<number>): boolean {
+  const colour = (i: number) => (i === LONE_PAIR ? -1 : colours[i]);
+  const [p, q, r, s] = element.ligands.map(colour);
+  if (element.kind !== 'tetrahedral') return p !== q && r !== s;
+  if (p === q || p === r || p === s || q === r || q === s || r === s) return false;
+  return element.sign !== 0 || !exchangesProton(molecule, element);
+}
+
+function exchangesProton({ atomicNumbers, neighbours }: Molecule, { atoms, ligands }: StereoElement): boolean {
+  if (![15, 16, 33, 34].includes(atomicNumbers[atoms[0]])) return false;
+  const oxo = (i: number, z: number) => {
+    if (i === LONE_PAIR || atomicNumbers[i] !== z) return false;
+    for (let n = neighbours.start[i]; n < neighbours.start[i + 1]; n++)
+      if (neighbours.atom[n] !== atoms[0] && atomicNumbers[neighbours.atom[n]] !== 1) return false;
+    return true;
+  };
+  return [8, 16, 34].some((z) => ligands.filter((i) => oxo(i, z)).length > 1);
+}
+
+/** Whether two ligands are equal atoms without further neighbours, the commonest case of all. */
+function exchangesLeaves({ symmetryClasses: classes, neighbours }: Molecule, { kind, ligands }: StereoElement): boolean {
+  const leaf = (i: number) => i >= 0 && neighbours.start[i + 1] - neighbours.start[i] === 1;
+  const equal = (p: number, q: number) => leaf(p) && leaf(q) && classes[p] === classes[q];
+  if (kind !== 'tetrahedral') return equal(ligands[0], ligands[1]) || equal(ligands[2], ligands[3]);
+  return ligands.some((p, n) => ligands.slice(0, n).some((q) => equal(p, q)));
+}
+
+/** Compares the arrangement as it is with each arrangement that differs by an odd exchange of equal ligands. */
+function isStereogenic(molecule: Molecule, element: StereoElement, colours: ArrayLike<number>, all: readonly StereoElement[]): boolean {
+  const others = all.filter((other) => other !== element);
+  const budget = { left: COLOURING_BUDGET };
+  const own = certificate(molecule, marked(molecule, element.ligands), others, budget);
+  for (const arrangement of oddArrangements(element, colours))
+    if (certificate(molecule, marked(molecule, arrangement), others, budget) === own) return false;
+  return true;
+}
+
+function marked(molecule: Molecule, ligands: readonly number[]): Int32Array {
+  const colours = molecule.symmetryClasses.map((c) => 8 * c);
+  ligands.forEach((ligand, n) => {
+    if (ligand !== LONE_PAIR) colours[ligand] += n + 1;
+  });
+  return colours;
+}
+
+/** Ligand orders that put equally coloured ligands in each other's place by an odd permutation. */
+function oddArrangements({ kind, ligands }: StereoElement, colours: ArrayLike<number>): number[][] {
+  const colour = (i: number) => (i === LONE_PAIR ? -1 : colours[i]);
+  const orders =
+    kind === 'tetrahedral'
+      ? ODD_ORDERS
+      : [
+          [1, 0, 2, 3],
+          [0, 1, 3, 2],
+        ];
+  return orders
+    .map((order) => order.map((n) => ligands[n]))
+    .filter((arrangement) => arrangement.every((ligand, n) => colour(ligand) === colour(ligands[n])));
+}
+
+const ODD_ORDERS = [
+  [1, 0, 2, 3],
+  [2, 1, 0, 3],
+  [3, 1, 2, 0],
+  [0, 2, 1, 3],
+  [0, 3, 2, 1],
+  [0, 1, 3, 2],
+  [1, 2, 3, 0],
+  [1, 3, 0, 2],
+  [2, 0, 3, 1],
+  [2, 3, 1, 0],
+  [3, 0, 1, 2],
+  [3, 2, 0, 1],
+];
+
+interface Colouring {
+  readonly colours: Int32Array;
+  /** The same text for colourings that a symmetry of the structure carries into one another. */
+  readonly trace: string;
+}
+
+/** Refines colours by those of the neighbours and by the configurations that they make definite, until nothing splits. */
+function refine(molecule: Molecule, start: ArrayLike<number>, elements: readonly StereoElement[]): Colouring {
+  const { atomCount, neighbours } = molecule;
+  let colours = Int32Array.from(start);
+  let count = new Set(colours).size;
+  const trace: string[] = [];
+  for (;;) {
+    const marks: string[] = new Array(atomCount).fill('');
+    for (const element of elements) {
+      const sense = senseInColours(element, colours);
+      if (sense !== 0) for (const atom of element.atoms) marks[atom] += sense > 0 ? 'p' : 'm';
+    }
+    const keys: string[] = [];
+    for (let i = 0; i < atomCount; i++) {
+      const around = Array.from(neighbours.atom.subarray(neighbours.start[i], neighbours.start[i + 1]), (j) => colours[j]).sort(
+        (p, q) => p - q,
+      );
+      keys.push(`${colours[i]}:${around.join()}${marks[i]}`);
+    }
+    const order = [...new Set(keys)].sort();
+    const rank = new Map(order.map((key, n) => [key, n]));
+    const finer = Int32Array.from(keys, (key) => rank.get(key) ?? -1);
+    const sizes = new Int32Array(order.length);
+    for (const colour of finer) sizes[colour]++;
+    trace.push(order.map((key, n) => `${key}x${sizes[n]}`).join(' '));
+    colours = finer;
+    if (order.length === count) return { colours, trace: trace.join('\n') };
+    count = order.length;
+  }
+}
+
+/** Handedness of an element by the colours of its ligands; 0 where it is open or the colours leave ligands equal. */
+function senseInColours({ kind, ligands, sign }: StereoElement, colours: ArrayLike<number>): number {
+  if (sign === 0) return 0;
+  const [p, q, r, s] = ligands.map((i) => (i === LONE_PAIR ? -1 : colours[i]));
+  const pairs = kind === 'tetrahedral' ? [p - q, p - r, p - s, q - r, q - s, r - s] : [p - q, r - s];
+  let sense: number = sign;
+  for (const difference of pairs) {
+    if (difference === 0) return 0;
+    if (difference > 0) sense = -sense;
+  }
+  return sense;
+}
+
+/** Invariant of a coloured structure with configurations: where equal ligands leave one indefinite, each choice is tried and the least text kept. */
+function certificate(molecule: Molecule, start: ArrayLike<number>, elements: readonly StereoElement[], budget: { left: number }): string {
+  budget.left--;
+  const { colours, trace } = refine(molecule, start, elements);
+  const indefinite = elements.filter(
+    (element) => element.sign !== 0 && senseInColours(element, colours) === 0 && tied(element, colours).length > 0,
+  );
+  if (indefinite.length === 0 || budget.left <= 0) return trace;
+  const first = Math.min(...indefinite.map((element) => colours[element.atoms[0]]));
+  let least = '';
+  for (const element of indefinite) {
+    if (colours[element.atoms[0]] !== first) continue;
+    for (const ligand of tied(element, colours)) {
+      const split = colours.map((c) => 2 * c);
+      split[ligand]++;
+      const text = certificate(molecule, split, elements, budget);
+      if (least === '' || text < least) least = text;
+    }
+  }
+  return `${trace}\n${least}`;
+}
+
+function tied({ kind, ligands }: StereoElement, colours: ArrayLike<number>): number[] {
+  const rivals = (n: number) => (kind === 'tetrahedral' ? [0, 1, 2, 3].filter((m) => m !== n) : [n ^ 1]);
+  return ligands.filter(
+    (ligand, n) => ligand !== LONE_PAIR && rivals(n).some((m) => ligands[m] >= 0 && colours[ligands[m]] === colours[ligand]),
+  );
+}
+
+/**
+ * Ring centres that the input leaves open and that depend on another of their ring: cis/trans-1,4-dimethylcyclohexane, decalin. Heads of
+ * small bicycles, whose configuration the cage fixes, are none.
+ */
+function openRingCentres(
+  molecule: Molecule,
+  candidates: readonly StereoElement[],
+  kept: ReadonlySet<StereoElement>,
+  colours: Int32Array,
+): StereoElement[] {
+  const { rings } = molecule;
+  const pairOf = (element: StereoElement): number[] | null => {
+    if (element.kind !== 'tetrahedral' || element.onlyIfStated || kept.has(element) || exchangesLeaves(molecule, element)) return null;
+    const pair = tied(element, colours);
+    const centre = element.atoms[0];
+    return pair.length === 2 && rings.some((ring) => ring.includes(centre) && ring.includes(pair[0]) && ring.includes(pair[1]))
+      ? pair
+      : null;
+  };
+  const dependent = candidates.filter(
+    (element) => element.kind === 'tetrahedral' && (pairOf(element) !== null || (kept.has(element) && tied(element, colours).length === 2)),
+  );
+  return dependent.filter((element) => {
+    const pair = pairOf(element);
+    if (!pair) return false;
+    const [centre] = element.atoms;
+    const split = colours.map((c) => 2 * c);
+    split[pair[0]]++;
+    const finer = refine(molecule, split, []).colours;
+    const ringBonds = element.ligands.filter(
+      (ligand) =>
+        ligand >= 0 &&
+        rings.some(
+          (ring) => ring.includes(centre) && ring.includes(ligand) && smallestRing(molecule, centre, ligand) < Number.POSITIVE_INFINITY,
+        ),
+    ).length;
+    return dependent.some(
+      (other) =>
+        other !== element &&
+        rings.some((ring) => ring.includes(centre) && ring.includes(other.atoms[0])) &&
+        (ringBonds < 3 || bondBetween(molecule, centre, other.atoms[0]) >= 0) &&
+        distinct(molecule, other, finer),
+    );
+  });
+}
+
+function toTable(elements: readonly StereoElement[]): StereoTable {
+  const tetrahedral: TetrahedralCentre[] = [];
+  const doubleBonds: DoubleBondStereo[] = [];
+  const axes: AxialStereo[] = [];
+  for (const { kind, atoms, ligands, sign } of elements) {
+    const [a, b] = atoms;
+    const [p, q, r, s] = ligands;
+    if (kind === 'tetrahedral') tetrahedral.push({ atom: a, neighbours: [p, q, r, s], sign });
+    else if (kind === 'doubleBond') doubleBonds.push({ a, b, substituentA: p, substituentB: r, cis: sign === 0 ? null : sign > 0 });
+    else axes.push({ a, b, substituentA: p, substituentB: r, sign });
+  }
+  return { tetrahedral, doubleBonds, axes };
+}
