@@ -95,15 +95,18 @@ describe('an engine', () => {
     await expect(running).rejects.toMatchObject({ name: 'AbortError' });
   });
   it('runs no more requests at a time than it may', async () => {
-    const watching = SPRING.replace("appendFileSync(process.argv[2], 'asked\\\\n');", '').replace(
-      "process.stdin.on('data'",
-      "appendFileSync(process.argv[2], '+'); process.on('exit', () => appendFileSync(process.argv[2], '-')); process.stdin.on('data'",
-    );
+    // each waits until two have started, then leaves a mark when it ends
+    const watching = `
+const { appendFileSync, readFileSync } = require('node:fs');
+appendFileSync(process.argv[2], '+');
+while (readFileSync(process.argv[2], 'utf8').split('+').length < 3);
+console.log('{"success": true, "return_result": 0.5}');
+appendFileSync(process.argv[2], '-');`;
     const spring = engine(watching, { concurrency: 2 });
     await Promise.all([0.7, 0.8, 0.9, 1.0, 1.1].map((z) => spring.energy(Float64Array.of(0, 0, 0, 0, 0, z))));
     let running = 0;
     let most = 0;
-    for (const sign of readFileSync(join(folder, 'asked.txt'), 'utf8').replace(/[^+-]/g, '')) {
+    for (const sign of readFileSync(join(folder, 'asked.txt'), 'utf8')) {
       running += sign === '+' ? 1 : -1;
       most = Math.max(most, running);
     }
