@@ -7,6 +7,7 @@
 import { atomicMass, atomicNumberOf } from './elements.js';
 import { TordialError } from './errors.js';
 import { checkLimit, type Limits } from './limits.js';
+import { normalValences } from './valence.js';
 import { AROMATIC_ORDER, type WrittenAtom, type WrittenBond } from './written-structure.js';
 
 export interface MolfileAtom extends WrittenAtom {
@@ -286,20 +287,20 @@ function checkDuplicates(bonds: readonly MolfileBond[], firstLine: number, fail:
 }
 
 function finish(drafts: readonly AtomDraft[], bonds: readonly MolfileBond[], fail: Fail): MolfileAtom[] {
-  const valence = new Float64Array(drafts.length);
+  const valence = new Int32Array(drafts.length);
   const aromatic = new Uint8Array(drafts.length);
   for (const { a, b, order } of bonds)
     for (const i of [a, b]) {
-      valence[i] += order === AROMATIC_ORDER ? 1.5 : order;
+      valence[i] += order;
       if (order === AROMATIC_ORDER) aromatic[i] = 1;
     }
   return drafts.map((draft, i) => {
     const { atomicNumber, isotope, charge, x, y, z, line } = draft;
     const label = `atom ${i} (line ${line + 1})`;
-    if (draft.radical !== 0) fail(line, `${label} is marked as a radical; only closed-shell structures can be scanned`, 'molecule/radical');
+    if (draft.radical !== 0 && normalValences(atomicNumber, charge)) fail(line, `${label} is marked as a radical; only closed-shell structures can be scanned`, 'molecule/radical');
     if (![x, y, z].every((value) => Math.abs(value) < 1e5)) fail(line, 'a coordinate is out of range');
-    const stated = draft.valence === 0 ? -1 : draft.valence < 0 ? 0 : draft.valence - valence[i];
-    if (draft.valence !== 0 && stated < 0) fail(line, `the stated valence ${Math.max(0, draft.valence)} is less than the atom's bonds`);
-    return { atomicNumber, isotope, charge, aromatic: aromatic[i] === 1, hydrogens: Math.floor(stated), label, x, y, z };
+    const stated = draft.valence === 0 || aromatic[i] === 1 ? -1 : draft.valence < 0 ? 0 : draft.valence - valence[i];
+    if (draft.valence !== 0 && aromatic[i] === 0 && stated < 0) fail(line, `the stated valence ${Math.max(0, draft.valence)} is less than the atom's bonds`);
+    return { atomicNumber, isotope, charge, aromatic: aromatic[i] === 1, hydrogens: stated, label, x, y, z };
   });
 }

@@ -41,7 +41,7 @@ export function readRecord(lines: readonly string[], limits: Limits, place: Erro
   const molecule = createMolecule({ ...parts, name: written.name });
   const properties = dataFields(lines.slice(written.lineCount));
   if (!isThreeDimensional(written)) {
-    const stated = { ...molecule, stereo: drawnStereo(possibleStereo(molecule), written) };
+    const stated = { ...molecule, stereo: drawnStereo(possibleStereo(molecule, true), written) };
     return { molecule: { ...stated, stereo: completeStereo(stated) }, coordinates: null, properties, notes: [], place };
   }
   const notes: Note[] = [];
@@ -55,7 +55,7 @@ export function readRecord(lines: readonly string[], limits: Limits, place: Erro
       message: `${added} hydrogens that the file leaves out were added at standard positions`,
     });
   }
-  const possible = { ...molecule, stereo: possibleStereo(molecule) };
+  const possible = { ...molecule, stereo: possibleStereo(molecule, false) };
   const stated = { ...molecule, stereo: perceiveStereo(possible, coordinates) };
   return { molecule: { ...stated, stereo: completeStereo(stated) }, coordinates, properties, notes, place };
 }

@@ -32,14 +32,14 @@ function handedness(x: Coordinates, centre: number, neighbours: readonly number[
 
 /**
  * Sign of the triple product of the first three of three or four bond directions (unit vectors); with four, the mean of the four
- * equivalent volumes decides. 0 where the centre is flat.
+ * equivalent volumes decides. 0 where its size is below `flat`.
  */
-export function tripleSign(unit: readonly Vector[]): -1 | 0 | 1 {
+export function tripleSign(unit: readonly Vector[], flat = FLAT_VOLUME): -1 | 0 | 1 {
   const volumes = [triple(unit[0], unit[1], unit[2])];
   if (unit.length === 4)
     volumes.push(-triple(unit[1], unit[2], unit[3]), triple(unit[2], unit[3], unit[0]), -triple(unit[3], unit[0], unit[1]));
   const mean = volumes.reduce((sum, volume) => sum + volume, 0) / volumes.length;
-  return Math.abs(mean) < FLAT_VOLUME ? 0 : mean > 0 ? 1 : -1;
+  return Math.abs(mean) < flat ? 0 : mean > 0 ? 1 : -1;
 }
 
 type Vector = readonly [number, number, number];

@@ -71,13 +71,13 @@ export function completeStereo(molecule: Molecule): StereoTable {
 }
 
 /**
- * Everything in a molecule that could be stereogenic by its valence, all open: what a reader of coordinates or wedges asks for. Nitrogen in
- * three-membered rings and N-H of imines are left out, for they invert and a geometry does not state them.
+ * Everything in a molecule that could be stereogenic by its valence, all open: what a reader of wedges asks for. For a reader of coordinates
+ * `inverting` is false and leaves out nitrogen in three-membered rings and N-H of imines: they invert, so that a geometry does not state them.
  */
-export function possibleStereo(molecule: Molecule): StereoTable {
+export function possibleStereo(molecule: Molecule, inverting: boolean): StereoTable {
   const open = { ...molecule, stereo: { tetrahedral: [], doubleBonds: [], axes: [] } };
   const states = ({ kind, atoms, onlyIfStated }: StereoElement) =>
-    !onlyIfStated || (kind === 'tetrahedral' && !molecule.rings.some((ring) => ring.length === 3 && ring.includes(atoms[0])));
+    inverting || !onlyIfStated || (kind === 'tetrahedral' && !molecule.rings.some((ring) => ring.length === 3 && ring.includes(atoms[0])));
   return toTable(stereoCandidates(open).filter(states));
 }
 

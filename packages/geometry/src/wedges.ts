@@ -1,14 +1,18 @@
 /**
  * Configuration from a flat drawing: wedges at stereocentres and axes, the shape of double bonds.
  *
- * A wedge lifts the far end of its bond by a bond length; the handedness of the four bonds then follows as in three dimensions. A hidden
- * hydrogen or lone pair lies in the plane, opposite to the drawn bonds. Source of the reading of wedges: J. Brecher, Graphical
+ * A wedge lifts the far end of its bond by a bond length; the handedness of the drawn bonds then follows as in three dimensions. A hidden
+ * hydrogen or lone pair lies on the side that three drawn bonds leave free; where they leave none (two of them in a line, the third
+ * lifted) the drawing is ambiguous and the centre stays open. Source of the reading of wedges: J. Brecher, Graphical
  * representation of stereochemical configuration (IUPAC Recommendations 2006), Pure Appl. Chem. 78, 1897 (2006).
  */
 
 import type { StereoTable } from './molecule.js';
 import type { WrittenMolfile } from './molfile-syntax.js';
 import { perceiveStereo, tripleSign } from './stereo-perception.js';
+
+/** Volume of unit vectors below which a drawing does not show a handedness. */
+const FLAT_DRAWING = 0.02;
 
 /** The table with the signs that the drawing shows; elements without wedges, or with contradicting or wavy ones, stay open. */
 export function drawnStereo(possible: StereoTable, { atoms, bonds }: WrittenMolfile): StereoTable {
@@ -34,12 +38,7 @@ export function drawnStereo(possible: StereoTable, { atoms, bonds }: WrittenMolf
     tetrahedral: possible.tetrahedral.map((centre) => {
       const { atom, neighbours } = centre;
       if (wavy.has(atom) || !lifts.has(atom) || neighbours.filter(isDrawn).length < 3) return { ...centre, sign: 0 };
-      const known = neighbours.filter(isDrawn).map((j) => drawn(atom, j));
-      const [sx, sy] = known.reduce(([px, py], [x, y]) => [px + x, py + y], [0, 0]);
-      const length = Math.hypot(sx, sy);
-      const hidden = length > 0.1 ? ([-sx / length, -sy / length, 0] as const) : ([0, 0, 0] as const);
-      const four = neighbours.map((j) => (isDrawn(j) ? drawn(atom, j) : hidden));
-      return { ...centre, sign: tripleSign(four) };
+      return { ...centre, sign: tripleSign(neighbours.filter(isDrawn).map((j) => drawn(atom, j)), FLAT_DRAWING) };
     }),
     doubleBonds: possible.doubleBonds.map((bond) => {
       if (crossed.has(`${bond.a} ${bond.b}`) || wavy.has(bond.a) || wavy.has(bond.b)) return { ...bond, cis: null };
