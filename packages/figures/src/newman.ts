@@ -16,6 +16,8 @@ const LABEL_RADIUS = 33;
 const FONT_SIZE = 11;
 const CAP_HEIGHT = 0.73 * FONT_SIZE;
 const LABEL_GAP = 3;
+/** In a figure of its own the circle's radius is at most this fraction of the side. */
+const LARGEST_RIM = 0.16;
 /** Labels that would touch are turned about the centre, away from each other, up to this angle. */
 const LARGEST_NUDGE = 55;
 const NUDGE = 1.25;
@@ -331,7 +333,7 @@ export function newmanProjection(
   const margin = 0.05 * size;
   const captionSize = Math.max(10, 0.065 * size);
   const room = size - 2 * margin - 1.6 * captionSize;
-  const scale = Math.min((size - 2 * margin) / (right - left), room / (bottom - top));
+  const scale = Math.min((size - 2 * margin) / (right - left), room / (bottom - top), LARGEST_RIM * (size / RIM));
   const x = size / 2 - (scale * (left + right)) / 2;
   const y = margin + room / 2 - (scale * (top + bottom)) / 2;
   const atoms = torsion.join('–');

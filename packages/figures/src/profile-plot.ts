@@ -1,8 +1,8 @@
 import { atomicNumberOf, createMolecule, type Molecule, TordialError } from '@tordial/geometry';
 import type { DocumentMolecule, ProfileDocument, ProfileStationaryPoint } from '@tordial/scan';
 import { scaleLinear } from 'd3-scale';
-import { type Box, boxesOverlap } from './boxes.js';
-import { type CurveSegment, curvePieces, segmentEnergy } from './curve-pieces.js';
+import type { Box } from './boxes.js';
+import { type CurveParts, type CurveSegment, curveParts, segmentEnergy } from './curve-parts.js';
 import { degreesText, energyText } from './format.js';
 import { describeNewman, newmanDrawing, newmanLayout } from './newman.js';
 import { newmanStrip } from './newman-strip.js';
@@ -39,7 +39,8 @@ const MOST_PROJECTIONS = 12;
  * The figure of a torsion profile: the periodic curve over [-180, 180] with its points, wells and barriers with angle and energy, and a Newman
  * projection of the actual geometry at each. No smooth curve is drawn across a change of branch; points that did not converge are crossed.
  *
- * Returns an SVG document. Throws `figure/profile` for a document without points and what `newmanLayout` throws for coordinates that do not fit.
+ * Returns an SVG document. Throws `figure/profile` for a size without room, what `profileCurve` throws for points that make no
+ * curve and what `newmanLayout` throws for coordinates that do not fit.
  */
 export function profilePlot(document: ProfileDocument, options: ProfilePlotOptions = {}): string {
   const figure = profileLayout(document, options);
@@ -52,9 +53,9 @@ export function profilePlot(document: ProfileDocument, options: ProfilePlotOptio
       ...header(document, figure),
       ...axes(document, figure),
       ...leaders(figure),
-      ...curve(document, figure),
+      ...curve(figure),
       ...markers(document, figure),
-      ...stationaryLabels(document, figure),
+      ...stationaryLabels(figure),
       ...projections(figure),
       footer(document, figure),
     ),
@@ -71,7 +72,7 @@ export interface ProfileLayout {
   readonly x: (angle: number) => number;
   readonly y: (energy: number) => number;
   readonly energyTicks: readonly { readonly value: number; readonly text: string }[];
-  readonly pieces: readonly (readonly CurveSegment[])[];
+  readonly parts: CurveParts;
   readonly marks: readonly Mark[];
 }
 
@@ -101,8 +102,8 @@ interface Projection {
 /** Lays a profile's figure out without drawing it. */
 export function profileLayout(document: ProfileDocument, options: ProfilePlotOptions): ProfileLayout {
   const { theme = LIGHT_THEME, width = 800 } = options;
-  if (document.points.length === 0) throw new TordialError('figure/profile', 'the profile has no points to draw');
-  const pieces = curvePieces(document.points);
+  const parts = curveParts(document);
+  const segments = [...parts.smooth.flat(), ...parts.continued];
 
   const innerWidth = width - SIDE.left - SIDE.right;
   const x = (angle: number): number => SIDE.left + ((angle + 180) / 360) * innerWidth;
@@ -127,7 +128,7 @@ export function profileLayout(document: ProfileDocument, options: ProfilePlotOpt
     );
 
   const energies = [
-    ...pieces.flat().flatMap((segment) => samples(segment).map(([, energy]) => energy)),
+    ...segments.flatMap((segment) => samples(segment).map(([, energy]) => energy)),
     ...document.points.map(({ relativeEnergy }) => relativeEnergy),
     ...document.stationaryPoints.map(({ relativeEnergy }) => relativeEnergy),
   ];
@@ -163,7 +164,7 @@ export function profileLayout(document: ProfileDocument, options: ProfilePlotOpt
           converged ? [] : [{ left: x(angle) - 5, right: x(angle) + 5, top: y(relativeEnergy) - 5, bottom: y(relativeEnergy) + 5 }],
         ),
       ],
-      segments: [...curveSegments(pieces, x, y), ...connectors(document).map(([a, p, b, q]): Segment => [x(a), y(p), x(b), y(q)])],
+      segments: [...chords(segments, x, y)],
       avoided: points.filter(({ point }) => point.kind === 'well').map((point): Segment => [point.x, plot.top, point.x, point.y - 6]),
     },
     plot,
@@ -196,7 +197,7 @@ export function profileLayout(document: ProfileDocument, options: ProfilePlotOpt
     x,
     y,
     energyTicks,
-    pieces,
+    parts,
     marks: points.map((point, n) => ({ ...point, label: labels[n], lines: lines[n], projection: drawn.get(point.point) })),
   };
 }
@@ -238,6 +239,9 @@ function projectedPoints(all: readonly ProfileStationaryPoint[]): { point: Profi
   return chosen.sort((p, q) => shownAngle(p.point.angle) - shownAngle(q.point.angle));
 }
 
+/** How a branch is drawn beyond its last point. */
+const CONTINUED = { 'stroke-width': 1.4, 'stroke-dasharray': '1.5 3' };
+
 const SAMPLES = 8;
 
 function samples(segment: CurveSegment): [number, number][] {
@@ -247,34 +251,10 @@ function samples(segment: CurveSegment): [number, number][] {
   });
 }
 
-function curveSegments(pieces: ProfileLayout['pieces'], x: (angle: number) => number, y: (energy: number) => number): Segment[] {
-  return pieces.flat().flatMap((segment) => {
+function chords(segments: readonly CurveSegment[], x: (angle: number) => number, y: (energy: number) => number): Segment[] {
+  return segments.flatMap((segment) => {
     const line = samples(segment);
     return line.slice(1).map(([angle, energy], n): Segment => [x(line[n][0]), y(line[n][1]), x(angle), y(energy)]);
-  });
-}
-
-/** Across a change of branch: straight lines from the last point of one branch to the first of the next, by way of their crossing where it is known. */
-function connectors({ points, stationaryPoints }: ProfileDocument): [number, number, number, number][] {
-  return points.flatMap((point, n) => {
-    if (!point.breakAfter) return [];
-    const next = points[(n + 1) % points.length];
-    const end = n + 1 === points.length ? next.angle + 360 : next.angle;
-    const via = stationaryPoints
-      .filter(({ kind }) => kind === 'crossing')
-      .map(({ angle, relativeEnergy }): [number, number] => [angle < point.angle ? angle + 360 : angle, relativeEnergy])
-      .filter(([angle]) => angle > point.angle && angle < end);
-    const stops = [[point.angle, point.relativeEnergy], ...via, [end, next.relativeEnergy]];
-    return stops.slice(1).flatMap(([angle, energy], m): [number, number, number, number][] => {
-      const [from, start] = stops[m];
-      if (angle <= 180) return [[from, start, angle, energy]];
-      if (from >= 180) return [[from - 360, start, angle - 360, energy]];
-      const edge = start + ((energy - start) * (180 - from)) / (angle - from);
-      return [
-        [from, start, 180, edge],
-        [-180, edge, angle - 360, energy],
-      ];
-    });
   });
 }
 
@@ -307,7 +287,7 @@ function header({ molecule, rotor, points, stationaryPoints }: ProfileDocument, 
 }
 
 function breakSymbol(x: number, y: number, theme: FigureTheme): string {
-  return element('line', { x1: x - 8, x2: x + 6, y1: y, y2: y, stroke: theme.curve, 'stroke-width': 1.4, 'stroke-dasharray': '1.5 3' });
+  return element('line', { x1: x - 8, x2: x + 6, y1: y, y2: y, stroke: theme.curve, ...CONTINUED });
 }
 
 function axes(document: ProfileDocument, { plot, x, y, energyTicks, theme }: ProfileLayout): string[] {
@@ -375,26 +355,20 @@ function leaders({ marks, plot, theme }: ProfileLayout): string[] {
   });
 }
 
-function curve(document: ProfileDocument, { pieces, x, y, theme }: ProfileLayout): string[] {
-  const paths = pieces.map((run) => {
-    const at = (angle: number, energy: number): string => `${coordinate(x(angle))} ${coordinate(y(energy))}`;
-    const [first] = run;
-    const d = run.map(({ from, to, energies: [, b, c, e] }) => {
+function curve({ parts, x, y, theme }: ProfileLayout): string[] {
+  const at = (angle: number, energy: number): string => `${coordinate(x(angle))} ${coordinate(y(energy))}`;
+  const path = (run: readonly CurveSegment[]): string => {
+    const curves = run.map(({ from, to, energies: [, b, c, d] }) => {
       const third = (to - from) / 3;
-      return `C ${at(from + third, b)} ${at(to - third, c)} ${at(to, e)}`;
+      return `C ${at(from + third, b)} ${at(to - third, c)} ${at(to, d)}`;
     });
-    return element('path', {
-      d: `M ${at(first.from, first.energies[0])} ${d.join(' ')}`,
-      fill: 'none',
-      stroke: theme.curve,
-      'stroke-width': 2,
-      'stroke-linecap': 'round',
-    });
-  });
-  const dotted = connectors(document).map(([a, p, b, q]) =>
-    element('line', { x1: x(a), y1: y(p), x2: x(b), y2: y(q), stroke: theme.curve, 'stroke-width': 1.4, 'stroke-dasharray': '1.5 3' }),
-  );
-  return [...paths, ...dotted];
+    return `M ${at(run[0].from, run[0].energies[0])} ${curves.join(' ')}`;
+  };
+  const stroke = { fill: 'none', stroke: theme.curve };
+  return [
+    ...parts.smooth.map((run) => element('path', { d: path(run), ...stroke, 'stroke-width': 2, 'stroke-linecap': 'round' })),
+    ...parts.continued.map((segment) => element('path', { d: path([segment]), ...stroke, ...CONTINUED })),
+  ];
 }
 
 function markers({ points }: ProfileDocument, { marks, x, y, theme }: ProfileLayout): string[] {
@@ -434,7 +408,7 @@ function markSymbol(kind: string, x: number, y: number, theme: FigureTheme): str
   return element('path', { d: cross, fill: 'none', stroke: theme.unconverged, 'stroke-width': 1.8 });
 }
 
-function stationaryLabels(_document: ProfileDocument, { marks, theme }: ProfileLayout): string[] {
+function stationaryLabels({ marks, theme }: ProfileLayout): string[] {
   return marks.flatMap(({ point, label, lines }) => {
     if (!label) return [];
     const { box, tie } = label;
@@ -496,10 +470,4 @@ function describe({ molecule, rotor, unit, stationaryPoints, points }: ProfileDo
   ]
     .filter((one) => one !== '')
     .join(' ');
-}
-
-/** Whether any two labels of a figure overlap; kept for checks of the layout. */
-export function labelsOverlap({ marks }: Pick<ProfileLayout, 'marks'>): boolean {
-  const boxes = marks.flatMap(({ label }) => (label ? [label.box] : []));
-  return boxes.some((box, n) => boxes.slice(n + 1).some((other) => boxesOverlap(box, other)));
 }
