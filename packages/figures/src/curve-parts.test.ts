@@ -81,6 +81,20 @@ describe('curveParts', () => {
   });
 });
 
+it('joins branches that never meet by a straight line', () => {
+  const jump = points(10, -180).map((point) => ({
+    ...point,
+    relativeEnergy: point.angle < 0 ? 0 : 2,
+    torque: 0,
+    breakAfter: point.angle === -10 || point.angle === 170,
+  }));
+  const { continued } = curveParts({ points: jump, stationaryPoints: [] });
+  expect(continued.map(({ from, to, energies }) => [from, to, energies[0], energies[3]])).toEqual([
+    [-10, 0, 0, 2],
+    [170, 180, 2, 0],
+  ]);
+});
+
 function ranges(runs: readonly (readonly { from: number; to: number }[])[]): [number, number][] {
   return runs.map((run) => [run[0].from, run[run.length - 1].to]);
 }

@@ -16,7 +16,7 @@ export interface CurveParts {
 
 /**
  * The curve of a profile cut for drawing over [-180, 180]. No smooth run goes over a change of branch; there both branches are continued to the
- * crossing that the document gives, else to where the continued curves meet. Throws what `profileCurve` throws for points that make no curve.
+ * crossing that the document gives, else to where the continued curves meet; branches that do not meet are joined by a straight line. Throws what `profileCurve` throws for points that make no curve.
  */
 export function curveParts({ points, stationaryPoints }: Pick<ProfileDocument, 'points' | 'stationaryPoints'>): CurveParts {
   const { pieces } = profileCurve(
@@ -35,8 +35,11 @@ export function curveParts({ points, stationaryPoints }: Pick<ProfileDocument, '
         .filter(({ kind }) => kind === 'crossing')
         .map(({ angle, relativeEnergy }) => ({ angle: angle < start ? angle + 360 : angle, energy: relativeEnergy }))
         .find(({ angle }) => angle > start && angle < end);
-      if (!crossing) continued.push(segment);
-      else if (piece.side === 'left') continued.push(parabola(start, points[piece.point], crossing.angle, crossing.energy));
+      const meet = piece.side === 'left' ? piece.to > 0 && piece.to < 1 : piece.from > 0 && piece.from < 1;
+      if (!crossing && meet) continued.push(segment);
+      else if (!crossing) {
+        if (piece.side === 'left') continued.push(straight(start, points[piece.point].relativeEnergy, end, next.relativeEnergy));
+      } else if (piece.side === 'left') continued.push(parabola(start, points[piece.point], crossing.angle, crossing.energy));
       else continued.push(parabola(end, next, crossing.angle, crossing.energy));
     }
   }
@@ -60,6 +63,12 @@ export function segmentEnergy({ from, to, energies: [a, b, c, d] }: CurveSegment
 /** Power basis to Bezier control points. */
 function controls({ coefficients: [c0, c1, c2, c3] }: CurvePiece): CurveSegment['energies'] {
   return [c0, c0 + c1 / 3, c0 + (2 * c1 + c2) / 3, c0 + c1 + c2 + c3];
+}
+
+/** A jump from one branch to another that it never meets. */
+function straight(from: number, start: number, to: number, end: number): CurveSegment {
+  const third = (end - start) / 3;
+  return { from, to, energies: [start, start + third, end - third, end] };
 }
 
 /** The parabola that leaves a point with its slope and goes through another one, raised to a cubic. */
