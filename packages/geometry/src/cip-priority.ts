@@ -57,22 +57,29 @@ const RULES: readonly Rule[] = [(p, q) => p.atomicNumber - q.atomicNumber, (p, q
 
 /** Higher for a duplicate of an atom nearer to the centre; every other node stands below all ring-closure duplicates. */
 function nearness({ originalDepth }: Node): number {
-  return originalDepth < 0 ? Number.NEGATIVE_INFINITY : -originalDepth;
+  return originalDepth < 0 ? -MAXIMUM_DEPTH : -originalDepth;
 }
+
+const MAXIMUM_DEPTH = 1e6;
 
 /** Positive when branch p ranks above branch q. */
 function compareBranches(molecule: RankedGraph, partners: readonly (readonly number[])[], p: Node, q: Node): number {
   let budget = COMPARISON_LIMIT;
-  for (let rule = 0; rule < RULES.length; rule++) {
-    const outcome = compare(p, q, rule);
-    if (outcome !== 0 && budget >= 0) return outcome;
-  }
-  const classes = molecule.symmetryClasses;
-  return classes[p.atom] - classes[q.atom];
+  const outcome = compare(p, q, RULES.length - 1);
+  return budget >= 0 && outcome !== 0 ? outcome : molecule.symmetryClasses[p.atom] - molecule.symmetryClasses[q.atom];
 
-  /** Breadth-first comparison of two branches under the rules up to `rule`; 0 when they tie or the budget is spent. */
-  function compare(first: Node, second: Node, rule: number): number {
-    const own = difference(first, second, rule);
+  /** One rule after the other, each on the whole of both branches; 0 when they tie or the budget is spent. */
+  function compare(a: Node, b: Node, lastRule: number): number {
+    for (let rule = 0; rule <= lastRule; rule++) {
+      const outcome = compareUnder(rule, a, b);
+      if (outcome !== 0) return outcome;
+    }
+    return 0;
+  }
+  /** Sphere by sphere, in each sphere set by set in the order of the branches they sit on. */
+  function compareUnder(rule: number, first: Node, second: Node): number {
+    const difference = RULES[rule];
+    const own = difference(first, second);
     if (own !== 0) return own;
     const queue: [Node, Node][] = [[first, second]];
     for (const [a, b] of queue) {
@@ -80,20 +87,13 @@ function compareBranches(molecule: RankedGraph, partners: readonly (readonly num
       const left = descend(a, rule);
       const right = descend(b, rule);
       for (let n = 0; n < Math.min(left.length, right.length); n++) {
-        const outcome = difference(left[n], right[n], rule);
+        const outcome = difference(left[n], right[n]);
         if (outcome !== 0) return outcome;
       }
       if (left.length !== right.length) return left.length - right.length;
       left.forEach((child, n) => {
         if (child.atom >= 0 || right[n].atom >= 0) queue.push([child, right[n]]);
       });
-    }
-    return 0;
-  }
-  function difference(a: Node, b: Node, rule: number): number {
-    for (let n = 0; n <= rule; n++) {
-      const outcome = RULES[n](a, b);
-      if (outcome !== 0 && !Number.isNaN(outcome)) return outcome;
     }
     return 0;
   }
@@ -148,12 +148,18 @@ function expand(molecule: RankedGraph, partners: readonly (readonly number[])[],
       children.push(original ? duplicate(atomicNumbers[atom], original.depth) : real(molecule, atom, node, depth));
     }
     // a bond whose place can shift is counted once for the atom, below
-    for (let m = 1; m < bonds.order[neighbours.bond[n]]; m++)
+    for (let m = 1; m < countedOrder(molecule, neighbours.bond[n]); m++)
       if (partners[node.atom].length < 2) children.push(duplicate(atomicNumbers[atom], -1));
   }
   const shifting = partners[node.atom];
   if (shifting.length > 1) children.push(duplicate(shifting.reduce((sum, atom) => sum + atomicNumbers[atom], 0) / shifting.length, -1));
   return children;
+}
+
+/** Order of a bond, 1 at an atom beyond neon with three and more neighbours: P=O and S=O count as P-O and S-O, d orbitals being left out. */
+function countedOrder({ atomicNumbers, bonds, neighbours }: RankedGraph, bond: number): number {
+  const hypervalent = (i: number) => atomicNumbers[i] > 10 && neighbours.start[i + 1] - neighbours.start[i] > 2;
+  return hypervalent(bonds.a[bond]) || hypervalent(bonds.b[bond]) ? 1 : bonds.order[bond];
 }
 
 function onPath(node: Node, atom: number): Node | null {
@@ -164,10 +170,11 @@ function onPath(node: Node, atom: number): Node | null {
 const ALTERNATION_BUDGET = 4000;
 
 /** For each atom the neighbours that a double bond joins it to in one written structure or another; found along alternating cycles. */
-function doubleBondPartners({ atomCount, bonds, neighbours }: RankedGraph): number[][] {
+function doubleBondPartners(molecule: RankedGraph): number[][] {
+  const { atomCount, bonds, neighbours } = molecule;
   const partner = new Int32Array(atomCount).fill(-1);
   for (let n = 0; n < bonds.count; n++) {
-    if (bonds.order[n] !== 2) continue;
+    if (countedOrder(molecule, n) !== 2) continue;
     // cumulated bonds do not shift
     const taken = partner[bonds.a[n]] !== -1 || partner[bonds.b[n]] !== -1;
     for (const [i, j] of [
