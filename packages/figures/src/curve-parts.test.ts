@@ -1,21 +1,30 @@
 import { describe, expect, it } from 'vitest';
 import { curveParts, segmentEnergy } from './curve-parts.js';
 
-const UNUSED = { energy: 0, converged: true, residual: 0, coordinates: [] };
+/** Absolute energies are these above the relative ones. */
+const ZERO = 40;
+const UNUSED = { converged: true, residual: 0, coordinates: [], beyond: null, before: null };
 
 /** cos(2 phi) and its slope: the cubic Hermite error over a step h is at most h^4 max|f''''| / 384. */
 function points(step: number, start: number, breaks: readonly number[] = []) {
   return Array.from({ length: 360 / step }, (_, n) => {
     const angle = start + n * step;
     const phi = (angle * Math.PI) / 180;
-    return { ...UNUSED, angle, relativeEnergy: Math.cos(2 * phi), torque: -2 * Math.sin(2 * phi), breakAfter: breaks.includes(n) };
+    return {
+      ...UNUSED,
+      angle,
+      energy: ZERO + Math.cos(2 * phi),
+      relativeEnergy: Math.cos(2 * phi),
+      torque: -2 * Math.sin(2 * phi),
+      breakAfter: breaks.includes(n),
+    };
   });
 }
 
 describe('curveParts', () => {
   it.each([-180, -175, -173.5])('covers [-180, 180] in one run and follows a known curve (first point at %s)', (start) => {
     const step = 10;
-    const { smooth, continued } = curveParts({ points: points(step, start), stationaryPoints: [] });
+    const { smooth, continued } = curveParts(points(step, start));
     expect(smooth).toHaveLength(1);
     expect(continued).toHaveLength(0);
     const [run] = smooth;
@@ -30,36 +39,38 @@ describe('curveParts', () => {
   });
 
   it('draws nothing smooth across a change of branch', () => {
-    expect(ranges(curveParts({ points: points(10, -180, [5, 20]), stationaryPoints: [] }).smooth)).toEqual([
+    expect(ranges(curveParts(points(10, -180, [5, 20])).smooth)).toEqual([
       [-180, -130],
       [-120, 20],
       [30, 180],
     ]);
-    expect(ranges(curveParts({ points: points(10, -175, [35]), stationaryPoints: [] }).smooth)).toEqual([[-175, 175]]);
+    expect(ranges(curveParts(points(10, -175, [35])).smooth)).toEqual([[-175, 175]]);
   });
 
-  it('continues both branches to the crossing that the document gives, with the slopes of their last points', () => {
-    const all = points(10, -175, [8, 35]);
-    const crossing = (angle: number, relativeEnergy: number) => ({
-      kind: 'crossing' as const,
-      angle,
-      energy: 0,
-      relativeEnergy,
-      coordinates: [],
+  it('follows both branches to their crossing where the scan knows them beyond the break', () => {
+    // two parabolas, 0.01 (phi + 100)^2 and 0.01 (phi + 80)^2 in degrees, cross at -90; the first holds up to -95, the second from -85
+    const slope = (angle: number, centre: number) => (0.02 * (angle - centre) * 180) / Math.PI;
+    const branch = (angle: number, centre: number) => ({ energy: ZERO + 0.01 * (angle - centre) ** 2, torque: slope(angle, centre) });
+    const crossing = points(10, -175).map((point) => {
+      const centre = point.angle < -90 ? -100 : -80;
+      const energy = 0.01 * (point.angle - centre) ** 2;
+      return {
+        ...point,
+        energy: ZERO + energy,
+        relativeEnergy: energy,
+        torque: slope(point.angle, centre),
+        breakAfter: point.angle === -95,
+        beyond: point.angle === -95 ? branch(-85, -100) : null,
+        before: point.angle === -85 ? branch(-95, -80) : null,
+      };
     });
-    const { continued } = curveParts({ points: all, stationaryPoints: [crossing(-178, 1.4), crossing(-88, -0.5)] });
-    const [left, right] = continued.filter(({ from }) => from > -100 && from < -80);
-    expect([left.from, left.to, right.from, right.to]).toEqual([-95, -88, -88, -85]);
-    expect(segmentEnergy(left, -88)).toBeCloseTo(-0.5, 12);
-    expect(segmentEnergy(right, -88)).toBeCloseTo(-0.5, 12);
-    const slope = (segmentEnergy(right, -85) - segmentEnergy(right, -85 - 1e-6)) / ((1e-6 * Math.PI) / 180);
-    expect(slope).toBeCloseTo(all[9].torque, 4);
-    // over the edge: from 175 to the crossing at 182, which is -178, and back to 185
-    expect(continued.filter(({ from, to }) => from >= 175 || to <= -175).map(({ from, to }) => [from, to])).toEqual([
-      [175, 180],
-      [-180, -178],
-      [-178, -175],
-    ]);
+    const [left, right] = curveParts(crossing).continued;
+    expect(left.from).toBe(-95);
+    expect(left.to).toBeCloseTo(-90, 9);
+    expect(right.from).toBeCloseTo(-90, 9);
+    expect(right.to).toBe(-85);
+    for (const angle of [-94, -92, -90]) expect(segmentEnergy(left, angle)).toBeCloseTo(0.01 * (angle + 100) ** 2, 9);
+    for (const angle of [-90, -88, -86]) expect(segmentEnergy(right, angle)).toBeCloseTo(0.01 * (angle + 80) ** 2, 9);
   });
 
   it('continues branches to where they meet when no crossing is given', () => {
@@ -68,12 +79,13 @@ describe('curveParts', () => {
       const energy = Math.max(0, 1 - Math.abs(point.angle + 90) / 30);
       return {
         ...point,
+        energy: ZERO + energy,
         relativeEnergy: energy,
         torque: energy > 0 ? -Math.sign(point.angle + 90) * (6 / Math.PI) : 0,
         breakAfter: point.angle === -95,
       };
     });
-    const { continued } = curveParts({ points: kinked, stationaryPoints: [] });
+    const { continued } = curveParts(kinked);
     expect(continued).toHaveLength(2);
     expect(continued[0].to).toBeCloseTo(-90, 6);
     expect(continued[1].from).toBeCloseTo(-90, 6);
@@ -84,11 +96,12 @@ describe('curveParts', () => {
 it('joins branches that never meet by a straight line', () => {
   const jump = points(10, -180).map((point) => ({
     ...point,
+    energy: point.angle < 0 ? ZERO : ZERO + 2,
     relativeEnergy: point.angle < 0 ? 0 : 2,
     torque: 0,
     breakAfter: point.angle === -10 || point.angle === 170,
   }));
-  const { continued } = curveParts({ points: jump, stationaryPoints: [] });
+  const { continued } = curveParts(jump);
   expect(continued.map(({ from, to, energies }) => [from, to, energies[0], energies[3]])).toEqual([
     [-10, 0, 0, 2],
     [170, 180, 2, 0],

@@ -15,33 +15,25 @@ export interface CurveParts {
 }
 
 /**
- * The curve of a profile cut for drawing over [-180, 180]. No smooth run goes over a change of branch; there both branches are continued to the
- * crossing that the document gives, else to where the continued curves meet; branches that do not meet are joined by a straight line. Throws what `profileCurve` throws for points that make no curve.
+ * The curve of a profile cut for drawing over [-180, 180], relative energies. No smooth run goes over a change of branch; there both branches are
+ * continued to where they meet, and those that do not meet are joined by a straight line. Throws what `profileCurve` throws for points that make no
+ * curve.
  */
-export function curveParts({ points, stationaryPoints }: Pick<ProfileDocument, 'points' | 'stationaryPoints'>): CurveParts {
-  const { pieces } = profileCurve(
-    points.map(({ relativeEnergy, ...point }) => ({ ...point, energy: relativeEnergy, beyond: null, before: null })),
-  );
+export function curveParts(points: ProfileDocument['points']): CurveParts {
+  const { pieces } = profileCurve(points);
+  const zero = points[0].energy - points[0].relativeEnergy;
   const smooth: CurveSegment[] = [];
   const continued: CurveSegment[] = [];
   for (const piece of pieces) {
-    const start = points[piece.point].angle;
+    const start = points[piece.point];
     const next = points[(piece.point + 1) % points.length];
-    const end = next.angle > start ? next.angle : next.angle + 360;
-    const segment = clipped({ from: start, to: end, energies: controls(piece) }, piece.from, piece.to);
+    const from = start.angle;
+    const to = next.angle > from ? next.angle : next.angle + 360;
+    const segment = clipped({ from, to, energies: controls(piece, zero) }, piece.from, piece.to);
+    const meet = piece.side === 'left' ? piece.to > 0 && piece.to < 1 : piece.from > 0 && piece.from < 1;
     if (piece.side === 'both') smooth.push(segment);
-    else {
-      const crossing = stationaryPoints
-        .filter(({ kind }) => kind === 'crossing')
-        .map(({ angle, relativeEnergy }) => ({ angle: angle < start ? angle + 360 : angle, energy: relativeEnergy }))
-        .find(({ angle }) => angle > start && angle < end);
-      const meet = piece.side === 'left' ? piece.to > 0 && piece.to < 1 : piece.from > 0 && piece.from < 1;
-      if (!crossing && meet) continued.push(segment);
-      else if (!crossing) {
-        if (piece.side === 'left') continued.push(straight(start, points[piece.point].relativeEnergy, end, next.relativeEnergy));
-      } else if (piece.side === 'left') continued.push(parabola(start, points[piece.point], crossing.angle, crossing.energy));
-      else continued.push(parabola(end, next, crossing.angle, crossing.energy));
-    }
+    else if (meet) continued.push(segment);
+    else if (piece.side === 'left') continued.push(straight(from, start.relativeEnergy, to, next.relativeEnergy));
   }
   const runs: CurveSegment[][] = [];
   let reached = Number.NaN;
@@ -50,7 +42,7 @@ export function curveParts({ points, stationaryPoints }: Pick<ProfileDocument, '
     else runs.push([segment]);
     reached = segment.to;
   }
-  return { smooth: runs, continued: continued.filter(({ from, to }) => to > from).flatMap(wrapped) };
+  return { smooth: runs, continued: continued.flatMap(wrapped) };
 }
 
 /** Energy of a segment at an angle within it. */
@@ -61,33 +53,15 @@ export function segmentEnergy({ from, to, energies: [a, b, c, d] }: CurveSegment
 }
 
 /** Power basis to Bezier control points. */
-function controls({ coefficients: [c0, c1, c2, c3] }: CurvePiece): CurveSegment['energies'] {
-  return [c0, c0 + c1 / 3, c0 + (2 * c1 + c2) / 3, c0 + c1 + c2 + c3];
+function controls({ coefficients: [c0, c1, c2, c3] }: CurvePiece, zero: number): CurveSegment['energies'] {
+  const start = c0 - zero;
+  return [start, start + c1 / 3, start + (2 * c1 + c2) / 3, start + c1 + c2 + c3];
 }
 
 /** A jump from one branch to another that it never meets. */
 function straight(from: number, start: number, to: number, end: number): CurveSegment {
   const third = (end - start) / 3;
   return { from, to, energies: [start, start + third, end - third, end] };
-}
-
-/** The parabola that leaves a point with its slope and goes through another one, raised to a cubic. */
-function parabola(
-  start: number,
-  point: { readonly relativeEnergy: number; readonly torque: number },
-  end: number,
-  energy: number,
-): CurveSegment {
-  const middle = point.relativeEnergy + (point.torque * ((end - start) * Math.PI)) / 360;
-  const energies: CurveSegment['energies'] = [
-    point.relativeEnergy,
-    (point.relativeEnergy + 2 * middle) / 3,
-    (energy + 2 * middle) / 3,
-    energy,
-  ];
-  return start < end
-    ? { from: start, to: end, energies }
-    : { from: end, to: start, energies: [energies[3], energies[2], energies[1], energies[0]] };
 }
 
 /** The part of a segment between two fractions of it. */

@@ -40,6 +40,8 @@ export function seriesProfile(
       converged: true,
       residual: 0,
       breakAfter: false,
+      beyond: null,
+      before: null,
       coordinates: geometry(angle),
     };
   });
@@ -50,6 +52,8 @@ export function seriesProfile(
       angle,
       energy: energy(series, angle),
       relativeEnergy: energy(series, angle) - lowest,
+      torque: 0,
+      converged: true,
       coordinates: geometry(angle),
     };
   });

@@ -26,6 +26,11 @@ export function element(name: string, attributes: SvgAttributes, ...children: re
   return children.length === 0 ? `<${open}/>` : `<${open}>${children.join('')}</${name}>`;
 }
 
+/** One line of text that stands on (x, y). */
+export function textLine(x: number, y: number, content: string, attributes: SvgAttributes): string {
+  return element('text', { x, y, ...attributes }, escapeXml(content));
+}
+
 /** A whole document with its title and description (read aloud by screen readers), on a background of one colour. */
 export function svgDocument(
   frame: {

@@ -1,0 +1,232 @@
+import { atomicNumberOf, createMolecule, type Molecule, TordialError } from '@tordial/geometry';
+import type { DocumentMolecule, ProfileDocument, ProfileStationaryPoint } from '@tordial/scan';
+import { angleScale, type EnergyScale, energyScale } from './axes.js';
+import type { Box } from './boxes.js';
+import { type CurveParts, type CurveSegment, curveParts, segmentEnergy } from './curve-parts.js';
+import { degreesText, energyText } from './format.js';
+import { describeNewman, newmanDrawing, newmanLayout } from './newman.js';
+import { newmanStrip } from './newman-strip.js';
+import { type PlacedLabel, placeLabels, type Segment } from './place-labels.js';
+import { textWidth } from './text-width.js';
+import { type FigureTheme, LIGHT_THEME } from './theme.js';
+
+export interface ProfilePlotOptions {
+  /** px; 800 by default. */
+  readonly width?: number;
+  /** px; chosen by default so that the plot keeps its proportions under one or two rows of projections. */
+  readonly height?: number;
+  readonly theme?: FigureTheme;
+  /** The molecule's name by default. */
+  readonly title?: string;
+}
+
+export const SIDE = { left: 66, right: 26 };
+export const LABEL_SIZE = 11;
+export const LINE_HEIGHT = 13;
+const HEADER = 60;
+/** Height of the zone in which the leader lines run askew, from the projections to the frame. */
+const LEADERS = { least: 22, most: 64, slope: 0.22 };
+const AXIS = 46;
+const FOOTER = 26;
+const PLOT_HEIGHT = 300;
+/** Room for two lines of text over the highest barrier and under the lowest well, px. */
+const LABEL_ROOM = 44;
+/** The axis spans at least this much, in the document's unit. */
+const SMALLEST_RANGE = 0.05;
+/** Angles beyond this are shown at both edges, degrees. */
+const EDGE = 179.95;
+/** Up to this many stationary points each have a projection of their own. */
+const MANY = 7;
+/** More projections than this are not drawn; the lowest wells and the highest barriers go first. */
+const MOST_PROJECTIONS = 12;
+
+/** Where everything stands in a profile's figure, px. */
+export interface ProfileLayout {
+  readonly width: number;
+  readonly height: number;
+  readonly theme: FigureTheme;
+  readonly title: string;
+  readonly plot: Box;
+  readonly x: (angle: number) => number;
+  readonly energies: EnergyScale;
+  readonly parts: CurveParts;
+  readonly marks: readonly Mark[];
+  /** Stationary points without a projection of their own or shared. */
+  readonly leftOut: number;
+}
+
+/** A stationary point on the page. */
+export interface Mark {
+  readonly point: ProfileStationaryPoint;
+  readonly x: number;
+  readonly y: number;
+  /** Two lines, angle and energy; undefined where no free place was found. */
+  readonly label: PlacedLabel | undefined;
+  readonly lines: readonly [string, string];
+  readonly projection: Projection | undefined;
+}
+
+/** A Newman projection on the page; its drawing is centred on the circle. */
+export interface Projection {
+  readonly markup: string;
+  readonly x: number;
+  readonly y: number;
+  readonly scale: number;
+  readonly caption: string;
+  readonly captionY: number;
+  /** Height at which its leader line begins to run askew. */
+  readonly bend: number;
+  /** In words. */
+  readonly words: string;
+}
+
+/** Lays a profile's figure out without drawing it. */
+export function profileLayout(document: ProfileDocument, options: ProfilePlotOptions): ProfileLayout {
+  const { theme = LIGHT_THEME, width = 800 } = options;
+  const parts = curveParts(document.points);
+  const segments = [...parts.smooth.flat(), ...parts.continued];
+
+  const x = angleScale({ left: SIDE.left, right: width - SIDE.right });
+  const molecule = moleculeOf(document.molecule);
+  const shown = projectedPoints(document.stationaryPoints);
+  const layouts = shown.map(({ point }) => newmanLayout(molecule, document.rotor.torsion, point.coordinates));
+  const stripLeft = 14;
+  const strip = newmanStrip(
+    shown.map(({ point }, n) => ({ x: x(shownAngle(point.angle)) - stripLeft, layout: layouts[n] })),
+    width - 2 * stripLeft,
+  );
+
+  const askew = shown.map(({ point }, n) => Math.abs(stripLeft + strip.cards[n].x - x(shownAngle(point.angle))));
+  const leaderZone = Math.min(LEADERS.most, Math.max(LEADERS.least, LEADERS.slope * Math.max(0, ...askew)));
+  const top = HEADER + strip.height + (shown.length > 0 ? leaderZone : 0);
+  const height = options.height ?? top + PLOT_HEIGHT + AXIS + FOOTER;
+  const plot = { left: SIDE.left, right: width - SIDE.right, top, bottom: height - AXIS - FOOTER };
+  if (plot.bottom - plot.top < 80 || plot.right - plot.left < 160)
+    throw new TordialError(
+      'figure/profile',
+      `${width} by ${height} px leave no room for the plot; ask for at least ${top + 80 + AXIS + FOOTER} px of height`,
+    );
+
+  const energies = [
+    ...segments.flatMap((segment) => samples(segment).map(([, energy]) => energy)),
+    ...document.points.map(({ relativeEnergy }) => relativeEnergy),
+    ...document.stationaryPoints.map(({ relativeEnergy }) => relativeEnergy),
+  ];
+  const lowest = Math.min(0, ...energies);
+  const highest = Math.max(lowest + SMALLEST_RANGE, ...energies);
+  const scale = energyScale(lowest, highest, plot, LABEL_ROOM);
+  const { y } = scale;
+
+  const points = document.stationaryPoints.map((point) => ({ point, x: x(shownAngle(point.angle)), y: y(point.relativeEnergy) }));
+  const lines = points.map(({ point }): [string, string] => [degreesText(point.angle), energyText(point.relativeEnergy, document.unit)]);
+  const labels = placeLabels(
+    points.map((point, n) => ({
+      x: point.x,
+      y: point.y,
+      width: Math.max(textWidth(lines[n][0], LABEL_SIZE), textWidth(lines[n][1], LABEL_SIZE, true)),
+      height: 2 * LINE_HEIGHT - 3,
+      side: point.point.kind === 'well' ? 'below' : 'above',
+    })),
+    {
+      boxes: [
+        ...points.map((point) => ({ left: point.x - 5, right: point.x + 5, top: point.y - 5, bottom: point.y + 5 })),
+        ...document.points.flatMap(({ angle, relativeEnergy, converged }) =>
+          converged ? [] : [{ left: x(angle) - 5, right: x(angle) + 5, top: y(relativeEnergy) - 5, bottom: y(relativeEnergy) + 5 }],
+        ),
+      ],
+      segments: chords(segments, x, y),
+      avoided: points.filter(({ point }) => point.kind === 'well').map((point): Segment => [point.x, plot.top, point.x, point.y - 6]),
+    },
+    plot,
+  );
+
+  const drawn = new Map(
+    shown.map(({ point, shared }, n) => {
+      const card = strip.cards[n];
+      return [
+        point,
+        {
+          markup: newmanDrawing(layouts[n], theme),
+          x: stripLeft + card.x,
+          y: HEADER + card.y,
+          scale: strip.scale,
+          caption: shared ? `±${degreesText(Math.abs(point.angle))}` : degreesText(point.angle),
+          captionY: HEADER + card.captionY,
+          bend: HEADER + strip.height + 4,
+          words: describeNewman(layouts[n]),
+        },
+      ] as const;
+    }),
+  );
+  return {
+    width,
+    height,
+    theme,
+    title: options.title ?? (document.molecule.name || document.molecule.smiles),
+    plot,
+    x,
+    energies: scale,
+    parts,
+    leftOut: document.stationaryPoints.length - shown.reduce((sum, { shared }) => sum + (shared ? 2 : 1), 0),
+    marks: points.map((point, n) => ({ ...point, label: labels[n], lines: lines[n], projection: drawn.get(point.point) })),
+  };
+}
+
+/** The molecule that a document describes. */
+function moleculeOf({ elements, formalCharges, bonds, name }: DocumentMolecule): Molecule {
+  return createMolecule({ atomicNumbers: elements.map(atomicNumberOf), formalCharges, bonds, name });
+}
+
+/** -180 and 180 are the same angle; it stands at the right edge. */
+export function shownAngle(angle: number): number {
+  return angle < -EDGE ? angle + 360 : angle;
+}
+
+/**
+ * The stationary points that get a projection, by angle. Where there are many, mirror images (opposite angles at the same energy) share one, and
+ * beyond the limit the lowest wells and highest barriers are kept.
+ */
+function projectedPoints(all: readonly ProfileStationaryPoint[]): { point: ProfileStationaryPoint; shared: boolean }[] {
+  let chosen = all.map((point) => ({ point, shared: false }));
+  if (chosen.length > MANY) {
+    const mirrored = (p: ProfileStationaryPoint): boolean =>
+      p.angle !== 0 &&
+      all.some(
+        (q) =>
+          q !== p &&
+          q.kind === p.kind &&
+          degreesText(q.angle) === degreesText(-p.angle) &&
+          Math.abs(q.relativeEnergy - p.relativeEnergy) < 0.005,
+      );
+    chosen = all.filter((point) => point.angle >= 0 || !mirrored(point)).map((point) => ({ point, shared: mirrored(point) }));
+  }
+  if (chosen.length > MOST_PROJECTIONS) {
+    const wells = chosen.filter(({ point }) => point.kind === 'well').sort((p, q) => p.point.relativeEnergy - q.point.relativeEnergy);
+    const barriers = chosen.filter(({ point }) => point.kind !== 'well').sort((p, q) => q.point.relativeEnergy - p.point.relativeEnergy);
+    const half = MOST_PROJECTIONS / 2;
+    chosen = [...wells.slice(0, half), ...barriers.slice(0, half)];
+  }
+  return chosen.sort((p, q) => shownAngle(p.point.angle) - shownAngle(q.point.angle));
+}
+
+const SAMPLES = 8;
+
+function samples(segment: CurveSegment): [number, number][] {
+  return Array.from({ length: SAMPLES + 1 }, (_, n) => {
+    const angle = segment.from + ((segment.to - segment.from) * n) / SAMPLES;
+    return [angle, segmentEnergy(segment, angle)];
+  });
+}
+
+function chords(segments: readonly CurveSegment[], x: (angle: number) => number, y: (energy: number) => number): Segment[] {
+  return segments.flatMap((segment) => {
+    const line = samples(segment);
+    return line.slice(1).map(([angle, energy], n): Segment => [x(line[n][0]), y(line[n][1]), x(angle), y(energy)]);
+  });
+}
+
+/** A point at -180 is also the one at 180. */
+export function atBothEdges(angle: number): number[] {
+  if (angle < -EDGE) return [angle, angle + 360];
+  return angle > EDGE ? [angle - 360, angle] : [angle];
+}
