@@ -4,7 +4,8 @@ import { InvalidArgumentError } from 'commander';
 /** Four 0-based atom indices, `A,B,C,D`. */
 export function atomQuadruple(text: string): [number, number, number, number] {
   const atoms = indices(text, ',');
-  if (atoms?.length !== 4 || new Set(atoms).size !== 4) throw new InvalidArgumentError('four different atom indices are meant, such as 0,1,2,3.');
+  if (atoms?.length !== 4 || new Set(atoms).size !== 4)
+    throw new InvalidArgumentError('four different atom indices are meant, such as 0,1,2,3.');
   return [atoms[0], atoms[1], atoms[2], atoms[3]];
 }
 
@@ -22,7 +23,8 @@ function indices(text: string, separator: string): number[] | undefined {
 
 export function positiveInteger(text: string): number {
   const value = Number(text);
-  if (!/^\d+$/.test(text.trim()) || value < 1 || !Number.isSafeInteger(value)) throw new InvalidArgumentError('a whole number from 1 up is meant.');
+  if (!/^\d+$/.test(text.trim()) || value < 1 || !Number.isSafeInteger(value))
+    throw new InvalidArgumentError('a whole number from 1 up is meant.');
   return value;
 }
 
@@ -47,6 +49,7 @@ export function positiveNumber(text: string): number {
 /** `constant:C` or `distance:C`, C the dielectric constant; the constant may be left out (1). */
 export function dielectric(text: string): { model: 'constant' | 'distance'; constant: number } {
   const [model, constant = '1'] = text.split(':');
-  if (model !== 'constant' && model !== 'distance') throw new InvalidArgumentError('constant:1 (the default), constant:4, distance:1 and the like are meant.');
+  if (model !== 'constant' && model !== 'distance')
+    throw new InvalidArgumentError('constant:1 (the default), constant:4, distance:1 and the like are meant.');
   return { model, constant: positiveNumber(constant) };
 }

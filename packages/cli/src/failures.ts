@@ -13,7 +13,9 @@ export function exitCodeOf(error: unknown): 1 | 2 {
 export function describeFailure(error: unknown): string {
   if (!(error instanceof TordialError)) return `internal error: ${error instanceof Error ? (error.stack ?? error.message) : String(error)}`;
   const { file, record, line } = error.place;
-  const where = [file, record === undefined ? undefined : `record ${record}`, line === undefined ? undefined : `line ${line}`].filter((part) => part !== undefined);
+  const where = [file, record === undefined ? undefined : `record ${record}`, line === undefined ? undefined : `line ${line}`].filter(
+    (part) => part !== undefined,
+  );
   return `${where.length > 0 ? `${where.join(', ')}: ` : ''}${error.message} [${error.code}]`;
 }
 

@@ -1,4 +1,2 @@
-import { createRequire } from 'node:module';
-
-/** Version of the package, as its manifest says. */
-export const VERSION: string = (createRequire(import.meta.url)('../package.json') as { version: string }).version;
+/** Version of the package; a test holds it to the manifest's. */
+export const VERSION = '0.1.0';

@@ -1,5 +1,7 @@
 /** The result of a one-dimensional scan as a plain JSON document; the JSON Schema stands in docs/schemas/profile-1.json. */
-import type { Note } from '@tordial/geometry';
+import { type Coordinates, elementSymbol, type Molecule, type Note } from '@tordial/geometry';
+import type { BranchEnd } from './profile-curve.js';
+import type { Profile } from './scan-rotor.js';
 
 export const PROFILE_SCHEMA = 'tordial/profile/1';
 
@@ -53,6 +55,9 @@ export interface ProfilePoint {
   readonly residual: number | null;
   /** The next point (cyclic) lies on another branch of the envelope: no smooth curve joins the two. */
   readonly breakAfter: boolean;
+  /** Across a break: this point's branch at the next point's angle and at the previous one's (energy, torque), where known. */
+  readonly beyond: BranchEnd | null;
+  readonly before: BranchEnd | null;
   /** Angstrom, x0 y0 z0 x1 ... */
   readonly coordinates: readonly number[];
 }
@@ -63,6 +68,9 @@ export interface ProfileStationaryPoint {
   readonly angle: number;
   readonly energy: number;
   readonly relativeEnergy: number;
+  /** Driving torque left over, unit per radian; that of the lower branch for a crossing. */
+  readonly torque: number;
+  readonly converged: boolean;
   readonly coordinates: readonly number[];
 }
 
@@ -86,4 +94,82 @@ export interface ProfileDocument {
   };
   readonly notes: readonly Note[];
   readonly provenance: { readonly program: string; readonly version: string; readonly potential: string; readonly [name: string]: unknown };
+}
+
+/** What a document says beside the scan itself. */
+export interface DocumentDetails {
+  readonly molecule: Molecule;
+  /** Canonical SMILES. */
+  readonly smiles: string;
+  readonly fragments: number;
+  readonly kind: string;
+  readonly parameters: readonly DocumentTorsionTerm[];
+  readonly unit: EnergyUnit;
+  /** Settings beside those the scan itself knows. */
+  readonly settings: { readonly conformers: number; readonly seed: number; readonly [name: string]: unknown };
+  /** Notes that came before those of the scan. */
+  readonly notes: readonly Note[];
+  readonly provenance: ProfileDocument['provenance'];
+}
+
+/** Exact: 1 cal = 4.184 J (thermochemical calorie). */
+const KJ_PER_KCAL = 4.184;
+
+/** The document of a scan. Energies, torques, angles and coordinates are rounded to 1e-6, below what a scan resolves. */
+export function profileDocument(profile: Profile, details: DocumentDetails): ProfileDocument {
+  const { molecule, unit } = details;
+  const factor = unit === 'kJ/mol' ? KJ_PER_KCAL : 1;
+  const { points, stationaryPoints } = profile;
+  const lowest = Math.min(...points.map(({ energy }) => energy), ...stationaryPoints.map(({ energy }) => energy));
+  const absolute = (energy: number): number => rounded(energy * factor);
+  const branch = (end: BranchEnd | null): BranchEnd | null => end && { energy: absolute(end.energy), torque: absolute(end.torque) };
+  const common = (point: { angle: number; energy: number; torque: number; converged: boolean; coordinates: Coordinates }) => ({
+    angle: rounded(point.angle),
+    energy: absolute(point.energy),
+    relativeEnergy: absolute(point.energy - lowest),
+    torque: absolute(point.torque),
+    converged: point.converged,
+    coordinates: Array.from(point.coordinates, rounded),
+  });
+  return {
+    schema: PROFILE_SCHEMA,
+    molecule: {
+      name: molecule.name,
+      smiles: details.smiles,
+      elements: Array.from(molecule.atomicNumbers, elementSymbol),
+      formalCharges: Array.from(molecule.formalCharges),
+      bonds: Array.from(molecule.bonds.a, (a, n) => [a, molecule.bonds.b[n], molecule.bonds.order[n]] as const),
+      fragments: details.fragments,
+    },
+    rotor: {
+      torsion: profile.torsion,
+      axis: [profile.torsion[1], profile.torsion[2]],
+      kind: details.kind,
+      sides: [Array.from(profile.sides.a), Array.from(profile.sides.b)],
+      parameters: details.parameters,
+    },
+    unit,
+    points: points.map((point) => ({
+      ...common(point),
+      residual: point.residual === null ? null : rounded(point.residual),
+      breakAfter: point.breakAfter,
+      beyond: branch(point.beyond),
+      before: branch(point.before),
+    })),
+    stationaryPoints: stationaryPoints.map((point) => ({ kind: point.kind, ...common(point) })),
+    settings: {
+      kind: profile.kind,
+      step: profile.step,
+      startAngle: profile.startAngle,
+      tolerance: profile.tolerance,
+      ...details.settings,
+    },
+    notes: [...details.notes, ...profile.notes],
+    provenance: { ...details.provenance, evaluations: profile.evaluations },
+  };
+}
+
+/** To six decimals, without a negative zero. */
+function rounded(value: number): number {
+  return Math.round(value * 1e6) / 1e6 + 0;
 }

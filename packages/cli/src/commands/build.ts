@@ -17,5 +17,7 @@ export function describeBuild(program: Command, finish: Finish): void {
     .option('--no-relax', 'leave the coordinates as embedded')
     .helpOption('--help', 'print this help')
     .addHelpText('after', example('tordial build "OC(=O)[C@H](C)c1ccccc1" --conformers 10 -o acid.sdf'))
-    .action(async (molecule: string, flags: BuildFlags) => finish(await (await import('../jobs/build.js')).buildStructures(molecule, flags)));
+    .action(async (molecule: string, flags: BuildFlags) =>
+      finish(await (await import('../jobs/build.js')).buildStructures(molecule, flags)),
+    );
 }

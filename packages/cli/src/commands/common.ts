@@ -1,4 +1,4 @@
-import { Command, Option } from 'commander';
+import { type Command, Option } from 'commander';
 import { dielectric, nonNegativeInteger } from '../arguments.js';
 
 /** Tells the entry which exit code the work ended with. */
@@ -19,7 +19,11 @@ export interface CommonFlags extends PotentialFlags {
 export function addPotentialOptions(command: Command): Command {
   return command
     .addOption(new Option('--force-field <name>', 'force field').choices(['mmff94s', 'mmff94']).default('mmff94s'))
-    .addOption(new Option('--dielectric <model:constant>', 'constant:C or distance:C').argParser(dielectric).default({ model: 'constant', constant: 1 }, 'constant:1'));
+    .addOption(
+      new Option('--dielectric <model:constant>', 'constant:C or distance:C')
+        .argParser(dielectric)
+        .default({ model: 'constant', constant: 1 }, 'constant:1'),
+    );
 }
 
 export function addCommonOptions(command: Command): Command {

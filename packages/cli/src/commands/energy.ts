@@ -14,5 +14,7 @@ export function describeEnergy(program: Command, finish: Finish): void {
     .option('--atom-types', 'add the MMFF94 type and partial charge of each atom')
     .helpOption('--help', 'print this help')
     .addHelpText('after', example('tordial energy molecules.sdf --force-field mmff94 --json'))
-    .action(async (molecule: string, flags: EnergyFlags) => finish(await (await import('../jobs/energy.js')).listEnergies(molecule, flags)));
+    .action(async (molecule: string, flags: EnergyFlags) =>
+      finish(await (await import('../jobs/energy.js')).listEnergies(molecule, flags)),
+    );
 }

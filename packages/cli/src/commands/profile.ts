@@ -1,5 +1,5 @@
 import { type Command, Option } from 'commander';
-import { atomQuadruple, axisPair, finiteNumber, positiveInteger, positiveNumber } from '../arguments.js';
+import { atomQuadruple, axisPair, finiteNumber, nonNegativeInteger, positiveNumber } from '../arguments.js';
 import { addCommonOptions, type CommonFlags, example, type Finish } from './common.js';
 
 export interface ProfileFlags extends CommonFlags {
@@ -19,20 +19,31 @@ export function describeProfile(program: Command, finish: Finish): void {
   addCommonOptions(program.command('profile'))
     .argument('<molecule>', 'SMILES, file or -')
     .description('energy against the angle of a rotor, relaxed at each angle')
-    .addOption(new Option('--torsion <A,B,C,D>', 'four bonded atoms; the bond B-C turns').argParser(atomQuadruple).conflicts(['rotor', 'all']))
+    .addOption(
+      new Option('--torsion <A,B,C,D>', 'four bonded atoms; the bond B-C turns').argParser(atomQuadruple).conflicts(['rotor', 'all']),
+    )
     .addOption(new Option('--rotor <B-C>', 'the bond that turns; its torsion is chosen').argParser(axisPair).conflicts(['torsion', 'all']))
     .addOption(new Option('--all', 'every rotor, one of each equivalent set').conflicts(['torsion', 'rotor']))
     .option('--rigid', 'turn one side as it stands and relax nothing')
     .addOption(new Option('--step <degrees>', 'distance of the grid angles, a divisor of 360').argParser(positiveNumber).default(10))
     .addOption(new Option('--start-angle <degrees>', 'an angle that lies on the grid').argParser(finiteNumber).default(-180))
-    .addOption(new Option('--conformers <n>', 'starting conformers').argParser(positiveInteger).default(8))
-    .addOption(new Option('--tolerance <value>', 'largest gradient component left at a point, kcal/mol/angstrom').argParser(positiveNumber).default(1e-3))
-    .option('--geometry <file>', 'start from this structure (.xyz, atoms in the order of MOLECULE) instead of built ones')
+    .addOption(new Option('--conformers <n>', 'starting conformers to build').argParser(nonNegativeInteger).default(8))
+    .addOption(
+      new Option('--tolerance <value>', 'largest gradient component left at a point, kcal/mol/angstrom')
+        .argParser(positiveNumber)
+        .default(1e-3),
+    )
+    .option('--geometry <file>', 'start from these structures too (.xyz, atoms in the order of MOLECULE)')
     .option('-o, --output <folder>', 'write profile.json, profile.csv, profile.svg, frames.xyz and frames.sdf there')
     .helpOption('--help', 'print this help')
     .addHelpText(
       'after',
-      example('tordial profile "COc1ccccc1" --torsion 0,1,2,3 -o anisole', 'With --all, or for a file of several records, each profile gets a folder of its own below the one named.'),
+      example(
+        'tordial profile "COc1ccccc1" --torsion 0,1,2,3 -o anisole',
+        'With --all, or for a file of several records, each profile gets a folder of its own below the one named.',
+      ),
     )
-    .action(async (molecule: string, flags: ProfileFlags) => finish(await (await import('../jobs/profile.js')).scanProfiles(molecule, flags)));
+    .action(async (molecule: string, flags: ProfileFlags) =>
+      finish(await (await import('../jobs/profile.js')).scanProfiles(molecule, flags)),
+    );
 }

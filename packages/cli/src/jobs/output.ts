@@ -9,7 +9,12 @@ export function prepareFolder(folder: string): void {
     mkdirSync(folder, { recursive: true });
     accessSync(folder, constants.W_OK);
   } catch (cause) {
-    throw new TordialError('output/folder', `the folder ${folder} cannot be written to (${reason(cause)}); name another one with -o`, { file: folder }, { cause });
+    throw new TordialError(
+      'output/folder',
+      `the folder ${folder} cannot be written to (${reason(cause)}); name another one with -o`,
+      { file: folder },
+      { cause },
+    );
   }
 }
 

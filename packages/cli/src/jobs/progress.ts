@@ -13,7 +13,10 @@ export function progress(label: string): Progress {
 }
 
 function bar(label: string): Progress {
-  const drawn = new SingleBar({ format: `${label} {bar} {value}/{total}`, stream: process.stderr, hideCursor: true, clearOnComplete: true }, Presets.rect);
+  const drawn = new SingleBar(
+    { format: `${label} {bar} {value}/{total}`, stream: process.stderr, hideCursor: true, clearOnComplete: true },
+    Presets.rect,
+  );
   let started = false;
   return {
     update(done, total) {

@@ -1,0 +1,45 @@
+/** Works through the records of an input: one that fails is reported and costs only itself. */
+import { type MolecularRecord, type Note, TordialError } from '@tordial/geometry';
+import { exitCodeOf, report } from '../failures.js';
+import { readRecords } from './input.js';
+
+/**
+ * Calls `work` for each record that could be read (`alone` when the input holds no other) and `failed` for each that could not be read or done. Resolves to the exit code: 0, 1
+ * when a record failed, 2 when the request fits none of the records. An error that is no TordialError is a bug and ends everything.
+ */
+export async function eachRecord(
+  argument: string,
+  work: (record: MolecularRecord, index: number, alone: boolean) => Promise<void> | void,
+  failed: (error: TordialError, index: number, name: string) => void = () => undefined,
+): Promise<number> {
+  let index = 0;
+  let failures = 0;
+  let misfits = 0;
+  const records = readRecords(argument);
+  let current = await records.next();
+  while (!current.done) {
+    const record = current.value;
+    const following = await records.next();
+    try {
+      if (record instanceof TordialError) throw record;
+      await work(record, index, index === 0 && following.done === true);
+    } catch (error) {
+      if (!(error instanceof TordialError)) throw error;
+      const placed = new TordialError(error.code, error.message, { ...record.place, ...error.place }, { cause: error });
+      report(placed);
+      failed(placed, index, record instanceof TordialError ? '' : record.molecule.name);
+      failures++;
+      if (exitCodeOf(error) === 2) misfits++;
+    }
+    index++;
+    current = following;
+  }
+  if (index === 0) throw new TordialError('file/empty', 'the input holds no record; give a SMILES, or a file with at least one molecule');
+  if (misfits === index) return 2;
+  return failures > 0 ? 1 : 0;
+}
+
+/** Tells notes on standard error. */
+export function tell(notes: readonly Note[], label = ''): void {
+  for (const { message } of notes) process.stderr.write(`note: ${label === '' ? '' : `${label}: `}${message}\n`);
+}

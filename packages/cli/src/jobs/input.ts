@@ -1,0 +1,103 @@
+/** What MOLECULE on the command line stands for, as a stream of records; one that cannot be read comes as its error, and the rest goes on. */
+import { createReadStream, existsSync, readFileSync, statSync } from 'node:fs';
+import { basename } from 'node:path';
+import type { Readable } from 'node:stream';
+import { createGunzip } from 'node:zlib';
+import { type MolecularRecord, moleculeFromSmiles, readXyz, sdfRecords, smilesRecords, TordialError } from '@tordial/geometry';
+
+/** A record, or what is wrong with it. */
+export type InputRecord = MolecularRecord | TordialError;
+
+const FORMAT = /\.(smi|smiles|mol|sdf|sd|xyz)(\.gz)?$/i;
+
+/** Records of a SMILES, a file or standard input. Throws `file/missing` and `file/format` before the first record. */
+export async function* readRecords(argument: string): AsyncGenerator<InputRecord> {
+  if (argument === '-') return yield* fromText(chunksOf(process.stdin), undefined);
+  if (existsSync(argument) && statSync(argument).isFile()) {
+    const format = FORMAT.exec(argument)?.[1].toLowerCase();
+    const stream = createReadStream(argument);
+    const unpacked = argument.endsWith('.gz') ? stream.pipe(createGunzip()) : stream;
+    stream.on('error', (error) => unpacked.destroy(error));
+    for await (const record of fromText(chunksOf(unpacked, argument), format)) {
+      if (record instanceof TordialError) yield new TordialError(record.code, record.message, { file: argument, ...record.place });
+      else yield { ...record, place: { file: argument, ...record.place } };
+    }
+    return;
+  }
+  if (FORMAT.test(argument))
+    throw new TordialError('file/missing', `there is no file ${argument}; check the path, or give a SMILES`, { file: argument });
+  yield smilesRecord(argument);
+}
+
+function smilesRecord(smiles: string): InputRecord {
+  try {
+    return { molecule: moleculeFromSmiles(smiles), coordinates: null, properties: new Map(), notes: [], place: {} };
+  } catch (error) {
+    if (error instanceof TordialError) return error;
+    throw error;
+  }
+}
+
+async function* fromText(chunks: AsyncIterable<string>, format: string | undefined): AsyncGenerator<InputRecord> {
+  switch (format) {
+    case 'smi':
+    case 'smiles':
+      return yield* smilesRecords(chunks);
+    case 'mol':
+    case 'sdf':
+    case 'sd':
+      return yield* sdfRecords(chunks);
+    case 'xyz':
+      throw new TordialError(
+        'file/format',
+        'an XYZ file says nothing of bonds; give the molecule as SMILES or molfile and the XYZ file with --geometry',
+      );
+    default:
+      return yield* guessed(chunks);
+  }
+}
+
+/** Text of unknown kind: a molfile has a counts line or ends in `$$$$`; everything else is read as a list of SMILES. */
+async function* guessed(chunks: AsyncIterable<string>): AsyncGenerator<InputRecord> {
+  const iterator = chunks[Symbol.asyncIterator]();
+  let head = '';
+  while (head.split('\n').length < 6) {
+    const { value, done } = await iterator.next();
+    if (done) break;
+    head += value;
+  }
+  const whole = (async function* () {
+    yield head;
+    yield* { [Symbol.asyncIterator]: () => iterator };
+  })();
+  const isMolfile = /V[23]000\s*$/.test(head.split(/\r?\n/)[3] ?? '');
+  yield* isMolfile ? sdfRecords(whole) : smilesRecords(whole);
+}
+
+async function* chunksOf(stream: Readable, file?: string): AsyncGenerator<string> {
+  stream.setEncoding('utf8');
+  try {
+    for await (const chunk of stream) yield String(chunk);
+  } catch (cause) {
+    throw new TordialError(
+      'file/read',
+      `${file ?? 'standard input'} cannot be read (${cause instanceof Error ? cause.message : String(cause)})`,
+      { file },
+      { cause },
+    );
+  }
+}
+
+/** The first frame of an XYZ file, in the atom order of the molecule. Throws `file/missing`, and as `readXyz` and `geometriesFor` do. */
+export function readFrames(path: string): ReturnType<typeof readXyz> {
+  if (!existsSync(path)) throw new TordialError('file/missing', `there is no file ${path}`, { file: path });
+  return readXyz(readFileSync(path, 'utf8'));
+}
+
+/** A name for a record in messages and folders: its own, or where it stands. */
+export function recordLabel(record: MolecularRecord, index: number): string {
+  return (
+    record.molecule.name ||
+    (record.place.file ? `${basename(record.place.file)} record ${record.place.record ?? index + 1}` : `record ${index + 1}`)
+  );
+}

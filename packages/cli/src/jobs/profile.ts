@@ -1,0 +1,92 @@
+/** `tordial profile`: scans, and the files that show them. */
+import { join } from 'node:path';
+import { geometriesFor, type MolecularRecord, type Molecule, TordialError } from '@tordial/geometry';
+import { checkTorsion, findRotors, type ProfileDocument, torsionOfAxis } from '@tordial/scan';
+import type { ProfileFlags } from '../commands/profile.js';
+import { torsionProfile } from '../torsion-profile.js';
+import { eachRecord, tell } from './each-record.js';
+import { readFrames, recordLabel } from './input.js';
+import { prepareFolder, writeFiles } from './output.js';
+import { variantOf } from './potential.js';
+import { profileFiles } from './profile-files.js';
+import { profileSummary } from './profile-summary.js';
+import { progress } from './progress.js';
+
+type Torsion = readonly [number, number, number, number];
+
+export async function scanProfiles(argument: string, flags: ProfileFlags): Promise<number> {
+  if (!flags.torsion && !flags.rotor && !flags.all)
+    throw new TordialError(
+      'usage/rotor',
+      'name the bond that turns: --torsion A,B,C,D, or --rotor B-C, or --all (tordial rotors lists them)',
+    );
+  if (!flags.output && !flags.json)
+    throw new TordialError('usage/output', 'say where the profile goes: -o FOLDER for files with the figure, --json for standard output');
+  if (flags.output) prepareFolder(flags.output);
+
+  // each profile gets a folder of its own as soon as there is more than one
+  const folders = new Set<string>();
+  return eachRecord(argument, async (record, index, alone) => {
+    const torsions = torsionsOf(record.molecule, flags);
+    for (const torsion of torsions) {
+      const label = `${recordLabel(record, index)} ${torsion[1]}-${torsion[2]}`;
+      const document = await scan(record, torsion, flags, label);
+      tell(document.notes, label);
+      if (flags.json) process.stdout.write(`${JSON.stringify(document)}\n`);
+      if (!flags.output) continue;
+      const parts = [flags.output];
+      if (!alone) parts.push(folderName(record.molecule, index, folders));
+      if (flags.all) parts.push(`rotor-${torsion[1]}-${torsion[2]}`);
+      const folder = join(...parts);
+      prepareFolder(folder);
+      writeFiles(folder, profileFiles(record.molecule, document));
+      process.stderr.write(`${profileSummary(document)}written to ${folder}\n`);
+    }
+  });
+}
+
+async function scan(record: MolecularRecord, torsion: Torsion, flags: ProfileFlags, label: string): Promise<ProfileDocument> {
+  const { molecule } = record;
+  const given = record.coordinates ? [record.coordinates] : [];
+  const shown = progress(label);
+  const stop = new AbortController();
+  const interrupt = (): void => stop.abort(new TordialError('usage/interrupted', 'interrupted; what was finished before is written'));
+  process.once('SIGINT', interrupt);
+  try {
+    return await torsionProfile(molecule, torsion, {
+      forceField: variantOf(flags),
+      dielectric: flags.dielectric,
+      step: flags.step,
+      startAngle: flags.startAngle,
+      conformers: flags.conformers,
+      starts: flags.geometry ? geometriesFor(molecule, readFrames(flags.geometry)) : given,
+      seed: flags.seed,
+      tolerance: flags.tolerance,
+      rigid: flags.rigid,
+      unit: flags.unit,
+      notes: record.notes,
+      onProgress: ({ done, total }) => shown.update(done, total),
+      signal: stop.signal,
+    });
+  } finally {
+    process.removeListener('SIGINT', interrupt);
+    shown.stop();
+  }
+}
+
+function torsionsOf(molecule: Molecule, flags: ProfileFlags): Torsion[] {
+  if (flags.torsion) return [checkTorsion(molecule, flags.torsion)];
+  if (flags.rotor) return [torsionOfAxis(molecule, ...flags.rotor)];
+  const rotors = findRotors(molecule);
+  if (rotors.length === 0) throw new TordialError('torsion/none', 'the molecule has no bond that turns');
+  const first = rotors.filter(({ equivalenceClass }, n) => rotors.findIndex((rotor) => rotor.equivalenceClass === equivalenceClass) === n);
+  return first.map(({ torsion }) => torsion);
+}
+
+/** A folder name from the molecule's own name, plain and used once. */
+function folderName(molecule: Molecule, index: number, used: Set<string>): string {
+  const plain = molecule.name.replace(/[^A-Za-z0-9._-]+/g, '-').replace(/^[-.]+|[-.]+$/g, '');
+  const name = plain === '' || used.has(plain) ? `${plain === '' ? 'record' : plain}-${index + 1}` : plain;
+  used.add(name);
+  return name;
+}

@@ -1,0 +1,144 @@
+/** The common case in one call: a molecule and four atoms in, the document of a torsion profile out. */
+import { type Mmff94, type Mmff94Options, mmff94, torsionTermsOn } from '@tordial/forcefield';
+import {
+  type Coordinates,
+  canonicalSmiles,
+  fragmentsOf,
+  type Molecule,
+  moleculeFromSmiles,
+  type Note,
+  openStereo,
+  perceiveStereo,
+} from '@tordial/geometry';
+import {
+  type Abortable,
+  type Calculation,
+  checkTorsion,
+  conformerSearch,
+  type EnergyUnit,
+  type Potential,
+  type ProfileDocument,
+  profileDocument,
+  rotorOfTorsion,
+  rotorScan,
+  type ScanProgress,
+} from '@tordial/scan';
+import { VERSION } from './version.js';
+
+export interface TorsionProfileOptions {
+  /** MMFF94s by default. */
+  readonly forceField?: 'MMFF94' | 'MMFF94s';
+  /** Constant, 1 by default. */
+  readonly dielectric?: Mmff94Options['dielectric'];
+  /** Degrees between the grid angles, a divisor of 360; 10. */
+  readonly step?: number;
+  /** An angle on the grid, degrees; -180. */
+  readonly startAngle?: number;
+  /** Starting conformers to build; 8. May be 0 when `starts` are given. */
+  readonly conformers?: number;
+  /** Starting geometries of your own, angstrom; they come before the built ones. A rigid scan turns the first start alone. */
+  readonly starts?: readonly Coordinates[];
+  /** Seed of everything random; 1. */
+  readonly seed?: number;
+  /** Largest gradient component left at a point, kcal/mol/angstrom; 1e-3. */
+  readonly tolerance?: number;
+  /** Turn one side as it stands and relax nothing. */
+  readonly rigid?: boolean;
+  /** kcal/mol by default. */
+  readonly unit?: EnergyUnit;
+  readonly onProgress?: (progress: ScanProgress) => void;
+  /** Stops the work with the signal's reason. */
+  readonly signal?: Abortable;
+  /** Notes to carry in the document, such as those that came with a record. */
+  readonly notes?: readonly Note[];
+}
+
+/**
+ * Scans the torsion about the bond between the second and third of four atoms, relaxed at each angle, to the lower envelope over several
+ * starting conformers. `input` is a SMILES or a molecule.
+ *
+ * The event loop gets a turn every few milliseconds, so that progress can be shown and a signal can arrive.
+ * Rejects with a `TordialError`: `smiles/...` for a SMILES that cannot be read, `torsion/...` for atoms that are no torsion that turns,
+ * `mmff94/...` for a molecule that MMFF94 does not cover, `embed/failed`, `scan/...`.
+ */
+export async function torsionProfile(
+  input: string | Molecule,
+  atoms: readonly [number, number, number, number],
+  options: TorsionProfileOptions = {},
+): Promise<ProfileDocument> {
+  const { conformers = 8, starts: given = [], seed = 1, unit = 'kcal/mol', rigid = false, notes = [], signal } = options;
+  const molecule = typeof input === 'string' ? moleculeFromSmiles(input) : input;
+  const torsion = checkTorsion(molecule, atoms);
+  const { kind } = rotorOfTorsion(molecule, torsion);
+  const potential = mmff94(molecule, { variant: options.forceField, dielectric: options.dielectric });
+
+  const wanted = rigid ? Math.max(0, 1 - given.length) : conformers;
+  const built = wanted === 0 ? { starts: [], notes: openStereo(molecule) } : await build(molecule, potential, wanted, seed, signal);
+  const starts = [...given, ...built.starts];
+  // a stereocentre that the input leaves open is scanned as the starts have it: turning bonds cannot invert it
+  const settled = { ...molecule, stereo: perceiveStereo(molecule, starts[0]) };
+  const profile = await driveInTurns(
+    rotorScan(settled, torsion, {
+      starts,
+      kind: rigid ? 'rigid' : 'relaxed',
+      step: options.step,
+      startAngle: options.startAngle,
+      tolerance: options.tolerance,
+      onProgress: options.onProgress,
+      signal,
+    }),
+    potential,
+    signal,
+  );
+
+  const fragments = fragmentsOf(molecule).count;
+  return profileDocument(profile, {
+    molecule: settled,
+    smiles: canonicalSmiles(settled),
+    fragments,
+    kind,
+    parameters: torsionTermsOn(potential.parameters, torsion[1], torsion[2]),
+    unit,
+    settings: { conformers: starts.length, seed, dielectric: potential.dielectric },
+    notes: [...notes, ...severalFragments(fragments), ...built.notes],
+    provenance: { program: 'tordial', version: VERSION, potential: potential.variant },
+  });
+}
+
+async function build(
+  molecule: Molecule,
+  potential: Mmff94,
+  count: number,
+  seed: number,
+  signal: Abortable | undefined,
+): Promise<{ starts: Coordinates[]; notes: readonly Note[] }> {
+  const { conformers, notes } = await driveInTurns(conformerSearch(molecule, { count, seed, tolerance: ROUGH_START }), potential, signal);
+  return { starts: conformers.map(({ coordinates }) => coordinates), notes };
+}
+
+/** A start is turned and relaxed again, so it need not be converged, kcal/mol/angstrom. */
+const ROUGH_START = 0.1;
+
+function severalFragments(count: number): Note[] {
+  if (count === 1) return [];
+  const message = `the input holds ${count} separate fragments; all of them were kept, and their mutual energy is part of the profile`;
+  return [{ code: 'molecule/fragments', message }];
+}
+
+/** Milliseconds of work between two turns of the event loop. */
+const TURN = 40;
+
+/** Runs a calculation on a potential in this thread, giving the event loop a turn now and then. */
+async function driveInTurns<T>(calculation: Calculation<T>, potential: Potential, signal?: Abortable): Promise<T> {
+  let pause = performance.now() + TURN;
+  let step = calculation.next(0);
+  while (!step.done) {
+    if (performance.now() > pause) {
+      await new Promise<void>((resolve) => setTimeout(resolve, 0));
+      signal?.throwIfAborted();
+      pause = performance.now() + TURN;
+    }
+    step = calculation.next(potential.evaluate(step.value.x, step.value.gradient));
+  }
+  return step.value;
+}
