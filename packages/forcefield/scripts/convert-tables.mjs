@@ -20,6 +20,9 @@ const resources = JSON.parse(readFileSync(join(dirname(openchemlib), 'resources.
 const DECIDED = {
   // MMFF94s out-of-plane, 37-64-63-64: -0.011 in MMFF94 and in one copy of MMFF94s; the rows that MMFF94s changed are marked and this one is not
   's out-of-plane 37 64 63 64': '-0.011',
+  // fluorine: 4.12 in the one copy; the N-F bond of molecule ERULE_06 of the validation suite, r0 = 1.37861 angstrom by its force constant, holds
+  // with one digit more
+  'electronegativity 9': '4.123',
 };
 
 const par = (file, skip = 0) =>
@@ -101,7 +104,7 @@ const tables = [
   [
     'COVALENT_RADII',
     'Blom-Haaland radius (A), Allred-Rochow electronegativity, by atomic number',
-    csv('covrad').map(([z, ...v]) => [z, v.map(short).join(' ')]),
+    csv('covrad').map(([z, radius, chi]) => [z, `${short(radius)} ${short(DECIDED[`electronegativity ${z}`] ?? chi)}`]),
   ],
   [
     'HERSCHBACH_LAURIE',

@@ -8,7 +8,7 @@
  * Source: T. A. Halgren, J. Comput. Chem. 17, 490 (1996), Table III and its notes on aromatic rings.
  */
 import { neighboursOf } from '@tordial/geometry';
-import type { AromaticRing, Aromaticity } from './aromaticity.js';
+import type { Aromaticity, AromaticRing } from './aromaticity.js';
 import type { SymbolicType } from './symbolic-types.js';
 import { neighbourByOrder, terminalCount, type ValenceForm } from './valence-form.js';
 
@@ -36,7 +36,12 @@ export function assignAromaticTypes(form: ValenceForm, aromaticity: Aromaticity,
 }
 
 /** An amino group next to the positive nitrogen of a five-membered ring takes part in the resonance: 2-aminothiazolium, 2-aminoimidazolium. */
-function assignAminoNeighbours(form: ValenceForm, aromaticity: Aromaticity, position: Uint8Array, types: (SymbolicType | undefined)[]): void {
+function assignAminoNeighbours(
+  form: ValenceForm,
+  aromaticity: Aromaticity,
+  position: Uint8Array,
+  types: (SymbolicType | undefined)[],
+): void {
   const { element, degree, valence, molecule } = form;
   for (let i = 0; i < position.length; i++) {
     if (element[i] !== C || position[i] === 0) continue;

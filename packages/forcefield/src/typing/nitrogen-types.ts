@@ -10,7 +10,12 @@ const P = 15;
 const S = 16;
 
 /** The type of nitrogen i, given the types of all carbons; throws `mmff94/atom-type` where there is none. */
-export function nitrogenType(form: ValenceForm, types: readonly (SymbolicType | undefined)[], aromatic: Uint8Array, i: number): SymbolicType {
+export function nitrogenType(
+  form: ValenceForm,
+  types: readonly (SymbolicType | undefined)[],
+  aromatic: Uint8Array,
+  i: number,
+): SymbolicType {
   switch (form.degree[i]) {
     case 4:
       return terminalCount(form, i, O) === 1 ? 'N3OX' : 'NR+';

@@ -38,7 +38,8 @@ function divalentType(form: ValenceForm, i: number): SymbolicType {
       if (partner >= 0 && element[partner] === O) return 'ON=O';
     }
     const oxygens = elementCount(form, j, O);
-    if (element[j] === S) return form.degree[j] === 4 ? (oxygens >= 3 ? 'OSO3' : 'OSO2') : terminalCount(form, j, O) > 0 ? 'OS=O' : oxygens > 1 ? 'OSO' : '-OS';
+    if (element[j] === S)
+      return form.degree[j] === 4 ? (oxygens >= 3 ? 'OSO3' : 'OSO2') : terminalCount(form, j, O) > 0 ? 'OS=O' : oxygens > 1 ? 'OSO' : '-OS';
     if (element[j] === P) return oxygens >= 4 ? 'OPO3' : oxygens === 3 ? 'OPO2' : oxygens === 2 ? 'OPO' : '-OP';
   }
   return neighbours.every((j) => element[j] === H || (element[j] === C && form.degree[j] === 4)) ? 'OR' : '-O-';

@@ -44,7 +44,11 @@ export function checkValences(form: ValenceForm): void {
     }
     const byCharge = VALENCES[element[i]];
     if (!byCharge)
-      throw untypable(form, i, IONS[element[i]] ? 'it knows this metal only as an ion without bonds' : 'the element is outside the force field');
+      throw untypable(
+        form,
+        i,
+        IONS[element[i]] ? 'it knows this metal only as an ion without bonds' : 'the element is outside the force field',
+      );
     if (!byCharge[charge[i]]?.includes(valence[i]))
       throw untypable(form, i, `bond orders that sum to ${valence[i]} with charge ${charge[i]} are not a closed-shell valence it covers`);
   }

@@ -83,8 +83,7 @@ export function valenceForm(molecule: Molecule): ValenceForm {
 
 /** First neighbour of atom i that a bond of this order leads to, -1 where there is none. */
 export function neighbourByOrder({ molecule: { neighbours }, order }: ValenceForm, i: number, wanted: number): number {
-  for (let n = neighbours.start[i]; n < neighbours.start[i + 1]; n++)
-    if (order[neighbours.bond[n]] === wanted) return neighbours.atom[n];
+  for (let n = neighbours.start[i]; n < neighbours.start[i + 1]; n++) if (order[neighbours.bond[n]] === wanted) return neighbours.atom[n];
   return -1;
 }
 
