@@ -22,6 +22,8 @@ export interface AngleTable {
 }
 
 const RADIANS = Math.PI / 180;
+/** Weight of the inner angle of a small ring against the others at a centre. */
+const KEPT = 8;
 const STRAIGHT_IN_RING: Readonly<Record<number, number>> = { 8: 157, 9: 163, 10: 168, 11: 171 };
 
 export function bondAngles(molecule: Molecule, shapes: Shapes): AngleTable {
@@ -162,12 +164,13 @@ function sharePlane(local: LocalAngle[], around: Int32Array): void {
 function shareSphere(local: LocalAngle[], around: Int32Array): void {
   const count = around.length;
   if (count < 3) return;
+  const ringed = new Set(local.filter(({ ring }) => ring > 0 && ring < 6).flatMap(({ i, k }) => [i, k]));
   const place = new Map(Array.from(around, (atom, n) => [atom, n]));
   const pairs = local.map(({ i, k, angle, ring }) => ({
     p: place.get(i) ?? 0,
     q: place.get(k) ?? 0,
     cosine: Math.cos(angle * RADIANS),
-    weight: ring > 0 && ring < 6 ? 8 : ring === 6 ? 2 : 1,
+    weight: ring > 0 && ring < 6 ? KEPT : ring === 6 ? 2 : ringed.has(i) || ringed.has(k) ? 1 : 3,
   }));
   const corners = [1, 1, 1, 1, -1, -1, -1, 1, -1, -1, -1, 1];
   const direction = Float64Array.from({ length: 3 * count }, (_, n) => corners[n] / Math.sqrt(3) + 0.01 * ((n % 4) - 1));
@@ -195,7 +198,7 @@ function shareSphere(local: LocalAngle[], around: Int32Array): void {
   }
   local.forEach((row, n) => {
     const { p, q, weight } = pairs[n];
-    if (weight === 8) return;
+    if (weight === KEPT) return;
     const is =
       direction[3 * p] * direction[3 * q] + direction[3 * p + 1] * direction[3 * q + 1] + direction[3 * p + 2] * direction[3 * q + 2];
     row.angle = Math.acos(Math.max(-1, Math.min(1, is))) / RADIANS;

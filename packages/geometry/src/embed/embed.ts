@@ -87,7 +87,10 @@ function embedder(molecule: Molecule): (random: Random, attempts: number) => Coo
       if (fault === null) return centred(x);
       reason = fault;
     }
-    throw new TordialError('embed/failed', `no structure found in ${attempts} attempts: ${reason}; another seed or more attempts may help`);
+    throw new TordialError(
+      'embed/failed',
+      `no structure found in ${attempts} attempts: ${reason}; check the stated configuration, or try another seed or more attempts`,
+    );
   };
 
   /** More of the signed volumes have the wrong sign than the right one. */

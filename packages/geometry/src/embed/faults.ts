@@ -6,7 +6,11 @@ import { type SignedVolumes, signedVolume } from './handedness.js';
 import { threadedRing } from './threading.js';
 import type { Turning } from './turning.js';
 
-const BOND_OFF = 0.22;
+/** Angstrom. */
+const BOND_OFF = 0.2;
+/** Radians beyond the usual spread: sound cages and crowded molecules stay below 0.27, bridges forced into an impossible form begin at 0.4. */
+const ANGLE_OFF = 0.35;
+/** Least distance as a share of the sum of van der Waals radii. */
 const CONTACT_SHARE = 0.55;
 
 /** The first fault of coordinates x (3 values an atom), or null. */
@@ -38,7 +42,7 @@ export function structureFault(
     const [i, j, k] = [angles.i[m], angles.j[m], angles.k[m]];
     if (shapes.steric[j] > 4) continue;
     const off = Math.abs(bend(x, i, j, k) - angles.angle[m]);
-    if (off > 0.55 + angles.tolerance[m]) return `the angle ${i}-${j}-${k} is off by ${Math.round((off * 180) / Math.PI)} degrees`;
+    if (off > ANGLE_OFF + angles.tolerance[m]) return `the angle ${i}-${j}-${k} is off by ${Math.round((off * 180) / Math.PI)} degrees`;
   }
   for (let i = 0; i < n; i++)
     for (let j = 0; j < i; j++) {

@@ -47,6 +47,8 @@ export interface Turning {
 
 /** Rings from this size on hold a trans double bond. */
 const SMALLEST_TRANS_RING = 8;
+/** Open double bonds of rings up to this size are made cis. */
+const LARGEST_CIS_RING = 11;
 
 interface Series {
   readonly v1?: number;
@@ -143,11 +145,12 @@ export function turning(molecule: Molecule, shapes: Shapes): Turning {
       const [p, q] = a === entry.a ? [atA, atB] : [atB, atA];
       return (p === entry.substituentA) === (q === entry.substituentB) ? entry.cis : !entry.cis;
     }
-    // an open double bond in a medium ring is cis inside of it
+    // an open double bond is cis inside of a medium ring, and where it links the small rings of a porphyrin
     const bond = bondBetween(molecule, a, b);
     const size = bond < 0 ? 0 : bondRing[bond];
-    if (size < SMALLEST_TRANS_RING || size > 11) return null;
+    if (size < SMALLEST_TRANS_RING) return null;
     const ring = rings.find((atoms) => atoms.includes(a) && atoms.includes(b));
+    if (size > LARGEST_CIS_RING && !(ring?.every((i) => steric[i] === 3) && (inFlatRing(a) || inFlatRing(b)))) return null;
     return ring ? ring.includes(atA) === ring.includes(atB) : null;
   }
 
@@ -204,14 +207,17 @@ export function turning(molecule: Molecule, shapes: Shapes): Turning {
       if (p === 7 && q === 7) return { v2: share(2), v3: share(1) };
       if (lone(p) || lone(q)) return { v3: share(p === 16 || q === 16 ? 1.6 : 1.2) };
       if (p === 7 || q === 7) return { v3: share(p > 10 || q > 10 ? 1 : 2.2) };
-      return { v3: share(p > 10 || q > 10 ? 1.3 : 2.9) };
+      // the small rings' pucker is left to their angles
+      return { v3: share(p > 10 || q > 10 ? 1.3 : bondRing[n] === 3 || bondRing[n] === 4 ? 1 : 2.9) };
     }
     // one trigonal, one tetrahedral end
     const [trigonal, tetrahedral, atTetrahedral, atTrigonal] = steric[a] === 3 ? [a, b, l, i] : [b, a, i, l];
     if ((atomicNumbers[tetrahedral] === 8 || atomicNumbers[tetrahedral] === 16) && degree(tetrahedral) === 2) {
       if (!unsaturated[trigonal]) return { v2: share(2) };
       if (carbonylBond(a, b)) return { v2: -share(9) };
-      return { v2: -share(atomicNumbers[tetrahedral] === 8 ? 3.5 : 1.5) };
+      // between two rings (diaryl ethers) neither holds it in its plane
+      const between = others(tetrahedral, trigonal).some((i) => steric[i] === 3 && unsaturated[i]);
+      return { v2: -share(atomicNumbers[tetrahedral] === 8 && !between ? 3.5 : 1.5) };
     }
     if (atomicNumbers[tetrahedral] === 7 && degree(tetrahedral) < 4) return { v2: -share(2) };
     if (!unsaturated[trigonal]) return null;
@@ -233,6 +239,10 @@ export function turning(molecule: Molecule, shapes: Shapes): Turning {
   }
   function inAromatic(i: number): boolean {
     for (let m = neighbours.start[i]; m < neighbours.start[i + 1]; m++) if (aromaticBond[neighbours.bond[m]]) return true;
+    return false;
+  }
+  function inFlatRing(i: number): boolean {
+    for (let m = neighbours.start[i]; m < neighbours.start[i + 1]; m++) if (flatRingBond[neighbours.bond[m]]) return true;
     return false;
   }
   function biaryl(a: number, b: number): boolean {
