@@ -78,6 +78,8 @@ export interface OrbitOptions {
 export function atomOrbits(molecule: SymmetricGraph, { fixed = [], stereo = 'kept' }: OrbitOptions = {}): Int32Array {
   const held = molecule.symmetryClasses.slice();
   const follows = followers(molecule, 'terminal atoms');
+  const isFixed = new Uint8Array(molecule.atomCount);
+  for (const atom of fixed) isFixed[atom] = 1;
   // holding a terminal atom holds the atom it goes with
   fixed.forEach((atom, n) => {
     held[follows[atom] ? neighboursOf(molecule, atom)[0] : atom] = molecule.atomCount + n;
@@ -95,9 +97,9 @@ export function atomOrbits(molecule: SymmetricGraph, { fixed = [], stereo = 'kep
     if (free || preservesStereo) for (let i = 0; i < image.length; i++) join(i, image[i]);
   // atoms that follow the same one never change places above
   for (let i = 0; i < molecule.atomCount; i++)
-    if (follows[i] && !fixed.includes(i))
+    if (follows[i] && !isFixed[i])
       for (const j of neighboursOf(molecule, neighboursOf(molecule, i)[0]))
-        if (follows[j] && held[i] === held[j] && !fixed.includes(j)) join(i, j);
+        if (follows[j] && held[i] === held[j] && !isFixed[j]) join(i, j);
   return orbit;
 }
 

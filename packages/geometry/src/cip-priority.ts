@@ -129,7 +129,7 @@ function real({ atomicNumbers, isotopes }: RankedGraph, atom: number, parent: No
 function expand(molecule: RankedGraph, partners: readonly (readonly number[])[], node: Node): Node[] {
   const children: Node[] = [];
   if (node.atom < 0) return children;
-  const { neighbours, bonds, atomicNumbers } = molecule;
+  const { neighbours, atomicNumbers } = molecule;
   const depth = node.depth + 1;
   const duplicate = (atomicNumber: number, originalDepth: number): Node => ({
     atom: -1,

@@ -19,6 +19,7 @@ export type RotorKind =
   | 'ester'
   | 'ester O-alkyl'
   | 'ester O-aryl'
+  | 'ester O-vinyl'
   | 'anhydride'
   | 'carbonate'
   | 'imidate'
@@ -52,6 +53,9 @@ export type RotorKind =
   | 'ring bond';
 
 const [CARBON, NITROGEN, OXYGEN, SILICON, PHOSPHORUS, SULFUR, SELENIUM] = [6, 7, 8, 14, 15, 16, 34];
+
+/** Elements whose OH is that of an acid or a silanol; N-OH and O-OH count as bonds between heteroatoms. */
+const ACID_FORMERS = new Set([5, SILICON, PHOSPHORUS, SULFUR, SELENIUM]);
 
 /** A function that names the bonds of one molecule; `symmetryNumbers` are those of the sides at a and b (`symmetryNumberOfSide`). */
 export function bondKinds(molecule: Molecule): (a: number, b: number, symmetryNumbers: readonly [number, number]) => RotorKind {
@@ -113,6 +117,7 @@ export function bondKinds(molecule: Molecule): (a: number, b: number, symmetryNu
       [a, b],
       [b, a],
     ]) {
+      if (ACID_FORMERS.has(element(p)) && element(q) === OXYGEN && has(q, p, isHydrogen)) return 'hydroxyl';
       if (isSulfonyl(p) && element(q) === NITROGEN) return 'sulfonamide';
       if (isSulfonyl(p) && element(q) === OXYGEN) return 'sulfonate ester';
       if (isPhosphoryl(p) && element(q) === OXYGEN) return 'phosphate ester';
@@ -172,7 +177,7 @@ export function bondKinds(molecule: Molecule): (a: number, b: number, symmetryNu
     if (acyl === NITROGEN) return 'imidate';
     const ofEster = has(oxygen, carbon, (j) => isAcyl(j) || isSulfonyl(j) || isPhosphoryl(j));
     if (aromatic[carbon]) return ofEster ? 'ester O-aryl' : 'aryl ether';
-    if (acyl === CARBON) return 'vinyl ether';
+    if (acyl === CARBON) return ofEster ? 'ester O-vinyl' : 'vinyl ether';
     return ofEster ? 'ester O-alkyl' : 'alkyl ether';
   }
 }

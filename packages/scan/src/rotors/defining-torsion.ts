@@ -22,8 +22,7 @@ const SAME_ANGLE = 1e-5;
  */
 export function torsionOfAxis(molecule: Molecule, b: number, c: number, x?: Coordinates): Torsion {
   if (!neighboursOf(molecule, b).includes(c)) throw new TordialError('torsion/chain', `atoms ${b} and ${c} are not bonded`, { atom: b });
-  const orbits = atomOrbits(molecule, { fixed: [b, c], stereo: 'ignored' });
-  const [front, rear] = [definingSubstituents(molecule, b, c, orbits), definingSubstituents(molecule, c, b, orbits)];
+  const [front, rear] = [definingSubstituents(molecule, b, c), definingSubstituents(molecule, c, b)];
   let best: Torsion = [front[0], b, c, rear[0]];
   if (!x) return best;
   let smallest = Number.POSITIVE_INFINITY;
@@ -38,18 +37,27 @@ export function torsionOfAxis(molecule: Molecule, b: number, c: number, x?: Coor
 }
 
 /** The substituent of `atom` that defines, or all of those among which only the angle can choose; ascending. */
-function definingSubstituents(molecule: Molecule, atom: number, partner: number, orbits: Int32Array): Int32Array {
+function definingSubstituents(molecule: Molecule, atom: number, partner: number): Int32Array {
   const substituents = neighboursOf(molecule, atom).filter((j) => j !== partner);
   if (substituents.length === 0)
     throw new TordialError('torsion/chain', `atom ${atom} has no neighbour but ${partner}, so that no torsion angle is defined`, { atom });
-  const alike = (j: number) => substituents.filter((k) => orbits[k] === orbits[j]);
+  const kind = kindsOfSubstituent(molecule, atom, partner, substituents);
+  const alike = (j: number) => substituents.filter((k) => kind[k] === kind[j]);
   const unique = substituents.filter((j) => alike(j).length === 1);
   if (unique.length === 1) return unique;
   const pool = unique.length > 0 ? unique : substituents;
-  if (pool.every((j) => orbits[j] === orbits[pool[0]])) return pool;
+  if (pool.every((j) => kind[j] === kind[pool[0]])) return pool;
   for (const group of cipPriority(molecule, atom)) {
-    const highest = group.filter((j) => pool.includes(j));
-    if (highest.length > 0) return alike(highest[0]).length > 1 ? alike(highest[0]) : highest;
+    const highest = group.find((j) => pool.includes(j));
+    if (highest !== undefined) return alike(highest);
   }
   return pool;
+}
+
+/** A number an atom that like substituents share: symmetry classes, checked by permutations where larger groups share one. */
+function kindsOfSubstituent(molecule: Molecule, atom: number, partner: number, substituents: Int32Array): Int32Array {
+  const { symmetryClasses } = molecule;
+  const groups = substituents.filter((j) => neighboursOf(molecule, j).length > 1);
+  const shared = new Set(groups.map((j) => symmetryClasses[j])).size < groups.length;
+  return shared ? atomOrbits(molecule, { fixed: [atom, partner], stereo: 'ignored' }) : symmetryClasses;
 }

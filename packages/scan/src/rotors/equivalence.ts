@@ -35,13 +35,15 @@ const WORK_LIMIT = 1 << 17;
 
 /** The classes of equivalence of the rotors with these axes. */
 export function rotorEquivalence(molecule: Molecule, axes: readonly (readonly [number, number])[]): RotorEquivalence[] {
-  const group = automorphisms(molecule, { limit: GROUP_LIMIT, following: 'terminal atoms' });
-  const images = group.automorphisms.map(({ image }) => image);
+  const identity = Int32Array.from({ length: molecule.atomCount }, (_, i) => i);
+  const apart = axes.map((_, n) => ({ equivalenceClass: n, relabelling: identity, mirrored: false }));
+  // the order of the group is known from its generators, before it is listed
+  const { order } = automorphisms(molecule, { limit: 1, following: 'terminal atoms' });
+  if (axes.length < 2 || order === 1 || order > GROUP_LIMIT) return apart;
+  const images = automorphisms(molecule, { limit: GROUP_LIMIT, following: 'terminal atoms' }).automorphisms.map(({ image }) => image);
   const { known, openCentres, openDoubleBonds, openAxes } = handedParts(molecule, images);
   const numberings = 2 ** (openCentres.length + openDoubleBonds.length + openAxes.length);
-  const identity = images[0];
-  if (!group.complete || numberings * images.length > WORK_LIMIT)
-    return axes.map((_, n) => ({ equivalenceClass: n, relabelling: identity, mirrored: false }));
+  if (numberings * images.length > WORK_LIMIT) return apart;
 
   const rotorOfBond = new Map(axes.map(([a, b], n) => [bondBetween(molecule, a, b), n]));
   const targets = images.map((image) =>

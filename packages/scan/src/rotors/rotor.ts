@@ -1,5 +1,5 @@
 /** Bonds whose two sides turn against each other. */
-import { atomOrbits, type Molecule, neighboursOf, sidesOfBond } from '@tordial/geometry';
+import { type Molecule, neighboursOf, sidesOfBond } from '@tordial/geometry';
 import { atomShape } from './atom-shape.js';
 import { bondKinds, type RotorKind } from './bond-kind.js';
 import { type Torsion, torsionOfAxis } from './defining-torsion.js';
@@ -24,9 +24,9 @@ export interface Rotor extends RotorEquivalence {
 /**
  * The rotors of a molecule, ascending by axis, the axis's lower atom first.
  *
- * A rotor is a single bond outside rings whose atoms both have a further neighbour and an angle to bend it by. Bonds next to a
- * linear centre (C-C#C, C-C#N, C-N=C=O counted from its carbon) are none, as no torsion angle is defined about them: the two ends of
- * an alkyne turn almost freely about the whole linear unit. Amides, esters and other partial double bonds are listed.
+ * A rotor is a single bond outside rings whose atoms both have a further neighbour. Bonds to a linear centre (the C-C of C-C#C and
+ * C-C#N) are none, as no torsion angle is defined about them; the two ends of an alkyne turn almost freely about the whole linear unit.
+ * Amides, esters and other partial double bonds are listed.
  */
 export function findRotors(molecule: Molecule): Rotor[] {
   const { bonds } = molecule;
@@ -87,8 +87,7 @@ function describe(
   kindOf: ReturnType<typeof bondKinds>,
 ): Omit<Rotor, keyof RotorEquivalence> {
   const [a, b] = axis;
-  const orbits = atomOrbits(molecule, { fixed: axis });
-  const symmetryNumbers = [symmetryNumberOfSide(molecule, a, b, orbits), symmetryNumberOfSide(molecule, b, a, orbits)] as const;
+  const symmetryNumbers = [symmetryNumberOfSide(molecule, a, b, sides.a), symmetryNumberOfSide(molecule, b, a, sides.b)] as const;
   return {
     axis,
     torsion: torsionOfAxis(molecule, a, b),
