@@ -11,7 +11,7 @@ import { type Coordinates, type Molecule, TordialError } from '@tordial/geometry
 import { drive } from './drive.js';
 import { modelHessian, preconditionerAt } from './model-hessian.js';
 import type { Calculation, Potential, Question } from './potential.js';
-import { forget, remember, renew, type SecantMemory, searchDirection, secantMemory } from './secant-memory.js';
+import { forget, remember, type SecantMemory, searchDirection, secantMemory } from './secant-memory.js';
 
 /** A symmetric positive definite approximation P of the Hessian. */
 export interface Preconditioner {
@@ -59,7 +59,7 @@ export interface Relaxed {
 }
 
 /** Pairs of steps and gradient changes that a minimisation keeps. */
-export const MEMORY = 12;
+export const MEMORY = 8;
 
 /** Fraction of the decrease that the slope promises which a step must bring (Armijo). */
 const SUFFICIENT = 1e-4;
@@ -97,7 +97,7 @@ export function* minimise(start: Coordinates, preconditioner: Preconditioner, op
       'scan/energy',
       'the potential gives no finite energy and gradient for the geometry that a relaxation starts from',
     );
-  if (residual > tolerance && preconditioner.follow?.(x)) renew(memory, preconditioner);
+  if (residual > tolerance && preconditioner.follow?.(x)) forget(memory);
   let radius = maxStep;
   let solvedAt = false;
 

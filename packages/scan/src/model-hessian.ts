@@ -1,14 +1,16 @@
 /**
  * A positive definite model of a molecule's Hessian, as a preconditioner for its relaxation.
  *
- *   P = sum over bonds, angles and torsions of k (dq/dx) (dq/dx)^T  +  shift I
+ *   P = sum over bonds, angles, torsions, planar centres and contacts of k (dq/dx) (dq/dx)^T  +  shift I
  *
- * The force constants fall off with distance: rho_ij = exp(alpha_ij (r0_ij^2 - r_ij^2)), k(stretch) = 0.45 rho_ij,
- * k(bend) = 0.15 rho_ij rho_jk, k(torsion) = 0.005 rho_ij rho_jk rho_kl hartree per bohr^2 or radian^2.
+ * Stretches and bends stiffen as atoms come closer: rho_ij = exp(alpha_ij (r0_ij^2 - r_ij^2)), k(stretch) = STRETCH rho_ij,
+ * k(bend) = BEND rho_ij rho_jk. The stiffness of torsions depends on the kind of bond far more than on distances: each bond has one that is
+ * shared out among its torsions.
  *
- * Source: R. Lindh, A. Bernhardsson, G. Karlstrom, P.-A. Malmqvist, Chem. Phys. Lett. 241, 423 (1995), over the molecule's bonds, angles and
- * torsions instead of all pairs of atoms; as a preconditioner: L. Mones, C. Ortner, G. Csanyi, Sci. Rep. 8, 13991 (2018).
- * A preconditioner changes how fast a relaxation arrives, not where: its constants carry no result.
+ * Sources: the decay and its constants, R. Lindh, A. Bernhardsson, G. Karlstrom, P.-A. Malmqvist, Chem. Phys. Lett. 241, 423 (1995), over the
+ * molecule's bonds and angles instead of all pairs of atoms; a model from bonding as a preconditioner: L. Mones, C. Ortner, G. Csanyi,
+ * Sci. Rep. 8, 13991 (2018). The force constants here are rounded from typical molecular mechanics: a preconditioner changes how fast
+ * a relaxation arrives, not where, so they carry no result.
  */
 import { angle, type Coordinates, type Molecule, neighboursOf, torsionGradient } from '@tordial/geometry';
 import {
@@ -20,17 +22,28 @@ import {
   factorise,
   solveFactorised,
 } from './block-cholesky.js';
+import { contactAtoms, contactsAt } from './contact-stiffness.js';
 import type { Preconditioner } from './minimise.js';
+import { aromaticAtoms } from './rotors/aromatic-atoms.js';
+import { atomShape } from './rotors/atom-shape.js';
 import type { Torsion } from './rotors/defining-torsion.js';
 
 /** The internal coordinates of a molecule that its model Hessian is made of, as rows of atoms. Made once a molecule (and rotor). */
 export interface ModelHessian {
-  readonly pattern: BlockPattern;
   readonly bonds: Int32Array;
   readonly angles: Int32Array;
   readonly torsions: Int32Array;
-  /** Kekule orders of the torsions' middle bonds. */
-  readonly middleOrders: Float64Array;
+  /** Force constant of each torsion, kcal/mol/radian^2. */
+  readonly torsionForces: Float64Array;
+  /** Rows of a planar centre and its three neighbours. */
+  readonly planes: Int32Array;
+  readonly atoms: ReturnType<typeof contactAtoms>;
+  /** Pairs i < j, as i * atomCount + j, joined by one or two bonds: no contacts. */
+  readonly bonded: ReadonlySet<number>;
+  /** Pairs of atoms, flat, that bonds, angles and torsions couple. */
+  readonly couplings: readonly number[];
+  /** The pattern in use and the contacts that it has room for; grows as new ones are met. */
+  readonly room: { pattern: BlockPattern; contacts: Set<number> };
   /** Periods of the table of constants (1, 2, 3) by atom. */
   readonly period: Uint8Array;
   /** Added to the diagonal, kcal/mol/angstrom^2. */
@@ -40,10 +53,15 @@ export interface ModelHessian {
 }
 
 const BOHR = 0.529177210903;
-const HARTREE = 627.5094740631;
-const STRETCH = (0.45 * HARTREE) / BOHR ** 2;
-const BEND = 0.15 * HARTREE;
-const TORSION = 0.005 * HARTREE;
+/** kcal/mol/angstrom^2 and kcal/mol/radian^2 where rho is 1. */
+const STRETCH = 650;
+const BEND = 75;
+/** Resistance of a planar centre to leaving the plane of its neighbours, kcal/mol/angstrom^2: a multiple bond at it, or a lone pair that conjugates. */
+const OUT_OF_PLANE = 100;
+
+/** Stiffness of turning about a bond, kcal/mol/radian^2, shared out among the torsions about it. */
+const TURN = { aromatic: 60, double: 100, amide: 30, conjugated: 10, planarToOther: 2, other: 10 };
+
 /** Lindh's alpha (1/bohr^2) and r0 (bohr) by the periods of both atoms; later periods count as the third. */
 const ALPHA = [1.0, 0.3949, 0.3949, 0.28, 0.28, 0.28];
 const REFERENCE = [1.35, 2.1, 2.53, 2.87, 3.4, 3.4];
@@ -59,35 +77,64 @@ export function modelHessian(molecule: Molecule, driven: Torsion | null = null):
   const bondRows: number[] = [];
   const angles: number[] = [];
   const torsions: number[] = [];
-  const orders: number[] = [];
+  const torsionForces: number[] = [];
+  const planes: number[] = [];
+  const aromatic = aromaticAtoms(molecule);
+  const sharesRing = (b: number, c: number) => molecule.rings.some((ring) => ring.includes(b) && ring.includes(c));
+  const planar = Array.from({ length: atomCount }, (_, i) => atomShape(molecule, i) === 'planar');
   for (let n = 0; n < bonds.count; n++) {
     const b = bonds.a[n];
     const c = bonds.b[n];
     bondRows.push(b, c);
+    const first = torsions.length;
     for (const a of neighboursOf(molecule, b))
-      for (const d of neighboursOf(molecule, c)) {
-        if (a === c || d === b || a === d) continue;
-        torsions.push(a, b, c, d);
-        orders.push(bonds.order[n]);
-      }
+      for (const d of neighboursOf(molecule, c)) if (a !== c && d !== b && a !== d) torsions.push(a, b, c, d);
+    const count = (torsions.length - first) / 4;
+    const turn = TURN[turningKind(molecule, n, aromatic, planar, sharesRing(b, c))];
+    for (let m = 0; m < count; m++) torsionForces.push(turn / count);
   }
   for (let j = 0; j < atomCount; j++) {
     const around = neighboursOf(molecule, j);
     for (let p = 0; p < around.length; p++) for (let q = 0; q < p; q++) angles.push(around[q], j, around[p]);
+    if (planar[j]) planes.push(j, ...around);
   }
   const couplings = [...bondRows];
   for (let n = 0; n < angles.length; n += 3) couplings.push(angles[n], angles[n + 2]);
+  const bonded: number[] = [];
+  for (let n = 0; n < couplings.length; n += 2)
+    bonded.push(Math.min(couplings[n], couplings[n + 1]) * atomCount + Math.max(couplings[n], couplings[n + 1]));
   for (let n = 0; n < torsions.length; n += 4) couplings.push(torsions[n], torsions[n + 3]);
   return {
-    pattern: blockPattern(atomCount, couplings),
+    atoms: contactAtoms(molecule),
+    bonded: new Set(bonded),
+    couplings,
+    room: { pattern: blockPattern(atomCount, couplings), contacts: new Set() },
     bonds: Int32Array.from(bondRows),
     angles: Int32Array.from(angles),
     torsions: Int32Array.from(torsions),
-    middleOrders: Float64Array.from(orders),
+    torsionForces: Float64Array.from(torsionForces),
+    planes: Int32Array.from(planes),
     period: molecule.atomicNumbers.map((z) => (z <= 2 ? 1 : z <= 10 ? 2 : 3)),
     shift: fragmentCount(molecule) > 1 ? SHIFT_BETWEEN_FRAGMENTS : SHIFT,
     driven,
   };
+}
+
+/** The kind of a bond as far as turning about it goes. */
+function turningKind(
+  { bonds, atomicNumbers }: Molecule,
+  n: number,
+  aromatic: Uint8Array,
+  planar: readonly boolean[],
+  inRing: boolean,
+): keyof typeof TURN {
+  const b = bonds.a[n];
+  const c = bonds.b[n];
+  if (aromatic[b] && aromatic[c]) return bonds.order[n] > 1 || inRing ? 'aromatic' : 'conjugated';
+  if (bonds.order[n] > 1) return 'double';
+  if (planar[b] && planar[c]) return atomicNumbers[b] === 6 && atomicNumbers[c] === 6 ? 'conjugated' : 'amide';
+  if (planar[b] || planar[c]) return atomicNumbers[planar[b] ? c : b] === 8 ? 'conjugated' : 'planarToOther';
+  return 'other';
 }
 
 function fragmentCount(molecule: Molecule): number {
@@ -112,12 +159,15 @@ function fragmentCount(molecule: Molecule): number {
 const LEAST_DECAY = 0.3;
 const MOST_DECAY = 2;
 
-/** How far (angstrom) a coordinate may move before the model is made anew. */
-const STALE = 0.4;
+/**
+ * How far (angstrom) a coordinate may move before the model is made anew. A stretch is a thousand times as stiff as a turn: a few degrees of
+ * misalignment already make soft motions look stiff.
+ */
+const STALE = 0.05;
 
 /** The model at the geometry x, factored; it is made anew when the geometry that it follows has gone far from there. */
 export function preconditionerAt(model: ModelHessian, x: Coordinates): Preconditioner {
-  const matrix = blockMatrix(model.pattern);
+  let matrix = blockMatrix(model.room.pattern);
   const work = new Float64Array(x.length);
   const made = new Float64Array(x.length);
   make(x);
@@ -135,14 +185,44 @@ export function preconditionerAt(model: ModelHessian, x: Coordinates): Precondit
 
   function make(at: Coordinates): void {
     made.set(at);
-    matrix.below.fill(0);
-    matrix.diagonal.fill(0);
+    const { pairs, stiffness } = contactsAt(model.atoms, model.bonded, at);
+    const pattern = patternFor(model, pairs);
+    if (pattern !== matrix.pattern) matrix = blockMatrix(pattern);
+    else {
+      matrix.below.fill(0);
+      matrix.diagonal.fill(0);
+    }
     for (let d = 0; d < matrix.diagonal.length; d += 9) for (let k = 0; k < 9; k += 4) matrix.diagonal[d + k] = model.shift;
+    addContacts(pairs, stiffness, at, matrix);
     addStretches(model, at, matrix);
     addBends(model, at, matrix);
     addTorsions(model, at, matrix);
+    addPlanes(model, at, matrix);
     factorise(matrix, 1e-3 * model.shift);
   }
+}
+
+/** The pattern that has room for the contacts: the last one if they all are in it, a new one otherwise. */
+function patternFor(model: ModelHessian, pairs: readonly number[]): BlockPattern {
+  const { room } = model;
+  const count = model.period.length;
+  const keys: number[] = [];
+  for (let n = 0; n < pairs.length; n += 2) keys.push(pairs[n] * count + pairs[n + 1]);
+  if (keys.every((key) => room.contacts.has(key))) return room.pattern;
+  // contacts come and go along a scan: what was met before keeps its room, until most of that lies idle
+  const kept = room.contacts.size > 2 * keys.length + 20 ? [] : room.contacts;
+  room.contacts = new Set([...kept, ...keys]);
+  room.pattern = blockPattern(count, [...model.couplings, ...[...room.contacts].flatMap((key) => [Math.floor(key / count), key % count])]);
+  return room.pattern;
+}
+
+function addContacts(pairs: readonly number[], stiffness: readonly number[], x: Coordinates, matrix: BlockMatrix): void {
+  const gradient = new Float64Array(6);
+  stiffness.forEach((k, n) => {
+    unitVector(x, pairs[2 * n], pairs[2 * n + 1], gradient);
+    for (let m = 0; m < 3; m++) gradient[m + 3] = -gradient[m];
+    addCoordinate(matrix, pairs, 2 * n, 2, gradient, k);
+  });
 }
 
 /** Lindh's rho of the atoms i and j. */
@@ -238,7 +318,7 @@ function addTorsions(model: ModelHessian, x: Coordinates, matrix: BlockMatrix): 
       c = torsions[n + 2],
       d = torsions[n + 3];
     if (bent(x, a, b, c) < TORSION_UNDEFINED || bent(x, b, c, d) < TORSION_UNDEFINED) continue;
-    const force = TORSION * decay(model, x, a, b) * decay(model, x, b, c) * decay(model, x, c, d);
+    const force = model.torsionForces[n / 4];
     torsionGradient(x, a, b, c, d, gradient);
     if (!driven || !sameAxis(b, c, driven)) {
       addCoordinate(matrix, torsions, n, 4, gradient, force);
@@ -261,6 +341,40 @@ function addTorsions(model: ModelHessian, x: Coordinates, matrix: BlockMatrix): 
       for (let k = 0; k < 3; k++) difference[3 * to + k] -= gradient[3 * p + k];
     }
     addCoordinate(matrix, atoms, 0, count, difference, force);
+  }
+}
+
+function addPlanes({ planes }: ModelHessian, x: Coordinates, matrix: BlockMatrix): void {
+  const gradient = new Float64Array(12);
+  for (let n = 0; n < planes.length; n += 4) {
+    const [c, p, q, r] = [3 * planes[n], 3 * planes[n + 1], 3 * planes[n + 2], 3 * planes[n + 3]];
+    const ux = x[q] - x[p],
+      uy = x[q + 1] - x[p + 1],
+      uz = x[q + 2] - x[p + 2];
+    const vx = x[r] - x[p],
+      vy = x[r + 1] - x[p + 1],
+      vz = x[r + 2] - x[p + 2];
+    const wx = x[c] - x[p],
+      wy = x[c + 1] - x[p + 1],
+      wz = x[c + 2] - x[p + 2];
+    let nx = uy * vz - uz * vy,
+      ny = uz * vx - ux * vz,
+      nz = ux * vy - uy * vx;
+    const square = nx * nx + ny * ny + nz * nz;
+    if (square < 0.1) continue;
+    // height of the centre above its neighbours' plane; the plane counts where the centre's foot is, by barycentric weights
+    const weightR = ((uy * wz - uz * wy) * nx + (uz * wx - ux * wz) * ny + (ux * wy - uy * wx) * nz) / square;
+    const weightQ = ((wy * vz - wz * vy) * nx + (wz * vx - wx * vz) * ny + (wx * vy - wy * vx) * nz) / square;
+    const length = Math.sqrt(square);
+    nx /= length;
+    ny /= length;
+    nz /= length;
+    [1, weightQ + weightR - 1, -weightQ, -weightR].forEach((weight, m) => {
+      gradient[3 * m] = weight * nx;
+      gradient[3 * m + 1] = weight * ny;
+      gradient[3 * m + 2] = weight * nz;
+    });
+    addCoordinate(matrix, planes, n, 4, gradient, OUT_OF_PLANE);
   }
 }
 

@@ -1,6 +1,4 @@
 /** What a minimiser has learnt about the curvature: the last few steps and what they did to the gradient. */
-import type { Preconditioner } from './minimise.js';
-
 /** Rows of `length` values; row (next - 1) is the newest pair. */
 export interface SecantMemory {
   readonly length: number;
@@ -95,13 +93,4 @@ export function searchDirection(
     for (let k = 0; k < length; k++) direction[k] += b * s[at + k];
   }
   for (let k = 0; k < length; k++) direction[k] = -direction[k];
-}
-
-/** Recomputes P^-1 y of every remembered pair, for a preconditioner that has changed. */
-export function renew(memory: SecantMemory, preconditioner: Preconditioner): void {
-  const { length, count, next, capacity } = memory;
-  for (let n = 1; n <= count; n++) {
-    const at = ((next - n + capacity) % capacity) * length;
-    preconditioner.solve(memory.y.subarray(at, at + length), memory.z.subarray(at, at + length));
-  }
 }
