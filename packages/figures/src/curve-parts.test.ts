@@ -24,9 +24,9 @@ function points(step: number, start: number, breaks: readonly number[] = []) {
 describe('curveParts', () => {
   it.each([-180, -175, -173.5])('covers [-180, 180] in one run and follows a known curve (first point at %s)', (start) => {
     const step = 10;
-    const { smooth, continued } = curveParts(points(step, start));
+    const { smooth, estimated } = curveParts(points(step, start));
     expect(smooth).toHaveLength(1);
-    expect(continued).toHaveLength(0);
+    expect(estimated).toHaveLength(0);
     const [run] = smooth;
     expect(run[0].from).toBe(-180);
     expect(run[run.length - 1].to).toBe(180);
@@ -64,7 +64,14 @@ describe('curveParts', () => {
         before: point.angle === -85 ? branch(-95, -80) : null,
       };
     });
-    const [left, right] = curveParts(crossing).continued;
+    const { smooth, estimated, changes } = curveParts(crossing);
+    expect(estimated).toEqual([]);
+    expect(changes).toHaveLength(1);
+    expect(changes[0].angle).toBeCloseTo(-90, 9);
+    expect(changes[0].energy).toBeCloseTo(1, 9);
+    expect(smooth).toHaveLength(2);
+    const left = smooth[0][smooth[0].length - 1];
+    const right = smooth[1][0];
     expect(left.from).toBe(-95);
     expect(left.to).toBeCloseTo(-90, 9);
     expect(right.from).toBeCloseTo(-90, 9);
@@ -85,11 +92,16 @@ describe('curveParts', () => {
         breakAfter: point.angle === -95,
       };
     });
-    const { continued } = curveParts(kinked);
-    expect(continued).toHaveLength(2);
-    expect(continued[0].to).toBeCloseTo(-90, 6);
-    expect(continued[1].from).toBeCloseTo(-90, 6);
-    expect(segmentEnergy(continued[0], continued[0].to)).toBeCloseTo(1, 6);
+    const { smooth, estimated, changes } = curveParts(kinked);
+    expect(ranges(smooth)).toEqual([
+      [-180, -95],
+      [-85, 180],
+    ]);
+    expect(changes).toHaveLength(1);
+    expect(estimated).toHaveLength(2);
+    expect(estimated[0].to).toBeCloseTo(-90, 6);
+    expect(estimated[1].from).toBeCloseTo(-90, 6);
+    expect(segmentEnergy(estimated[0], estimated[0].to)).toBeCloseTo(1, 6);
   });
 });
 
@@ -101,8 +113,9 @@ it('joins branches that never meet by a straight line', () => {
     torque: 0,
     breakAfter: point.angle === -10 || point.angle === 170,
   }));
-  const { continued } = curveParts(jump);
-  expect(continued.map(({ from, to, energies }) => [from, to, energies[0], energies[3]])).toEqual([
+  const { estimated, changes } = curveParts(jump);
+  expect(changes).toEqual([]);
+  expect(estimated.map(({ from, to, energies }) => [from, to, energies[0], energies[3]])).toEqual([
     [-10, 0, 0, 2],
     [170, 180, 2, 0],
   ]);

@@ -8,41 +8,67 @@ export interface CurveSegment {
 }
 
 export interface CurveParts {
-  /** Smooth runs over [-180, 180], each of segments that follow on each other. */
+  /** Runs over [-180, 180] that are smooth within, each of segments that follow on each other; a new one begins where the branch changes. */
   readonly smooth: readonly (readonly CurveSegment[])[];
-  /** Each branch continued from its last point to where it meets the next one: estimates, not scanned. */
-  readonly continued: readonly CurveSegment[];
+  /** Where a branch is not known beyond its last point: its estimated continuation to the next branch. */
+  readonly estimated: readonly CurveSegment[];
+  /** Where the curve goes over from one branch to another. */
+  readonly changes: readonly { readonly angle: number; readonly energy: number }[];
 }
 
+/** Branches whose curves come this near to each other at the end of an interval meet there, unit of the energies. */
+const TOUCHING = 1e-3;
+
 /**
- * The curve of a profile cut for drawing over [-180, 180], relative energies. No smooth run goes over a change of branch; there both branches are
- * continued to where they meet, and those that do not meet are joined by a straight line. Throws what `profileCurve` throws for points that make no
+ * The curve of a profile cut for drawing over [-180, 180], relative energies. No smooth run goes over a change of branch: each branch ends where
+ * it meets the next one, and branches that do not meet are joined by a straight line. Throws what `profileCurve` throws for points that make no
  * curve.
  */
 export function curveParts(points: ProfileDocument['points']): CurveParts {
   const { pieces } = profileCurve(points);
   const zero = points[0].energy - points[0].relativeEnergy;
-  const smooth: CurveSegment[] = [];
-  const continued: CurveSegment[] = [];
-  for (const piece of pieces) {
+  const smooth: (CurveSegment & { readonly begins: boolean })[] = [];
+  const estimated: CurveSegment[] = [];
+  const changes: { angle: number; energy: number }[] = [];
+  pieces.forEach((piece, n) => {
     const start = points[piece.point];
     const next = points[(piece.point + 1) % points.length];
     const from = start.angle;
     const to = next.angle > from ? next.angle : next.angle + 360;
-    const segment = clipped({ from, to, energies: controls(piece, zero) }, piece.from, piece.to);
-    const meet = piece.side === 'left' ? piece.to > 0 && piece.to < 1 : piece.from > 0 && piece.from < 1;
-    if (piece.side === 'both') smooth.push(segment);
-    else if (meet) continued.push(segment);
-    else if (piece.side === 'left') continued.push(straight(from, start.relativeEnergy, to, next.relativeEnergy));
-  }
+    const whole = (one: CurvePiece): CurveSegment => ({ from, to, energies: controls(one, zero) });
+    if (piece.side === 'both') smooth.push({ ...whole(piece), begins: false });
+    if (piece.side !== 'left') return;
+
+    const other = pieces[n + 1];
+    const angle = from + (to - from) * piece.to;
+    const energy = segmentEnergy(whole(piece), angle);
+    if (Math.abs(energy - segmentEnergy(whole(other), angle)) > TOUCHING) {
+      estimated.push(straight(from, start.relativeEnergy, to, next.relativeEnergy));
+      return;
+    }
+    changes.push({ angle: angle > 180 ? angle - 360 : angle, energy });
+    if (piece.to > 0) {
+      const left = clipped(whole(piece), 0, piece.to);
+      if (start.beyond) smooth.push({ ...left, begins: false });
+      else estimated.push(left);
+    }
+    if (other.from < 1) {
+      const right = clipped(whole(other), other.from, 1);
+      if (next.before) smooth.push({ ...right, begins: true });
+      else estimated.push(right);
+    }
+  });
+  const breaks = new Set(changes.map(({ angle }) => angle));
   const runs: CurveSegment[][] = [];
   let reached = Number.NaN;
-  for (const segment of smooth.flatMap(wrapped).sort((p, q) => p.from - q.from)) {
-    if (segment.from === reached) runs[runs.length - 1].push(segment);
+  for (const { begins, ...segment } of smooth
+    .flatMap((one) => wrapped(one).map((part, m) => ({ ...part, begins: one.begins && m === 0 })))
+    .sort((p, q) => p.from - q.from)) {
+    if (segment.from === reached && !begins && !breaks.has(segment.from)) runs[runs.length - 1].push(segment);
     else runs.push([segment]);
     reached = segment.to;
   }
-  return { smooth: runs, continued: continued.flatMap(wrapped) };
+  return { smooth: runs, estimated: estimated.flatMap(wrapped), changes };
 }
 
 /** Energy of a segment at an angle within it. */

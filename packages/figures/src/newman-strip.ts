@@ -16,6 +16,7 @@ export interface StripCard {
 
 export interface NewmanStrip {
   readonly scale: number;
+  readonly rows: 1 | 2;
   readonly height: number;
   /** One for each item, in order. */
   readonly cards: readonly StripCard[];
@@ -35,9 +36,9 @@ const SHRINKING = 0.98;
  * them too small they stand alternately high and low, and leader lines from the upper ones pass between the lower ones.
  */
 export function newmanStrip(items: readonly StripItem[], width: number): NewmanStrip {
-  if (items.length === 0) return { scale: 1, height: 0, cards: [] };
+  if (items.length === 0) return { scale: 1, rows: 1, height: 0, cards: [] };
   const single = fit(items, width, 1);
-  const { scale, twoRows, distances, from, to } = single.scale >= LEAST_IN_ONE_ROW || items.length < 3 ? single : fit(items, width, 2);
+  const { scale, rows, distances, from, to } = single.scale >= LEAST_IN_ONE_ROW || items.length < 3 ? single : fit(items, width, 2);
   const centres = spread(
     items.map(({ x }) => x),
     distances,
@@ -48,9 +49,10 @@ export function newmanStrip(items: readonly StripItem[], width: number): NewmanS
   const rowHeight = above + scale * Math.max(...items.map(({ layout }) => layout.bounds.bottom)) + CAPTION;
   return {
     scale,
-    height: twoRows ? 2 * rowHeight + ROW_GAP : rowHeight,
+    rows,
+    height: rows === 2 ? 2 * rowHeight + ROW_GAP : rowHeight,
     cards: centres.map((x, n) => {
-      const top = twoRows && n % 2 === 1 ? rowHeight + ROW_GAP : 0;
+      const top = rows === 2 && n % 2 === 1 ? rowHeight + ROW_GAP : 0;
       return { x, y: top + above, captionY: top + rowHeight - 3 };
     }),
   };
@@ -58,7 +60,7 @@ export function newmanStrip(items: readonly StripItem[], width: number): NewmanS
 
 interface Fit {
   readonly scale: number;
-  readonly twoRows: boolean;
+  readonly rows: 1 | 2;
   readonly distances: readonly number[];
   readonly from: number;
   readonly to: number;
@@ -83,6 +85,6 @@ function fit(items: readonly StripItem[], width: number, rows: 1 | 2): Fit {
     const from = rows === 2 && last > 0 ? Math.max(left[0], left[1] - distances[0]) : left[0];
     const to = width - (rows === 2 && last > 0 ? Math.max(right[last], right[last - 1] - distances[last - 1]) : right[last]);
     const fits = distances.reduce((sum, one) => sum + one, 0) <= to - from;
-    if (fits || scale < 0.2) return { scale, twoRows: rows === 2, distances, from, to };
+    if (fits || scale < 0.2) return { scale, rows, distances, from, to };
   }
 }

@@ -22,6 +22,9 @@ const LARGEST_RIM = 0.16;
 const LARGEST_NUDGE = 55;
 const NUDGE = 1.25;
 
+/** Smaller torsion angles are not marked by a wedge, degrees; the front bond would hide it. */
+const SMALLEST_WEDGE = 12;
+
 /** A substituent whose bond makes a smaller angle than this with the axis has no direction in the projection. */
 const SMALLEST_OFF_AXIS = 8 / DEGREES;
 
@@ -284,7 +287,7 @@ function bondLines({ side, angle, order, defining }: NewmanSubstituent, theme: F
 }
 
 function torsionWedge(torsion: number, theme: FigureTheme): string {
-  if (Math.abs(torsion) < 1) return '';
+  if (Math.abs(torsion) < SMALLEST_WEDGE) return '';
   const radius = 0.58 * RIM;
   const [x, y] = pointAt(torsion, radius);
   const arc = `A ${radius.toFixed(2)} ${radius.toFixed(2)} 0 0 ${torsion > 0 ? 1 : 0} ${x.toFixed(2)} ${y.toFixed(2)}`;

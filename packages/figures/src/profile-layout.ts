@@ -4,8 +4,8 @@ import { angleScale, type EnergyScale, energyScale } from './axes.js';
 import type { Box } from './boxes.js';
 import { type CurveParts, type CurveSegment, curveParts, segmentEnergy } from './curve-parts.js';
 import { degreesText, energyText } from './format.js';
-import { describeNewman, newmanDrawing, newmanLayout } from './newman.js';
-import { newmanStrip } from './newman-strip.js';
+import { describeNewman, type NewmanLayout, newmanDrawing, newmanLayout } from './newman.js';
+import { type NewmanStrip, newmanStrip } from './newman-strip.js';
 import { type PlacedLabel, placeLabels, type Segment } from './place-labels.js';
 import { textWidth } from './text-width.js';
 import { type FigureTheme, LIGHT_THEME } from './theme.js';
@@ -35,8 +35,10 @@ const LABEL_ROOM = 44;
 const SMALLEST_RANGE = 0.05;
 /** Angles beyond this are shown at both edges, degrees. */
 const EDGE = 179.95;
-/** Up to this many stationary points each have a projection of their own. */
-const MANY = 7;
+/** A change of branch this near to a crossing is that crossing, degrees. */
+const SAME_ANGLE = 1;
+/** Mirror images differ by less, in the document's unit. */
+const SAME_ENERGY = 0.005;
 /** More projections than this are not drawn; the lowest wells and the highest barriers go first. */
 const MOST_PROJECTIONS = 12;
 
@@ -83,18 +85,29 @@ export interface Projection {
 /** Lays a profile's figure out without drawing it. */
 export function profileLayout(document: ProfileDocument, options: ProfilePlotOptions): ProfileLayout {
   const { theme = LIGHT_THEME, width = 800 } = options;
-  const parts = curveParts(document.points);
-  const segments = [...parts.smooth.flat(), ...parts.continued];
+  const curve = curveParts(document.points);
+  const crossings = document.stationaryPoints.filter(({ kind }) => kind === 'crossing');
+  // a crossing has a mark of its own
+  const parts = {
+    ...curve,
+    changes: curve.changes.filter((change) => !crossings.some(({ angle }) => apart(angle, change.angle) < SAME_ANGLE)),
+  };
+  const segments = [...parts.smooth.flat(), ...parts.estimated];
 
   const x = angleScale({ left: SIDE.left, right: width - SIDE.right });
   const molecule = moleculeOf(document.molecule);
-  const shown = projectedPoints(document.stationaryPoints);
-  const layouts = shown.map(({ point }) => newmanLayout(molecule, document.rotor.torsion, point.coordinates));
+  const drawable = document.stationaryPoints
+    .map((point) => ({ point, layout: newmanLayout(molecule, document.rotor.torsion, point.coordinates) }))
+    .sort((p, q) => shownAngle(p.point.angle) - shownAngle(q.point.angle));
   const stripLeft = 14;
-  const strip = newmanStrip(
-    shown.map(({ point }, n) => ({ x: x(shownAngle(point.angle)) - stripLeft, layout: layouts[n] })),
-    width - 2 * stripLeft,
-  );
+  const stripOf = (all: readonly Drawable[]): NewmanStrip =>
+    newmanStrip(
+      all.map(({ point, layout }) => ({ x: x(shownAngle(point.angle)) - stripLeft, layout })),
+      width - 2 * stripLeft,
+    );
+  const everything = stripOf(drawable);
+  const shown = everything.rows === 1 ? drawable.map((one) => ({ ...one, shared: false })) : fewer(drawable);
+  const strip = everything.rows === 1 ? everything : stripOf(shown);
 
   const askew = shown.map(({ point }, n) => Math.abs(stripLeft + strip.cards[n].x - x(shownAngle(point.angle))));
   const leaderZone = Math.min(LEADERS.most, Math.max(LEADERS.least, LEADERS.slope * Math.max(0, ...askew)));
@@ -129,10 +142,9 @@ export function profileLayout(document: ProfileDocument, options: ProfilePlotOpt
     })),
     {
       boxes: [
-        ...points.map((point) => ({ left: point.x - 5, right: point.x + 5, top: point.y - 5, bottom: point.y + 5 })),
-        ...document.points.flatMap(({ angle, relativeEnergy, converged }) =>
-          converged ? [] : [{ left: x(angle) - 5, right: x(angle) + 5, top: y(relativeEnergy) - 5, bottom: y(relativeEnergy) + 5 }],
-        ),
+        ...points.map((point) => markBox(point.x, point.y)),
+        ...document.points.flatMap(({ angle, relativeEnergy, converged }) => (converged ? [] : [markBox(x(angle), y(relativeEnergy))])),
+        ...parts.changes.map(({ angle, energy }) => markBox(x(angle), y(energy))),
       ],
       segments: chords(segments, x, y),
       avoided: points.filter(({ point }) => point.kind === 'well').map((point): Segment => [point.x, plot.top, point.x, point.y - 6]),
@@ -141,19 +153,19 @@ export function profileLayout(document: ProfileDocument, options: ProfilePlotOpt
   );
 
   const drawn = new Map(
-    shown.map(({ point, shared }, n) => {
+    shown.map(({ point, layout, shared }, n) => {
       const card = strip.cards[n];
       return [
         point,
         {
-          markup: newmanDrawing(layouts[n], theme),
+          markup: newmanDrawing(layout, theme),
           x: stripLeft + card.x,
           y: HEADER + card.y,
           scale: strip.scale,
           caption: shared ? `±${degreesText(Math.abs(point.angle))}` : degreesText(point.angle),
           captionY: HEADER + card.captionY,
           bend: HEADER + strip.height + 4,
-          words: describeNewman(layouts[n]),
+          words: describeNewman(layout),
         },
       ] as const;
     }),
@@ -172,6 +184,12 @@ export function profileLayout(document: ProfileDocument, options: ProfilePlotOpt
   };
 }
 
+/** Degrees between two angles, the short way round. */
+function apart(p: number, q: number): number {
+  const turn = Math.abs(p - q) % 360;
+  return Math.min(turn, 360 - turn);
+}
+
 /** The molecule that a document describes. */
 function moleculeOf({ elements, formalCharges, bonds, name }: DocumentMolecule): Molecule {
   return createMolecule({ atomicNumbers: elements.map(atomicNumberOf), formalCharges, bonds, name });
@@ -182,31 +200,43 @@ export function shownAngle(angle: number): number {
   return angle < -EDGE ? angle + 360 : angle;
 }
 
+/** A stationary point with its projection. */
+interface Drawable {
+  readonly point: ProfileStationaryPoint;
+  readonly layout: NewmanLayout;
+}
+
 /**
- * The stationary points that get a projection, by angle. Where there are many, mirror images (opposite angles at the same energy) share one, and
- * beyond the limit the lowest wells and highest barriers are kept.
+ * Where there is no room for all projections, mirror images (opposite angles at the same energy) share one, drawn now on this side and now on the
+ * other; beyond the limit the lowest wells and highest barriers are kept.
  */
-function projectedPoints(all: readonly ProfileStationaryPoint[]): { point: ProfileStationaryPoint; shared: boolean }[] {
-  let chosen = all.map((point) => ({ point, shared: false }));
-  if (chosen.length > MANY) {
-    const mirrored = (p: ProfileStationaryPoint): boolean =>
-      p.angle !== 0 &&
-      all.some(
-        (q) =>
-          q !== p &&
-          q.kind === p.kind &&
-          degreesText(q.angle) === degreesText(-p.angle) &&
-          Math.abs(q.relativeEnergy - p.relativeEnergy) < 0.005,
-      );
-    chosen = all.filter((point) => point.angle >= 0 || !mirrored(point)).map((point) => ({ point, shared: mirrored(point) }));
-  }
+function fewer(all: readonly Drawable[]): (Drawable & { readonly shared: boolean })[] {
+  const mirrorOf = ({ point: p }: Drawable): Drawable | undefined =>
+    all.find(
+      ({ point: q }) =>
+        q !== p &&
+        q.kind === p.kind &&
+        degreesText(q.angle) === degreesText(-p.angle) &&
+        Math.abs(q.relativeEnergy - p.relativeEnergy) < SAME_ENERGY,
+    );
+  let pairs = 0;
+  let chosen = all.flatMap((one) => {
+    const mirror = mirrorOf(one);
+    if (!mirror) return [{ ...one, shared: false }];
+    if (one.point.angle < 0) return [];
+    return [{ ...(pairs++ % 2 === 0 ? one : mirror), shared: true }];
+  });
   if (chosen.length > MOST_PROJECTIONS) {
     const wells = chosen.filter(({ point }) => point.kind === 'well').sort((p, q) => p.point.relativeEnergy - q.point.relativeEnergy);
-    const barriers = chosen.filter(({ point }) => point.kind !== 'well').sort((p, q) => q.point.relativeEnergy - p.point.relativeEnergy);
+    const maxima = chosen.filter(({ point }) => point.kind !== 'well').sort((p, q) => q.point.relativeEnergy - p.point.relativeEnergy);
     const half = MOST_PROJECTIONS / 2;
-    chosen = [...wells.slice(0, half), ...barriers.slice(0, half)];
+    chosen = [...wells.slice(0, half), ...maxima.slice(0, half)];
   }
   return chosen.sort((p, q) => shownAngle(p.point.angle) - shownAngle(q.point.angle));
+}
+
+function markBox(x: number, y: number): Box {
+  return { left: x - 5, right: x + 5, top: y - 5, bottom: y + 5 };
 }
 
 const SAMPLES = 8;

@@ -67,25 +67,43 @@ describe('profilePlot', () => {
 
   it('gives every stationary point its projection, and one to a pair of mirror images where there are many', () => {
     expect(profileLayout(butane, {}).marks.filter(({ projection }) => projection)).toHaveLength(6);
-    const { marks } = profileLayout(biaryl, {});
-    const captions = marks.flatMap(({ projection }) => (projection ? [projection.caption] : []));
+    const drawn = (width: number) =>
+      profileLayout(biaryl, { width }).marks.flatMap(({ projection }) => (projection ? [projection.caption] : []));
+    expect(drawn(1000)).toHaveLength(8);
+    const captions = drawn(560);
     expect(biaryl.stationaryPoints).toHaveLength(8);
     expect(captions).toHaveLength(5);
     expect(captions.filter((caption) => caption.startsWith('±'))).toHaveLength(3);
   });
 
-  it('draws separate paths where the branch changes, each branch continued in dots to their crossing', () => {
-    const points = butane.points.map((point, n) => ({ ...point, breakAfter: n === 7 || n === 27 }));
-    const crossing = { ...butane.stationaryPoints[0], kind: 'crossing' as const, angle: -105, relativeEnergy: 3.3 };
-    const stationaryPoints = [...butane.stationaryPoints, crossing].sort((p, q) => p.angle - q.angle);
-    const document = { ...butane, points, stationaryPoints };
-    const svg = profilePlot(document);
-    expect(curvePaths(svg)).toBe(3);
+  it('draws separate paths where the branch changes, with a mark where it does', () => {
+    // a second branch, 1 kcal/mol lower at -100 degrees and rising, known on both sides of the break after -110
+    const points = butane.points.map((point, n) => {
+      const end = (by: number, slope: number) => ({ energy: point.energy + by, torque: point.torque + slope });
+      return {
+        ...point,
+        breakAfter: n === 7,
+        beyond: n === 7 ? { ...butane.points[8], energy: butane.points[8].energy + 1 } : null,
+        before: n === 8 ? end(1, 0) : null,
+      };
+    });
+    const kinked = profilePlot({ ...butane, points });
+    expect(curvePaths(kinked)).toBe(2);
+    expect(kinked).toContain('change of branch');
+    expect(kinked).not.toContain('estimated');
     expect(curvePaths(profilePlot(butane))).toBe(1);
-    expect(svg.match(/stroke-dasharray="1.5 3"/g)?.length).toBeGreaterThanOrEqual(3);
-    expect(svg).toContain('crossing of branches');
-    expect(svg).toContain('change of branch');
     expect(profilePlot(butane)).not.toContain('change of branch');
+
+    const unknown = points.map((point) => ({ ...point, beyond: null, before: null }));
+    const svg = profilePlot({ ...butane, points: unknown });
+    expect(curvePaths(svg)).toBe(2);
+    expect(svg).toContain('estimated');
+
+    const [{ angle, energy }] = profileLayout({ ...butane, points }, {}).parts.changes;
+    const crossing = { ...butane.stationaryPoints[0], kind: 'crossing' as const, angle, relativeEnergy: energy };
+    const marked = profilePlot({ ...butane, points, stationaryPoints: [crossing] });
+    expect(marked).toContain('crossing of branches');
+    expect(marked).not.toContain('change of branch');
   });
 
   it('crosses points that did not converge and says so', () => {

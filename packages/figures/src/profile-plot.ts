@@ -12,9 +12,11 @@ import {
   SIDE,
 } from './profile-layout.js';
 import { coordinate, element, escapeXml, svgDocument, textLine } from './svg.js';
-import { CONTINUED, type LegendEntry, legend, type MarkKind, mark } from './symbols.js';
+import { ESTIMATED, type LegendEntry, legend, type MarkKind, mark } from './symbols.js';
 import { fitText } from './text-width.js';
 import type { FigureTheme } from './theme.js';
+
+const TITLE_SIZE = 16;
 
 /**
  * The figure of a torsion profile: the periodic curve over [-180, 180] with its points, wells and barriers with angle and energy, and a Newman
@@ -45,30 +47,32 @@ export function profilePlot(document: ProfileDocument, options: ProfilePlotOptio
   );
 }
 
-function header({ molecule, rotor, points, stationaryPoints }: ProfileDocument, { width, plot, theme, title }: ProfileLayout): string[] {
+function header({ molecule, rotor, points, stationaryPoints }: ProfileDocument, { plot, parts, theme, title }: ProfileLayout): string[] {
   const kinds = new Set(stationaryPoints.map(({ kind }) => kind));
   const marked = (kind: MarkKind, label: string): LegendEntry => ({ label, width: 10, symbol: (x, y) => mark(kind, x, y, theme) });
   const entries = [
     ...(kinds.has('well') ? [marked('well', 'well')] : []),
     ...(kinds.has('barrier') ? [marked('barrier', 'barrier')] : []),
     ...(kinds.has('crossing') ? [marked('crossing', 'crossing of branches')] : []),
-    ...(points.some(({ breakAfter }) => breakAfter) ? [continuedEntry(theme)] : []),
+    ...(parts.changes.length > 0 ? [marked('change', 'change of branch')] : []),
+    ...(parts.estimated.length > 0 ? [estimatedEntry(theme)] : []),
     ...([...points, ...stationaryPoints].some(({ converged }) => !converged) ? [marked('unconverged', 'not converged')] : []),
   ];
-  const row = legend(entries, plot.right, 22, LABEL_SIZE, theme);
+  const row = legend(entries, plot.right, 41, LABEL_SIZE, theme);
   const subtitle = [molecule.smiles === title ? '' : molecule.smiles, rotor.kind].filter((one) => one !== '').join('   ');
+  const titleText = fitText(title, plot.right - plot.left, TITLE_SIZE, true);
   return [
-    textLine(plot.left, 27, fitText(title, row.left - plot.left, 16), { 'font-size': 16, 'font-weight': 'bold', fill: theme.ink }),
-    textLine(plot.left, 44, fitText(subtitle, width - SIDE.left - SIDE.right, LABEL_SIZE), { fill: theme.quiet }),
+    textLine(plot.left, 27, titleText, { 'font-size': TITLE_SIZE, 'font-weight': 'bold', fill: theme.ink }),
+    textLine(plot.left, 45, fitText(subtitle, row.left - plot.left, LABEL_SIZE), { fill: theme.quiet }),
     ...row.markup,
   ];
 }
 
-function continuedEntry(theme: FigureTheme): LegendEntry {
+function estimatedEntry(theme: FigureTheme): LegendEntry {
   return {
-    label: 'change of branch',
+    label: 'estimated',
     width: 16,
-    symbol: (x, y) => element('line', { x1: x - 8, x2: x + 8, y1: y, y2: y, stroke: theme.curve, ...CONTINUED }),
+    symbol: (x, y) => element('line', { x1: x - 8, x2: x + 8, y1: y, y2: y, stroke: theme.curve, ...ESTIMATED }),
   };
 }
 
@@ -105,11 +109,11 @@ function curve({ parts, x, energies: { y }, theme }: ProfileLayout): string[] {
   const stroke = { fill: 'none', stroke: theme.curve };
   return [
     ...parts.smooth.map((run) => element('path', { d: path(run), ...stroke, 'stroke-width': 2, 'stroke-linecap': 'round' })),
-    ...parts.continued.map((segment) => element('path', { d: path([segment]), ...stroke, ...CONTINUED })),
+    ...parts.estimated.map((segment) => element('path', { d: path([segment]), ...stroke, ...ESTIMATED })),
   ];
 }
 
-function marksOnCurve({ points }: ProfileDocument, { marks, x, energies: { y }, theme }: ProfileLayout): string[] {
+function marksOnCurve({ points }: ProfileDocument, { marks, parts, x, energies: { y }, theme }: ProfileLayout): string[] {
   const scanned = points.flatMap(({ angle, relativeEnergy, converged }) =>
     atBothEdges(angle).map((shown) => mark(converged ? 'point' : 'unconverged', x(shown), y(relativeEnergy), theme)),
   );
@@ -119,7 +123,8 @@ function marksOnCurve({ points }: ProfileDocument, { marks, x, energies: { y }, 
       point.converged ? '' : mark('unconverged', x(shown), height, theme),
     ]),
   );
-  return [...scanned, ...stationary];
+  const changes = parts.changes.map(({ angle, energy }) => mark('change', x(angle), y(energy), theme));
+  return [...changes, ...scanned, ...stationary];
 }
 
 function stationaryLabels({ marks, theme }: ProfileLayout): string[] {

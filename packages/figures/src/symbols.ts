@@ -3,10 +3,10 @@ import { coordinate, element, textLine } from './svg.js';
 import { textWidth } from './text-width.js';
 import type { FigureTheme } from './theme.js';
 
-export type MarkKind = 'well' | 'barrier' | 'crossing' | 'point' | 'unconverged';
+export type MarkKind = 'well' | 'barrier' | 'crossing' | 'point' | 'unconverged' | 'change';
 
-/** How a branch is drawn beyond its last point. */
-export const CONTINUED = { 'stroke-width': 1.4, 'stroke-dasharray': '1.5 3' };
+/** How a branch is drawn where it is only estimated. */
+export const ESTIMATED = { 'stroke-width': 1.4, 'stroke-dasharray': '1.5 3' };
 
 /** A mark centred on (x, y). */
 export function mark(kind: MarkKind, x: number, y: number, theme: FigureTheme): string {
@@ -20,6 +20,8 @@ export function mark(kind: MarkKind, x: number, y: number, theme: FigureTheme): 
       return element('path', { d: diamond(x, y), fill: theme.background, stroke: theme.crossing, 'stroke-width': 1.6 });
     case 'point':
       return element('circle', { cx: x, cy: y, r: 2.3, fill: theme.background, stroke: theme.curve, 'stroke-width': 1.2 });
+    case 'change':
+      return element('line', { x1: x, x2: x, y1: y - 6, y2: y + 6, stroke: theme.crossing, 'stroke-width': 1.6 });
     case 'unconverged': {
       const d = `M ${coordinate(x - 4)} ${coordinate(y - 4)} l 8 8 M ${coordinate(x - 4)} ${coordinate(y + 4)} l 8 -8`;
       return element('path', { d, fill: 'none', stroke: theme.unconverged, 'stroke-width': 1.8 });

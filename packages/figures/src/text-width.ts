@@ -29,13 +29,13 @@ export function textWidth(text: string, fontSize: number, bold = false): number 
 }
 
 /** The text itself if it fits into `width`, else its head and tail around an ellipsis. */
-export function fitText(text: string, width: number, fontSize: number): string {
-  if (textWidth(text, fontSize) <= width) return text;
+export function fitText(text: string, width: number, fontSize: number, bold = false): string {
+  if (textWidth(text, fontSize, bold) <= width) return text;
   const characters = [...text];
   for (let kept = characters.length - 1; kept > 2; kept--) {
     const head = Math.ceil(kept / 2);
     const shortened = `${characters.slice(0, head).join('')}…${characters.slice(characters.length - (kept - head)).join('')}`;
-    if (textWidth(shortened, fontSize) <= width) return shortened;
+    if (textWidth(shortened, fontSize, bold) <= width) return shortened;
   }
   return '…';
 }
