@@ -61,10 +61,10 @@ export function seriesOfFunction(f: (phi: number) => number, samples = 512): Per
   return seriesOfSamples(values, 0, samples / 4);
 }
 
-/** Harmonics below `share` of the largest one (the mean aside) set to zero and the tail cut off, so that exact symmetries show. */
+/** Harmonics below `share` of the largest coefficient, the mean included, set to zero and the tail cut off, so that exact symmetries show. */
 export function withoutNoise({ cosine, sine }: PeriodicSeries, share = 1e-12): PeriodicSeries {
   let largest = 0;
-  for (let k = 1; k < cosine.length; k++) largest = Math.max(largest, Math.abs(cosine[k]), Math.abs(sine[k]));
+  for (let k = 0; k < cosine.length; k++) largest = Math.max(largest, Math.abs(cosine[k]), Math.abs(sine[k]));
   const keep = (value: number, k: number): number => (k === 0 || Math.abs(value) > share * largest ? value : 0);
   const c = cosine.map(keep);
   const s = sine.map(keep);
