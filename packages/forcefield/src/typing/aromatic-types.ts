@@ -2,8 +2,8 @@
  * Types of atoms in aromatic rings (MMFFAROM).
  *
  * In a five-membered ring they go by the position towards the atom that gives the lone pair: alpha (C5A, N5A) or beta (C5B, N5B). Where
- * no such atom stands out the general types C5 and N5 hold: in an anion, whose nitrogens are all N5M; in an imidazolium-like cation, whose
- * charge lies on both nitrogens NIM+ about a carbon CIM+; and for an atom that is alpha in one ring and beta in another.
+ * no such atom stands out the general types C5 and N5 hold: in an anion, whose nitrogens are all N5M, and for an atom that is alpha to one
+ * such atom and beta to another, in two rings or in a cation whose charge lies on two nitrogens NIM+ (about a carbon CIM+ in imidazolium).
  *
  * Source: T. A. Halgren, J. Comput. Chem. 17, 490 (1996), Table III and its notes on aromatic rings.
  */
@@ -23,7 +23,7 @@ const ALPHA = 2;
 const BETA = 4;
 const GENERAL = 8;
 const ANION = 16;
-const IMIDAZOLIUM_NITROGEN = 32;
+const CATION_NITROGEN = 32;
 const IMIDAZOLIUM_CARBON = 64;
 
 /** Writes the types of aromatic atoms into `types`; an atom that has no aromatic type (oxygen in a six-membered ring) is left alone. */
@@ -47,6 +47,7 @@ function assignAminoNeighbours(
     if (element[i] !== C || position[i] === 0) continue;
     const partner = neighbourByOrder(form, i, 2);
     if (partner < 0 || position[partner] === 0 || !isCationicNitrogen(form, partner)) continue;
+    if (position[partner] & CATION_NITROGEN && !(position[i] & IMIDAZOLIUM_CARBON)) continue;
     for (const j of neighboursOf(molecule, i)) {
       if (element[j] !== N || aromaticity.atoms[j] || degree[j] !== 3 || valence[j] !== 3) continue;
       types[j] = position[i] & IMIDAZOLIUM_CARBON ? 'NGD+' : 'NCN+';
@@ -64,28 +65,24 @@ function markPositions(form: ValenceForm, { atoms, lonePairAtom }: AromaticRing,
     for (const i of atoms) position[i] |= GENERAL | ANION;
     return;
   }
-  // a positive nitrogen two places from a lone-pair nitrogen shares its charge with it over the carbon between them
-  let imidazolium = false;
-  if (element[lonePairAtom] === N)
-    for (const [carbon, nitrogen] of [
-      [at(1), at(2)],
-      [at(4), at(3)],
-    ])
-      if (element[carbon] === C && isCationicNitrogen(form, nitrogen)) {
-        position[carbon] |= IMIDAZOLIUM_CARBON;
-        position[lonePairAtom] |= IMIDAZOLIUM_NITROGEN;
-        position[nitrogen] |= IMIDAZOLIUM_NITROGEN;
-        imidazolium = true;
-      }
-  if (imidazolium) {
-    for (const i of atoms) position[i] |= GENERAL;
-    return;
-  }
   position[lonePairAtom] |= LONE_PAIR;
-  position[at(1)] |= ALPHA;
-  position[at(4)] |= ALPHA;
-  position[at(2)] |= BETA;
-  position[at(3)] |= BETA;
+  const donors = [0];
+  // a positive nitrogen shares its charge with a lone-pair nitrogen; which of the two is written with the charge must not matter
+  if (element[lonePairAtom] === N)
+    for (let offset = 1; offset < 5; offset++) {
+      if (!isCationicNitrogen(form, at(offset))) continue;
+      donors.push(offset);
+      position[lonePairAtom] |= CATION_NITROGEN;
+      position[at(offset)] |= CATION_NITROGEN;
+      const between = offset === 2 ? at(1) : offset === 3 ? at(4) : -1;
+      if (between >= 0 && element[between] === C) position[between] |= IMIDAZOLIUM_CARBON;
+    }
+  for (const donor of donors) {
+    position[at(donor + 1)] |= ALPHA;
+    position[at(donor + 4)] |= ALPHA;
+    position[at(donor + 2)] |= BETA;
+    position[at(donor + 3)] |= BETA;
+  }
 }
 
 /** Three neighbours and a double bond, but no oxide. */
@@ -101,7 +98,7 @@ function fiveRingType(form: ValenceForm, i: number, position: number): SymbolicT
       if (position & IMIDAZOLIUM_CARBON) return 'CIM+';
       return alpha ? 'C5A' : beta ? 'C5B' : 'C5';
     case N:
-      if (position & IMIDAZOLIUM_NITROGEN) return 'NIM+';
+      if (position & CATION_NITROGEN) return 'NIM+';
       if (form.degree[i] === 3) {
         if (terminalCount(form, i, O) === 1) return alpha ? 'N5AX' : beta ? 'N5BX' : 'N5OX';
         if (form.valence[i] === 4) return alpha ? 'N5A+' : beta ? 'N5B+' : 'N5+';

@@ -15,7 +15,8 @@ const TERMINAL_NITROGEN = NUMERIC_TYPES.NAZT;
 const ISONITRILE_CARBON = NUMERIC_TYPES['C%'];
 const RING_ANION_NITROGEN = NUMERIC_TYPES.N5M;
 const CATION_CARBONS: readonly number[] = [NUMERIC_TYPES['CNN+'], NUMERIC_TYPES['CIM+']];
-const CATION_NITROGENS: readonly number[] = [NUMERIC_TYPES['NCN+'], NUMERIC_TYPES['NGD+'], NUMERIC_TYPES['NIM+']];
+const RING_CATION_NITROGEN = NUMERIC_TYPES['NIM+'];
+const CATION_NITROGENS: readonly number[] = [NUMERIC_TYPES['NCN+'], NUMERIC_TYPES['NGD+'], RING_CATION_NITROGEN];
 
 /** Charges in elementary charges, one an atom; their sum is the molecule's charge. */
 export function formalCharges({ form, atomTypes, aromaticity }: AtomTyping): Float64Array {
@@ -49,6 +50,12 @@ export function formalCharges({ form, atomTypes, aromaticity }: AtomTyping): Flo
         neighbours.filter((j) => CATION_NITROGENS.includes(atomTypes[j])),
       );
   }
+  // imidazolium, pyrazolium, triazolium: both three-coordinate nitrogens of the ring
+  for (const ring of aromaticity.rings)
+    share(
+      charges,
+      ring.atoms.filter((i) => atomTypes[i] === RING_CATION_NITROGEN),
+    );
   // azolide anions: all two-coordinate nitrogens of the ring
   for (const ring of aromaticity.rings)
     if (ring.lonePairAtom >= 0 && form.charge[ring.lonePairAtom] === -1)
