@@ -5,7 +5,7 @@
  * stated stereocentres and double bonds, and those that become handed once their like substituents are told apart (the CH of an
  * isopropyl group, whose methyls are diastereotopic next to a stereocentre; C=N of acetone oxime). A permutation that inverts all of
  * them leads to the mirror image. Which way round such substituents are numbered is arbitrary, so that only rotors that are
- * equivalent in every such numbering count.
+ * equivalent in every such numbering, and in each with or each without reflection, count.
  */
 import {
   type AxialStereo,

@@ -397,4 +397,30 @@ export const ROTOR_TABLE: readonly TabulatedMolecule[] = [
     '5-6 1,3 terminal methyl d',
     '5-7 1,1 hydroxyl e',
   ),
+  // a twofold axis pairs the methyls of the two isopropyl groups, but which with which depends on how they are numbered in space
+  row(
+    '(R,R)-2,5-dimethylhexane-3,4-diol',
+    'CC(C)[C@@H](O)[C@H](O)C(C)C',
+    '0-1 3,1 terminal methyl a',
+    '1-2 1,3 terminal methyl b',
+    '1-3 1,1 sp3-sp3 c',
+    '3-4 1,1 hydroxyl d',
+    '3-5 1,1 sp3-sp3 e',
+    '5-6 1,1 hydroxyl d',
+    '5-7 1,1 sp3-sp3 c',
+    '7-8 1,3 terminal methyl f',
+    '7-9 1,3 terminal methyl g',
+  ),
+  // without stereocentres all four methyls are alike; which one of the other group is reached without reflection depends on the numbering,
+  // so that two pairs are listed
+  row(
+    'diisopropyl ether',
+    'CC(C)OC(C)C',
+    '0-1 3,1 terminal methyl a',
+    '1-2 1,3 terminal methyl a',
+    '1-3 1,1 alkyl ether b',
+    '3-4 1,1 alkyl ether b',
+    '4-5 1,3 terminal methyl c',
+    '4-6 1,3 terminal methyl c',
+  ),
 ];
