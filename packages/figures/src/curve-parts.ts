@@ -1,4 +1,5 @@
 import { type CurvePiece, type ProfileDocument, profileCurve } from '@tordial/scan';
+import { coordinate } from './svg.js';
 
 /** A cubic Bezier segment of energy over angle (degrees): its four control points are evenly spaced in the angle, so that it is a cubic in it. */
 export interface CurveSegment {
@@ -76,6 +77,16 @@ export function segmentEnergy({ from, to, energies: [a, b, c, d] }: CurveSegment
   const t = (angle - from) / (to - from);
   const s = 1 - t;
   return s * s * s * a + 3 * s * s * t * b + 3 * s * t * t * c + t * t * t * d;
+}
+
+/** The path of a run of segments, on given scales (px). */
+export function curvePath(run: readonly CurveSegment[], x: (angle: number) => number, y: (energy: number) => number): string {
+  const at = (angle: number, energy: number): string => `${coordinate(x(angle))} ${coordinate(y(energy))}`;
+  const curves = run.map(({ from, to, energies: [, b, c, d] }) => {
+    const third = (to - from) / 3;
+    return `C ${at(from + third, b)} ${at(to - third, c)} ${at(to, d)}`;
+  });
+  return `M ${at(run[0].from, run[0].energies[0])} ${curves.join(' ')}`;
 }
 
 /** Power basis to Bezier control points. */

@@ -1,6 +1,6 @@
 import type { ProfileDocument } from '@tordial/scan';
 import { angleTitle, energyTitle, frame } from './axes.js';
-import type { CurveSegment } from './curve-parts.js';
+import { curvePath } from './curve-parts.js';
 import { degreesText, energyText } from './format.js';
 import {
   atBothEdges,
@@ -98,18 +98,10 @@ function leaders({ marks, plot, theme }: ProfileLayout): string[] {
 }
 
 function curve({ parts, x, energies: { y }, theme }: ProfileLayout): string[] {
-  const at = (angle: number, energy: number): string => `${coordinate(x(angle))} ${coordinate(y(energy))}`;
-  const path = (run: readonly CurveSegment[]): string => {
-    const curves = run.map(({ from, to, energies: [, b, c, d] }) => {
-      const third = (to - from) / 3;
-      return `C ${at(from + third, b)} ${at(to - third, c)} ${at(to, d)}`;
-    });
-    return `M ${at(run[0].from, run[0].energies[0])} ${curves.join(' ')}`;
-  };
   const stroke = { fill: 'none', stroke: theme.curve };
   return [
-    ...parts.smooth.map((run) => element('path', { d: path(run), ...stroke, 'stroke-width': 2, 'stroke-linecap': 'round' })),
-    ...parts.estimated.map((segment) => element('path', { d: path([segment]), ...stroke, ...ESTIMATED })),
+    ...parts.smooth.map((run) => element('path', { d: curvePath(run, x, y), ...stroke, 'stroke-width': 2, 'stroke-linecap': 'round' })),
+    ...parts.estimated.map((segment) => element('path', { d: curvePath([segment], x, y), ...stroke, ...ESTIMATED })),
   ];
 }
 

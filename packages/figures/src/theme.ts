@@ -10,6 +10,8 @@ export interface FigureTheme {
   readonly line: string;
   readonly grid: string;
   readonly curve: string;
+  /** A second curve that the first is compared with. */
+  readonly compared: string;
   readonly well: string;
   readonly barrier: string;
   readonly crossing: string;
@@ -32,10 +34,11 @@ export const LIGHT_THEME: FigureTheme = {
   line: '#8a95a1',
   grid: '#e9edf1',
   curve: '#0072b2',
+  compared: '#8f3f70',
   well: '#00795a',
   barrier: '#b64a00',
   crossing: '#8f3f70',
-  unconverged: '#b64a00',
+  unconverged: '#1c2530',
   torsion: '#b64a00',
   rear: '#a9b4c0',
 };
