@@ -1,8 +1,10 @@
 export * from './automorphisms.js';
+export { canonicalSmiles } from './canonical-smiles.js';
 export * from './cip-priority.js';
 export * from './elements.js';
 export * from './embed/embed.js';
 export * from './errors.js';
+export * from './fragments.js';
 export * from './internal-coordinates.js';
 export * from './limits.js';
 export * from './molecule.js';

@@ -98,10 +98,11 @@ export function createMolecule(parts: MoleculeParts): Molecule {
     bonds,
     neighbours,
   };
+  const rings = relevantCycles(graph);
   return {
     ...graph,
-    rings: relevantCycles(graph),
-    symmetryClasses: symmetryClasses(graph),
+    rings,
+    symmetryClasses: symmetryClasses({ ...graph, rings }),
     stereo: parts.stereo ?? NO_STEREO,
     name: parts.name ?? '',
   };

@@ -3,39 +3,18 @@
  *
  * An element of stereo is real when no symmetry of the structure, all other configurations kept, exchanges its ligands oddly. With
  * constitutionally different ligands that is plain; ligands that differ only in configuration, and centres that depend on one another
- * across a ring, are decided by comparing refined colourings of the two exchanged arrangements (individualisation and refinement:
- * B. D. McKay, Congressus Numerantium 30, 45 (1981)).
+ * across a ring, are decided by comparing refined colourings of the two exchanged arrangements.
  */
 
+import { makeDefinite, refine } from './colouring.js';
+import { doubleBondMatching, doubleCanBeSingle } from './delocalised-bonds.js';
 import { elementSymbol } from './elements.js';
 import type { Note } from './errors.js';
-import { augment } from './matching.js';
-import type { AxialStereo, DoubleBondStereo, Molecule, StereoTable, TetrahedralCentre } from './molecule.js';
-import { bondBetween, neighboursOf } from './molecule.js';
-
-/** In a ligand list: a lone pair. */
-const LONE_PAIR = -1;
+import { bondBetween, type Molecule, neighboursOf, type StereoTable } from './molecule.js';
+import { LONE_PAIR, type Sign, type StereoElement, tied, toTable } from './stereo-elements.js';
 
 /** Rings below this size hold their double bonds cis. */
 export const SMALLEST_RING_WITH_TRANS = 8;
-
-/** Colourings that one question may cost before the input's word is taken for it. */
-const COLOURING_BUDGET = 200;
-
-type Sign = -1 | 0 | 1;
-
-/**
- * One element of stereo. `ligands` are four: all of a tetrahedral centre (ascending, lone pair last), or two at each end of a bond or axis
- * (each pair ascending, lone pair last). `sign` is the handedness of a centre, +1 for cis of a double bond, the sign of an axis' torsion.
- */
-interface StereoElement {
-  readonly kind: 'tetrahedral' | 'doubleBond' | 'axis';
-  readonly atoms: readonly number[];
-  readonly ligands: readonly number[];
-  readonly sign: Sign;
-  /** Listed only when the input states it: nitrogen that inverts, N-H of an imine. */
-  readonly onlyIfStated: boolean;
-}
 
 /**
  * The stereo table of a molecule, from `molecule.stereo` taken as what the input states: stated elements that are not stereogenic are left
@@ -202,24 +181,8 @@ function smallestRing({ rings }: Molecule, a: number, b: number): number {
 
 /** Whether another way of writing the alternating bonds makes a ring's double bond single (porphyrins, annulenes). */
 function canAlternate(molecule: Molecule, a: number, b: number): boolean {
-  const { atomCount, bonds } = molecule;
   if (smallestRing(molecule, a, b) === Number.POSITIVE_INFINITY) return false;
-  const mate = new Int32Array(atomCount).fill(-1);
-  const around: number[][] = Array.from({ length: atomCount }, () => []);
-  for (let n = 0; n < bonds.count; n++)
-    if (bonds.order[n] === 2) {
-      mate[bonds.a[n]] = bonds.b[n];
-      mate[bonds.b[n]] = bonds.a[n];
-    }
-  for (let n = 0; n < bonds.count; n++) {
-    const [p, q] = [bonds.a[n], bonds.b[n]];
-    if (mate[p] < 0 || mate[q] < 0 || bonds.order[n] === 3 || (p === Math.min(a, b) && q === Math.max(a, b))) continue;
-    around[p].push(q);
-    around[q].push(p);
-  }
-  mate[a] = -1;
-  mate[b] = -1;
-  return augment(a, around, mate);
+  return doubleCanBeSingle(doubleBondMatching(molecule), a, b);
 }
 
 /** Chains of two, four, ... cumulated double bonds, from end to end with the atom before each end; a below b. */
@@ -275,14 +238,14 @@ function exchangesLeaves({ symmetryClasses: classes, neighbours }: Molecule, { k
   return ligands.some((p, n) => ligands.slice(0, n).some((q) => equal(p, q)));
 }
 
-/** Compares the arrangement as it is with each arrangement that differs by an odd exchange of equal ligands. */
+/** Compares the arrangement as it is with each arrangement that differs by an odd exchange of equal ligands; undecided counts as stereogenic. */
 function isStereogenic(molecule: Molecule, element: StereoElement, colours: ArrayLike<number>, all: readonly StereoElement[]): boolean {
   const others = all.filter((other) => other !== element);
-  const budget = { left: COLOURING_BUDGET };
-  const own = certificate(molecule, marked(molecule, element.ligands), others, budget);
-  for (const arrangement of oddArrangements(element, colours))
-    if (certificate(molecule, marked(molecule, arrangement), others, budget) === own) return false;
-  return true;
+  const own = makeDefinite(molecule, marked(molecule, element.ligands), others);
+  return oddArrangements(element, colours).every((arrangement) => {
+    const exchanged = makeDefinite(molecule, marked(molecule, arrangement), others);
+    return !own.decided || !exchanged.decided || exchanged.text !== own.text;
+  });
 }
 
 function marked(molecule: Molecule, ligands: readonly number[]): Int32Array {
@@ -322,85 +285,6 @@ const ODD_ORDERS = [
   [3, 0, 1, 2],
   [3, 2, 0, 1],
 ];
-
-interface Colouring {
-  readonly colours: Int32Array;
-  /** The same text for colourings that a symmetry of the structure carries into one another. */
-  readonly trace: string;
-}
-
-/** Refines colours by those of the neighbours and by the configurations that they make definite, until nothing splits. */
-function refine(molecule: Molecule, start: ArrayLike<number>, elements: readonly StereoElement[]): Colouring {
-  const { atomCount, neighbours } = molecule;
-  let colours = Int32Array.from(start);
-  let count = new Set(colours).size;
-  const trace: string[] = [];
-  for (;;) {
-    const marks: string[] = new Array(atomCount).fill('');
-    for (const element of elements) {
-      const sense = senseInColours(element, colours);
-      if (sense !== 0) for (const atom of element.atoms) marks[atom] += sense > 0 ? 'p' : 'm';
-    }
-    const keys: string[] = [];
-    for (let i = 0; i < atomCount; i++) {
-      const around = Array.from(neighbours.atom.subarray(neighbours.start[i], neighbours.start[i + 1]), (j) => colours[j]).sort(
-        (p, q) => p - q,
-      );
-      keys.push(`${colours[i]}:${around.join()}${marks[i]}`);
-    }
-    const order = [...new Set(keys)].sort();
-    const rank = new Map(order.map((key, n) => [key, n]));
-    const finer = Int32Array.from(keys, (key) => rank.get(key) ?? -1);
-    const sizes = new Int32Array(order.length);
-    for (const colour of finer) sizes[colour]++;
-    trace.push(order.map((key, n) => `${key}x${sizes[n]}`).join(' '));
-    colours = finer;
-    if (order.length === count) return { colours, trace: trace.join('\n') };
-    count = order.length;
-  }
-}
-
-/** Handedness of an element by the colours of its ligands; 0 where it is open or the colours leave ligands equal. */
-function senseInColours({ kind, ligands, sign }: StereoElement, colours: ArrayLike<number>): number {
-  if (sign === 0) return 0;
-  const [p, q, r, s] = ligands.map((i) => (i === LONE_PAIR ? -1 : colours[i]));
-  const pairs = kind === 'tetrahedral' ? [p - q, p - r, p - s, q - r, q - s, r - s] : [p - q, r - s];
-  let sense: number = sign;
-  for (const difference of pairs) {
-    if (difference === 0) return 0;
-    if (difference > 0) sense = -sense;
-  }
-  return sense;
-}
-
-/** Invariant of a coloured structure with configurations: where equal ligands leave one indefinite, each choice is tried and the least text kept. */
-function certificate(molecule: Molecule, start: ArrayLike<number>, elements: readonly StereoElement[], budget: { left: number }): string {
-  budget.left--;
-  const { colours, trace } = refine(molecule, start, elements);
-  const indefinite = elements.filter(
-    (element) => element.sign !== 0 && senseInColours(element, colours) === 0 && tied(element, colours).length > 0,
-  );
-  if (indefinite.length === 0 || budget.left <= 0) return trace;
-  const first = Math.min(...indefinite.map((element) => colours[element.atoms[0]]));
-  let least = '';
-  for (const element of indefinite) {
-    if (colours[element.atoms[0]] !== first) continue;
-    for (const ligand of tied(element, colours)) {
-      const split = colours.map((c) => 2 * c);
-      split[ligand]++;
-      const text = certificate(molecule, split, elements, budget);
-      if (least === '' || text < least) least = text;
-    }
-  }
-  return `${trace}\n${least}`;
-}
-
-function tied({ kind, ligands }: StereoElement, colours: ArrayLike<number>): number[] {
-  const rivals = (n: number) => (kind === 'tetrahedral' ? [0, 1, 2, 3].filter((m) => m !== n) : [n ^ 1]);
-  return ligands.filter(
-    (ligand, n) => ligand !== LONE_PAIR && rivals(n).some((m) => ligands[m] >= 0 && colours[ligands[m]] === colours[ligand]),
-  );
-}
 
 /**
  * Ring centres that the input leaves open and that depend on another of their ring: cis/trans-1,4-dimethylcyclohexane, decalin. Heads of
@@ -446,18 +330,4 @@ function openRingCentres(
         distinct(molecule, other, finer),
     );
   });
-}
-
-function toTable(elements: readonly StereoElement[]): StereoTable {
-  const tetrahedral: TetrahedralCentre[] = [];
-  const doubleBonds: DoubleBondStereo[] = [];
-  const axes: AxialStereo[] = [];
-  for (const { kind, atoms, ligands, sign } of elements) {
-    const [a, b] = atoms;
-    const [p, q, r, s] = ligands;
-    if (kind === 'tetrahedral') tetrahedral.push({ atom: a, neighbours: [p, q, r, s], sign });
-    else if (kind === 'doubleBond') doubleBonds.push({ a, b, substituentA: p, substituentB: r, cis: sign === 0 ? null : sign > 0 });
-    else axes.push({ a, b, substituentA: p, substituentB: r, sign });
-  }
-  return { tetrahedral, doubleBonds, axes };
 }

@@ -3,8 +3,14 @@
  *
  * Bond orders and charges take no part: with every hydrogen an atom, element and connectivity fix them up to resonance,
  * and atoms that differ only in how resonance is written (ortho carbons, the oxygens of a nitro group) are equivalent.
+ * The sizes of the small rings through an atom do, for they tell apart what equal neighbourhoods cannot: the carbons of
+ * cuneane, or those of cyclopropane beside cyclohexane.
  */
-import type { MolecularGraph } from './molecule.js';
+import { refine } from './colouring.js';
+import type { Molecule } from './molecule.js';
+
+/** Larger rings may be too many to be listed all, which would make the classes depend on numbering. */
+const LARGEST_RING = 8;
 
 /** One class number an atom; equivalent atoms share it. Numbers run from 0 without gaps and do not depend on the order of atoms in the input. */
 export function symmetryClasses({
@@ -12,21 +18,21 @@ export function symmetryClasses({
   atomicNumbers,
   isotopes,
   neighbours,
-}: Omit<MolecularGraph, 'bonds' | 'formalCharges'>): Int32Array {
-  const degree = (i: number) => neighbours.start[i + 1] - neighbours.start[i];
-  let classes = rank(Array.from({ length: atomCount }, (_, i) => `${pad(atomicNumbers[i])} ${pad(isotopes[i])} ${pad(degree(i))}`));
-  for (;;) {
-    const around = (i: number) =>
-      Array.from(neighbours.atom.subarray(neighbours.start[i], neighbours.start[i + 1]), (j) => pad(classes[j]));
-    const finer = rank(Array.from(classes, (own, i) => `${pad(own)} ${around(i).sort().join(' ')}`));
-    if (Math.max(-1, ...finer) === Math.max(-1, ...classes)) return classes;
-    classes = finer;
-  }
+  rings,
+}: Pick<Molecule, 'atomCount' | 'atomicNumbers' | 'isotopes' | 'neighbours' | 'rings'>): Int32Array {
+  const ringSizes: number[][] = Array.from({ length: atomCount }, () => []);
+  for (const ring of rings) if (ring.length <= LARGEST_RING) for (const atom of ring) ringSizes[atom].push(ring.length);
+  const keys = Array.from({ length: atomCount }, (_, i) =>
+    [atomicNumbers[i], isotopes[i], neighbours.start[i + 1] - neighbours.start[i], ...ringSizes[i]]
+      .map((value) => String(value).padStart(3, '0'))
+      .join(' '),
+  );
+  const { colours } = refine({ atomCount, neighbours }, ranks(keys));
+  return ranks(Array.from(colours, (colour) => String(colour).padStart(6, '0')));
 }
 
-const pad = (value: number): string => String(value).padStart(5, '0');
-
-function rank(keys: readonly string[]): Int32Array {
+/** Rank of each key among the different ones, from 0. */
+function ranks(keys: readonly string[]): Int32Array {
   const order = new Map([...new Set(keys)].sort().map((key, n) => [key, n]));
   return Int32Array.from(keys, (key) => order.get(key) ?? -1);
 }

@@ -12,7 +12,7 @@ import type { WrittenMolfile } from './molfile-syntax.js';
 import { perceiveStereo, tripleSign } from './stereo-perception.js';
 
 /** Volume of unit vectors below which a drawing does not show a handedness. */
-const FLAT_DRAWING = 0.02;
+const FLAT_DRAWING = 0.002;
 
 /** The table with the signs that the drawing shows; elements without wedges, or with contradicting or wavy ones, stay open. */
 export function drawnStereo(possible: StereoTable, { atoms, bonds }: WrittenMolfile): StereoTable {
@@ -38,7 +38,13 @@ export function drawnStereo(possible: StereoTable, { atoms, bonds }: WrittenMolf
     tetrahedral: possible.tetrahedral.map((centre) => {
       const { atom, neighbours } = centre;
       if (wavy.has(atom) || !lifts.has(atom) || neighbours.filter(isDrawn).length < 3) return { ...centre, sign: 0 };
-      return { ...centre, sign: tripleSign(neighbours.filter(isDrawn).map((j) => drawn(atom, j)), FLAT_DRAWING) };
+      return {
+        ...centre,
+        sign: tripleSign(
+          neighbours.filter(isDrawn).map((j) => drawn(atom, j)),
+          FLAT_DRAWING,
+        ),
+      };
     }),
     doubleBonds: possible.doubleBonds.map((bond) => {
       if (crossed.has(`${bond.a} ${bond.b}`) || wavy.has(bond.a) || wavy.has(bond.b)) return { ...bond, cis: null };
