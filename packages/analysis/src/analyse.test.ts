@@ -1,9 +1,11 @@
 import { describe, expect, it } from 'vitest';
 import { analyseProfile } from './analyse.js';
 import { eyringRate } from './eyring.js';
+import { freeEnergiesOf } from './free-energies.js';
 import { hinderedRotor } from './hindered-rotor/hindered-rotor.js';
 import { seriesOfBarriers } from './hindered-rotor/periodic-series.js';
 import { rotorOfProfile } from './hindered-rotor/rotor-of-profile.js';
+import { lowestBarrier, observableProcesses, processRates } from './processes.js';
 import { DICHLOROETHANE, geometryAt, METHANOL, PEROXIDE, profileDocument } from './profile.fixture.js';
 import { rotamers } from './rotamers.js';
 import { torsionalStrain } from './strain.js';
@@ -270,5 +272,59 @@ describe('the hindered rotor of a profile', () => {
     expect(anti).toBeLessThan(syn);
     expect(constant.cosine.length).toBeGreaterThan(1);
     expect(moments.every((moment) => moment.pitzerGwinn === null)).toBe(true);
+  });
+});
+
+describe('a handed axis beside a stereocentre', () => {
+  // two wells a side, unequal: P at 60 and 120, M at -60 and -120
+  const wells = [
+    { angle: -120, energy: 0.6 },
+    { angle: -60, energy: 0.9 },
+    { angle: 60, energy: 0 },
+    { angle: 120, energy: 0.4 },
+  ];
+  const related = wells.map(({ angle }) => ({ angle, identical: [], mirrorImages: [], species: 0 }));
+  const network = { wells: wells.map((well) => well.energy), barriers: [6, 26, 5, 24] };
+
+  it('diastereomerises by pre-equilibrium on either side: k = sum of rates weighted by the populations of one side', () => {
+    const process = observableProcesses(network, related, T, true).find(({ kind }) => kind === 'diastereomerisation');
+    if (!process) throw new Error('the axis has two sides');
+    expect([process.from, process.to]).toEqual([
+      [2, 3],
+      [0, 1],
+    ]);
+    const rates = processRates(process, network, T);
+    const w = [0, 0.4].map((energy) => Math.exp(-energy / (1.987204259e-3 * T)));
+    const forward = (w[0] * eyringRate(26, T) + w[1] * eyringRate(24 - 0.4, T)) / (w[0] + w[1]);
+    expect((rates?.forward ?? 0) / forward).toBeCloseTo(1, 8);
+    expect(rates?.share).toBeCloseTo(1, 6);
+    const v = [0.6, 0.9].map((energy) => Math.exp(-energy / (1.987204259e-3 * T)));
+    expect((rates?.backward ?? 0) / (rates?.forward ?? 1)).toBeCloseTo((w[0] + w[1]) / (v[0] + v[1]), 8);
+    expect(lowestBarrier(process, network)).toBe(24);
+  });
+
+  it('has no such process without a stereocentre', () => {
+    expect(observableProcesses(network, related, T).map(({ kind }) => kind)).not.toContain('diastereomerisation');
+  });
+});
+
+describe('free energies', () => {
+  const water = { energy: 0, coordinates: Float64Array.of(0, 0, 0, 0.76, 0, 0.59, -0.76, 0, 0.59), frequencies: [1595, 3657, 3756] };
+
+  it('add zero point, heat and entropy; of equal structures they leave the electronic difference', () => {
+    const saddle = { ...water, energy: 12, frequencies: [-414.5, 3657, 3756] };
+    const { freeEnergies, transmission } = freeEnergiesOf([water, { ...water, energy: 1 }], [saddle, null], [15.999, 1.008, 1.008]);
+    const { wells, barriers } = freeEnergies(T);
+    expect(wells[1] - wells[0]).toBeCloseTo(1, 10);
+    expect(barriers[1]).toBeNull();
+    // the saddle lacks one oscillator of 1595 cm-1: its zero point (2.28 kcal/mol), and next to nothing of its heat
+    expect((barriers[0] ?? 0) - wells[0]).toBeCloseTo(12 - 1595 / 2 / 349.755, 3);
+    // h nu / kT = 2 for 414.5 cm-1 at 298.15 K
+    expect(transmission(T)).toEqual([expect.closeTo(1 + 4 / 24, 3), 1]);
+  });
+
+  it('refuse points of the wrong index', () => {
+    expect(() => freeEnergiesOf([{ ...water, frequencies: [-50, 3657, 3756] }], [null], [16, 1, 1])).toThrow(/well 0 has 1 imaginary/);
+    expect(() => freeEnergiesOf([water], [water], [16, 1, 1])).toThrow(/barrier 0 has 0 imaginary/);
   });
 });

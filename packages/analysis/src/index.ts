@@ -1,4 +1,5 @@
 export * from './analyse.js';
+export * from './analysed-process.js';
 export * from './cautions.js';
 export * from './coalescence.js';
 export * from './constants.js';
@@ -7,6 +8,7 @@ export * from './couplings/vicinal-couplings.js';
 export * from './document-molecule.js';
 export * from './energy-unit.js';
 export * from './eyring.js';
+export * from './free-energies.js';
 export * from './half-life.js';
 export * from './hindered-rotor/hindered-rotor.js';
 export * from './hindered-rotor/levels.js';

@@ -1,4 +1,5 @@
 /** What can be observed of a turn: which rotamers turn into which, over which routes, how fast. */
+import { radians } from '@tordial/geometry';
 import { barrierRates, type RelaxationMode, type Route, relaxationModes, routesBetween, type WellNetwork } from './network.js';
 import { boltzmannPopulations } from './populations.js';
 
@@ -15,10 +16,11 @@ export interface RelatedWell {
  * One observable process.
  *
  * `exchange`: between two different rotamers that are neighbours on the turn. `racemisation`: between mirror images; `from` and `to` are the
- * wells of either hand. `topomerisation`: of a rotamer into itself with equal atoms exchanged, as a methyl turns.
+ * wells of either hand. `diastereomerisation`: the same of an axis in a molecule that a stereocentre makes handed anyway.
+ * `topomerisation`: of a rotamer into itself with equal atoms exchanged, as a methyl turns.
  */
 export interface Process {
-  readonly kind: 'exchange' | 'racemisation' | 'topomerisation';
+  readonly kind: 'exchange' | 'racemisation' | 'diastereomerisation' | 'topomerisation';
   /** Wells by index. */
   readonly from: readonly number[];
   readonly to: readonly number[];
@@ -31,18 +33,26 @@ export interface ProcessRates {
   /** 1/s, from and back. For a racemisation both are the k of ln 2 / (2k). */
   readonly forward: number;
   readonly backward: number;
-  /** Of the excess that a racemisation starts from, the part that decays with this rate; 1 elsewhere. */
+  /** Of the excess of one hand that it starts from, the part that decays with the sum of both rates; 1 elsewhere. */
   readonly share: number;
 }
 
 /** Part of a mode's weight that must change sign under the mirror for the mode to be a racemisation. */
 const ODD = 0.05;
+/** Degrees from 0 and 180 within which an axis has no hand. */
+const IN_PLANE = 5;
 
 /**
  * The observable processes of a network. `temperature` decides only, where each hand has several wells, which of them belong together:
- * those that the slowest racemising mode keeps together.
+ * those that the slowest racemising mode keeps together. `handedAxis`: the bond joins two planar atoms of a molecule with a fixed stereocentre,
+ * so that the wells on either side of the plane are diastereomers.
  */
-export function observableProcesses(network: WellNetwork, wells: readonly RelatedWell[], temperature: number): Process[] {
+export function observableProcesses(
+  network: WellNetwork,
+  wells: readonly RelatedWell[],
+  temperature: number,
+  handedAxis = false,
+): Process[] {
   const processes: Process[] = [];
   const species = [...new Set(wells.map((well) => well.species))].sort((a, b) => a - b);
   const members = (s: number): number[] => wells.flatMap((well, i) => (well.species === s ? [i] : []));
@@ -52,10 +62,11 @@ export function observableProcesses(network: WellNetwork, wells: readonly Relate
       const routes = routesBetween(network, members(s), members(t)).filter((route) => route.wells.length === 2);
       if (routes.length > 0) processes.push({ kind: 'exchange', from: members(s), to: members(t), routes });
     }
-  const hands = handsOf(network, wells, temperature);
+  const mirrored = handsOf(network, wells, temperature);
+  const hands = mirrored ?? (handedAxis ? sidesOfPlane(wells) : null);
   if (hands) {
     const [from, to] = [1, -1].map((hand) => hands.flatMap((value, i) => (value === hand ? [i] : [])));
-    processes.push({ kind: 'racemisation', from, to, routes: routesBetween(network, from, to) });
+    processes.push({ kind: mirrored ? 'racemisation' : 'diastereomerisation', from, to, routes: routesBetween(network, from, to) });
   }
   for (const s of species) {
     const first = members(s)[0];
@@ -79,12 +90,14 @@ export function lowestBarrier({ routes, from }: Process, { wells }: WellNetwork)
 /**
  * Rates of a process at T; null where a route leads over an unknown barrier.
  *
- * An exchange adds the rates over all barriers between the two rotamers, weighted by the populations within each. A racemisation comes from the
- * relaxation modes of the whole turn, as routes may pass other wells: k is half the rate of the slowest mode that the excess decays with.
+ * An exchange adds the rates over all barriers between the two rotamers, weighted by the populations within each. A change of hand comes from the
+ * relaxation modes of the whole turn, as routes may pass other wells: the slowest mode that the excess decays with is the sum of both rates, which
+ * share it in the ratio of the populations; for mirror images each is half of it.
  */
 export function processRates(process: Process, network: WellNetwork, temperature: number): ProcessRates | null {
   if (process.routes.some((route) => route.highest === null)) return null;
-  return process.kind === 'racemisation' ? racemisationRates(process, network, temperature) : directRates(process, network, temperature);
+  const changesHand = process.kind === 'racemisation' || process.kind === 'diastereomerisation';
+  return changesHand ? handRates(process, network, temperature) : directRates(process, network, temperature);
 }
 
 function directRates({ kind, from, to, routes }: Process, network: WellNetwork, temperature: number): ProcessRates {
@@ -102,26 +115,34 @@ function directRates({ kind, from, to, routes }: Process, network: WellNetwork, 
   return { forward, backward: kind === 'topomerisation' ? forward : flux / total(to), share: 1 };
 }
 
-function racemisationRates({ from, to }: Process, network: WellNetwork, temperature: number): ProcessRates | null {
+function handRates({ from, to }: Process, network: WellNetwork, temperature: number): ProcessRates | null {
   const p = boltzmannPopulations(network.wells, temperature);
-  const ofHand = from.reduce((sum, i) => sum + p[i], 0);
+  const total = (set: readonly number[]): number => set.reduce((sum, i) => sum + p[i], 0);
+  const [ofFrom, ofTo] = [total(from), total(to)];
   const hand = Float64Array.from(p, (_, i) => (from.includes(i) ? 1 : to.includes(i) ? -1 : 0));
-  // started from one hand in equilibrium with itself: ee(t) = sum over modes of (h . p phi)(phi . q) exp(-rate t)
+  // started from one hand in equilibrium with itself: excess(t) = its final value + sum over modes of (h . p phi)(phi . q) exp(-rate t)
   const modes = relaxationModes(network, temperature).map(({ rate, shape }) => {
     let observed = 0;
     let prepared = 0;
     for (let i = 0; i < p.length; i++) {
       observed += hand[i] * p[i] * shape[i];
-      if (hand[i] === 1) prepared += (p[i] / ofHand) * shape[i];
+      if (hand[i] === 1) prepared += (p[i] / ofFrom) * shape[i];
     }
-    return { rate, share: observed * prepared };
+    return { rate, share: (observed * prepared) / (1 - (ofFrom - ofTo)) };
   });
   for (const { rate } of modes) {
     // modes of equal rate mix at will: only together do they say how much of the excess decays with it
     const share = modes.reduce((sum, mode) => sum + (Math.abs(mode.rate - rate) <= 1e-6 * rate ? mode.share : 0), 0);
-    if (share > ODD) return { forward: rate / 2, backward: rate / 2, share };
+    if (share > ODD) return { forward: (rate * ofTo) / (ofFrom + ofTo), backward: (rate * ofFrom) / (ofFrom + ofTo), share };
   }
   return null;
+}
+
+/** +1 and -1 for wells on either side of the plane, 0 for those in it; null unless both sides hold wells that are not the same molecule. */
+function sidesOfPlane(wells: readonly RelatedWell[]): number[] | null {
+  const sides = wells.map(({ angle }) => (Math.abs(Math.sin(radians(angle))) < Math.sin(radians(IN_PLANE)) ? 0 : Math.sign(angle)));
+  const same = wells.some(({ identical }, i) => identical.some((j) => sides[i] * sides[j] < 0));
+  return sides.includes(1) && sides.includes(-1) && !same ? sides : null;
 }
 
 /** +1 and -1 for the wells of either hand, 0 for wells that are their own mirror image; null where no well has a mirror image on the turn. */
