@@ -7,8 +7,10 @@
  * J. M. Blaney, J. S. Dixon, Rev. Comput. Chem. 5, 299 (1994).
  */
 import { TordialError } from '../errors.js';
-import type { Coordinates, Molecule } from '../molecule.js';
+import { torsion } from '../internal-coordinates.js';
+import { bondBetween, type Coordinates, type Molecule } from '../molecule.js';
 import { type Random, seededRandom } from '../random.js';
+import { sidesOfBond, turnAbout } from '../turn.js';
 import { bondAngles } from './bond-angles.js';
 import { bondLengths } from './bond-lengths.js';
 import { bondDistances, distanceBounds, type IdealGeometry } from './bounds.js';
@@ -50,6 +52,9 @@ export function embedMany(molecule: Molecule, count: number, { seed = 1, attempt
   );
 }
 
+/** Atoms from which on a random start is tried first. */
+const LARGE = 50;
+
 /** Makes structures of one connected molecule; what depends on the bonding alone is worked out once. */
 function embedder(molecule: Molecule): (random: Random, attempts: number) => Coordinates {
   const shapes = atomShapes(molecule);
@@ -69,19 +74,25 @@ function embedder(molecule: Molecule): (random: Random, attempts: number) => Coo
   const loose = distanceError(bounds, volumes, { volume: 2, fourth: 0.02 });
   const flattening = distanceError(bounds, volumes, { volume: 1, fourth: 1 });
   const strained = strain(molecule, ideal, turns, volumes);
+  const turnable = turns.flat.flatMap((entry) => {
+    if (entry.cis === null || bondBetween(molecule, entry.a, entry.b) < 0) return [];
+    const sides = sidesOfBond(molecule, entry.a, entry.b);
+    return sides ? [{ ...entry, side: sides.b }] : [];
+  });
   const { atomCount } = molecule;
 
   return (random, attempts) => {
     if (atomCount === 1) return new Float64Array(3);
     let reason = '';
     for (let attempt = 0; attempt < attempts; attempt++) {
-      // every fifth start ignores the drawn distances, which may all lead to the same dead end
-      const x4 = attempt % 5 === 4 ? randomCoordinates(atomCount, random) : embedDistances(bounds, random);
+      // drawn distances lead small molecules to a structure more often, a random box large ones: begin with that, then take turns
+      const x4 = (attempt % 2 === 0) === atomCount < LARGE ? embedDistances(bounds, random) : randomCoordinates(atomCount, random);
       if (mirrored(x4)) for (let p = 0; p < x4.length; p += 4) x4[p] = -x4[p];
       descend(loose, x4, { iterations: 200, gradient: 1e-3, decrease: 1e-3 * atomCount, stride: 1 });
       descend(flattening, x4, { iterations: 100, gradient: 1e-3, decrease: 1e-3 * atomCount, stride: 1 });
       const x = new Float64Array(3 * atomCount);
       for (let i = 0; i < atomCount; i++) for (let c = 0; c < 3; c++) x[3 * i + c] = x4[4 * i + c];
+      turnRound(x);
       descend(strained, x, { iterations: 300, gradient: 0.3, decrease: 0.02 * atomCount, stride: 0.3 });
       const fault = structureFault(molecule, ideal, turns, volumes, x);
       if (fault === null) return centred(x);
@@ -92,6 +103,14 @@ function embedder(molecule: Molecule): (random: Random, attempts: number) => Coo
       `no structure found in ${attempts} attempts: ${reason}; check the stated configuration, or try another seed or more attempts`,
     );
   };
+
+  /** Flat bonds outside of rings that came out on the wrong side are turned round: what they then touch, the strain pushes apart. */
+  function turnRound(x: Coordinates): void {
+    for (const { a, b, atA, atB, cis, side } of turnable) {
+      const away = (cis ? 0 : Math.PI) - torsion(x, atA, a, b, atB);
+      if (Math.cos(away) < 0) turnAbout(x, a, b, side, away);
+    }
+  }
 
   /** More of the signed volumes have the wrong sign than the right one. */
   function mirrored(x: Float64Array): boolean {
