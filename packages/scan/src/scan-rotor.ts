@@ -11,6 +11,7 @@ import { drive, driveAsync } from './drive.js';
 import { checkBent, type DrivenRotor, drivenRotor, intoRotorFrame, rigidTorque, rotorAngle, turnTo } from './driven-rotor.js';
 import { checkSizes } from './minimise.js';
 import { type ModelHessian, modelHessian } from './model-hessian.js';
+import { neighbouringRotors, turnedNeighbours } from './neighbouring-rotors.js';
 import { invertedNitrogens } from './nitrogen-inversion.js';
 import type { Abortable, AsyncPotential, Calculation, Potential } from './potential.js';
 import { predictedStart } from './predicted-start.js';
@@ -357,6 +358,7 @@ function* searchEnvelope(search: Search): Calculation<void> {
     yield* sweep(search, first, 1);
     yield* sweep(search, first, -1);
   }
+  const neighbours = neighbouringRotors(search.scan.molecule, search.scan.rotor);
   const seeded = new Set<HeldMinimum>();
   for (;;) {
     yield* close(search);
@@ -365,7 +367,11 @@ function* searchEnvelope(search: Search): Calculation<void> {
     for (const minimum of fresh) {
       seeded.add(minimum);
       if (minimum.twin && minimum.twin !== minimum && seeded.has(minimum.twin)) continue;
-      for (const start of invertedNitrogens(search.scan.molecule, search.scan.rotor, minimum.coordinates))
+      const { molecule, rotor } = search.scan;
+      for (const start of [
+        ...invertedNitrogens(molecule, rotor, minimum.coordinates),
+        ...turnedNeighbours(neighbours, minimum.coordinates),
+      ])
         yield* find(search, minimum.place, start);
     }
   }
