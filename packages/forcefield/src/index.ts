@@ -1,1 +1,5 @@
-export {};
+export * from './mmff94.js';
+export * from './parameters/assign-parameters.js';
+export { PARAMETER_SOURCES, type ParameterSource } from './parameters/source.js';
+export type { Dielectric } from './terms/electrostatic.js';
+export { type NonBondedRows, nonBondedRows } from './terms/non-bonded.js';

@@ -3,21 +3,20 @@
  *
  * Both terms need the distance, so one loop serves both. It walks dense rows - all j > i for one i - with the constants of each pair
  * ready in that order: no index is looked up, and the gradient of i stays in locals. Pairs one or two bonds apart stand in the rows
- * with strength zero; at any size they are too few to be worth a branch. Each row is padded to an even number of pairs for the
- * vector form of the loop (kernel/), of which this one is the reference and the fallback.
+ * with strength zero; at any size they are too few to be worth a branch.
  *
  * With t = 1 / (r + a), w = 1 / (r^7 + b), u = 1 / (r + 0.05), the pair's energy is
  *
- *   c t^7 ((28/3) b w - 2) + q u^n,   a = 0.07 R*,   b = 0.12 R*^7,   c = eps (1.07 R*)^7,   q = 332.0716 q_i q_j / D
+ *   t^7 (d w - e) + q u^n,   a = 0.07 R*,   b = 0.12 R*^7,   d = 1.12 R*^7 e / 2,   e = 2 eps (1.07 R*)^7,   q = 332.0716 q_i q_j / D
  *
- * which is the product form of the formulas in van-der-waals.ts and electrostatic.ts. The three reciprocals and the 1 / r of the
- * gradient come from one division by the product of all four denominators: division is what this loop waits for.
+ * which is the formulas in van-der-waals.ts and electrostatic.ts with everything that does not depend on r worked out beforehand.
+ * The loop in kernel/ does the same on two pairs at a time; this one is its reference and its fallback.
  */
 import type { Molecule } from '@tordial/geometry';
 import { chargeProduct, type Dielectric, electrostatic, ONE_FOUR_SCALE } from './electrostatic.js';
 import { type VanDerWaalsAtoms, vanDerWaals, vanDerWaalsPair } from './van-der-waals.js';
 
-/** Constants of all pairs i < j, row after row; rows padded to even length. All four arrays have the same length and share one buffer. */
+/** Constants of all pairs i < j: row after row, j ascending. The five arrays have n (n - 1) / 2 entries each. */
 export interface NonBondedRows {
   readonly atomCount: number;
   readonly dielectricModel: Dielectric['model'];
@@ -25,8 +24,10 @@ export interface NonBondedRows {
   readonly a: Float64Array;
   /** b = 0.12 R*^7, angstrom^7. */
   readonly b: Float64Array;
-  /** c = eps (1.07 R*)^7, kcal/mol angstrom^7; 0 for pairs that do not count. */
-  readonly c: Float64Array;
+  /** d = 1.12 R*^7 e / 2, kcal/mol angstrom^14; 0 for pairs that do not count. */
+  readonly d: Float64Array;
+  /** e = 2 eps (1.07 R*)^7, kcal/mol angstrom^7; 0 for pairs that do not count. */
+  readonly e: Float64Array;
   /** q, kcal/mol angstrom^n; 0 for pairs that do not count. */
   readonly q: Float64Array;
 }
@@ -57,35 +58,32 @@ export function nonBondedRows(
   dielectric: Dielectric,
 ): NonBondedRows {
   const { atomCount } = molecule;
-  let length = 0;
-  for (let i = 0; i < atomCount; i++) length += (atomCount - i) & ~1;
-  const block = new Float64Array(4 * length);
-  const [a, b, c, q] = [0, 1, 2, 3].map((n) => block.subarray(n * length, (n + 1) * length));
+  const length = (atomCount * (atomCount - 1)) / 2;
   // a pair without strength still needs denominators that are not zero
-  a.fill(1);
-  b.fill(1);
+  const a = new Float64Array(length).fill(1), b = new Float64Array(length).fill(1);
+  const d = new Float64Array(length), e = new Float64Array(length), q = new Float64Array(length);
   let pair = 0;
   for (let i = 0; i < atomCount; i++) {
     const bonds = separations(molecule, i);
     for (let j = i + 1; j < atomCount; j++, pair++) {
       if (bonds[j] < 3) continue;
       const { distance, depth } = vanDerWaalsPair(atoms, i, j);
+      const seventh = distance ** 7;
       a[pair] = 0.07 * distance;
-      b[pair] = 0.12 * distance ** 7;
-      c[pair] = depth * (1.07 * distance) ** 7;
+      b[pair] = 0.12 * seventh;
+      e[pair] = 2 * depth * (1.07 * distance) ** 7;
+      d[pair] = 0.56 * seventh * e[pair];
       q[pair] = chargeProduct(partialCharges[i], partialCharges[j], dielectric.constant) * (bonds[j] === 3 ? ONE_FOUR_SCALE : 1);
     }
-    pair = (pair + 1) & ~1;
   }
-  return { atomCount, dielectricModel: dielectric.model, a, b, c, q };
+  return { atomCount, dielectricModel: dielectric.model, a, b, d, e, q };
 }
 
 /** Adds the gradient (kcal/mol/angstrom) of every pair to `gradient` and returns the energy of both terms (kcal/mol). */
 export function addNonBonded(rows: NonBondedRows, x: Float64Array, gradient: Float64Array): number {
-  const { a, b, c, q } = rows;
+  const { a, b, d, e, q } = rows;
   const end = 3 * rows.atomCount;
-  // u^n = u (k0 + k1 u), its logarithmic slope n
-  const n = rows.dielectricModel === 'constant' ? 1 : 2, k0 = 2 - n, k1 = n - 1;
+  const distanceDependent = rows.dielectricModel === 'distance';
   let energy = 0;
   let pair = 0;
   for (let i = 0; i < end; i += 3) {
@@ -94,45 +92,42 @@ export function addNonBonded(rows: NonBondedRows, x: Float64Array, gradient: Flo
     for (let j = i + 3; j < end; j += 3, pair++) {
       const dx = xi - x[j], dy = yi - x[j + 1], dz = zi - x[j + 2];
       // two atoms on one spot repel with a finite energy and no direction
-      const r2 = Math.max(dx * dx + dy * dy + dz * dz, 1e-24);
-      const r = Math.sqrt(r2), r6 = r2 * r2 * r2;
-      const p = r + a[pair], m = r6 * r + b[pair], s = r + 0.05;
-      const pm = p * m, sr = s * r;
-      const reciprocal = 1 / (pm * sr);
-      const perPM = reciprocal * sr, perSR = reciprocal * pm;
-      const t = perPM * m, w = perPM * p, u = perSR * r, perR = perSR * s;
+      const r2 = dx * dx + dy * dy + dz * dz + 1e-24;
+      const r = Math.sqrt(r2), r6 = r2 * r2 * r2, s = r + 0.05;
+      const t = 1 / (r + a[pair]), w = 1 / (r6 * r + b[pair]);
+      // 1 / r and u from one division
+      const v = 1 / (r * s), u = v * r;
 
-      const t2 = t * t;
-      const ct7 = c[pair] * t * (t2 * t2 * t2);
-      const bw = (28 / 3) * b[pair] * w;
-      const dispersion = ct7 * (bw - 2);
-      const coulomb = q[pair] * u * (k0 + k1 * u);
-      energy += dispersion + coulomb;
+      const t2 = t * t, t7 = t2 * t2 * t2 * t;
+      const dw = d[pair] * w, well = dw - e[pair];
+      let coulomb = q[pair] * u, pull = coulomb * u;
+      if (distanceDependent) {
+        coulomb = pull;
+        pull *= 2 * u;
+      }
+      energy += t7 * well + coulomb;
 
-      const slope = -7 * (dispersion * t + ct7 * bw * (w * r6)) - n * coulomb * u;
-      const along = slope * perR;
-      const fx = along * dx, fy = along * dy, fz = along * dz;
+      // -dE/dr / r
+      const push = (7 * t7 * (well * t + dw * w * r6) + pull) * (v * s);
+      const fx = push * dx, fy = push * dy, fz = push * dz;
       gx += fx; gy += fy; gz += fz;
-      gradient[j] -= fx; gradient[j + 1] -= fy; gradient[j + 2] -= fz;
+      gradient[j] += fx; gradient[j + 1] += fy; gradient[j + 2] += fz;
     }
-    gradient[i] += gx; gradient[i + 1] += gy; gradient[i + 2] += gz;
-    pair = (pair + 1) & ~1;
+    gradient[i] -= gx; gradient[i + 1] -= gy; gradient[i + 2] -= gz;
   }
   return energy;
 }
 
 /** The two terms apart, kcal/mol, from the formulas as they are published. */
 export function nonBondedEnergies(rows: NonBondedRows, x: Float64Array): { vanDerWaals: number; electrostatic: number } {
-  const { atomCount, a, c, q, dielectricModel } = rows;
+  const { atomCount, a, e, q, dielectricModel } = rows;
   let dispersion = 0, coulomb = 0, pair = 0;
-  for (let i = 0; i < atomCount; i++) {
+  for (let i = 0; i < atomCount; i++)
     for (let j = i + 1; j < atomCount; j++, pair++) {
       const r = Math.hypot(x[3 * i] - x[3 * j], x[3 * i + 1] - x[3 * j + 1], x[3 * i + 2] - x[3 * j + 2]);
       const distance = a[pair] / 0.07;
-      dispersion += vanDerWaals(r, distance, c[pair] / (1.07 * distance) ** 7);
+      dispersion += vanDerWaals(r, distance, e[pair] / (2 * (1.07 * distance) ** 7));
       coulomb += electrostatic(r, q[pair], dielectricModel);
     }
-    pair = (pair + 1) & ~1;
-  }
   return { vanDerWaals: dispersion, electrostatic: coulomb };
 }

@@ -1,0 +1,119 @@
+/**
+ * The Merck molecular force field MMFF94 and its static variant MMFF94s of one molecule.
+ *
+ * Source: T. A. Halgren, J. Comput. Chem. 17, 490-519, 520-552, 553-586, 587-615, 616-641 (1996); 20, 720-729, 730-748 (1999).
+ */
+import { type Coordinates, type Molecule, TordialError } from '@tordial/geometry';
+import { addNonBondedVectors } from './kernel/vector-rows.js';
+import { assignParameters, type Mmff94Parameters, type Mmff94Variant } from './parameters/assign-parameters.js';
+import { addAngleBending } from './terms/angle-bending.js';
+import { addBondStretching } from './terms/bond-stretching.js';
+import type { Dielectric } from './terms/electrostatic.js';
+import { addNonBonded, nonBondedEnergies, nonBondedRows } from './terms/non-bonded.js';
+import { addOutOfPlane } from './terms/out-of-plane.js';
+import { addStretchBend } from './terms/stretch-bend.js';
+import { addTorsions } from './terms/torsion.js';
+
+export interface Mmff94Options {
+  /** MMFF94s, the default, keeps delocalised trivalent nitrogen planar, as time-averaged structures have it. */
+  readonly variant?: Mmff94Variant;
+  /** Constant with D = 1 by default. */
+  readonly dielectric?: Dielectric;
+  /** False for the plain loop over pairs where the WebAssembly one would be taken; they agree to rounding. */
+  readonly vectors?: boolean;
+}
+
+/** The seven terms of the energy, kcal/mol; their sum is the energy. */
+export interface EnergyTerms {
+  readonly bondStretching: number;
+  readonly angleBending: number;
+  readonly stretchBend: number;
+  readonly outOfPlane: number;
+  readonly torsion: number;
+  readonly vanDerWaals: number;
+  readonly electrostatic: number;
+}
+
+/** The energy of a molecule as a function of its coordinates. It owns its tables; `evaluate` allocates nothing. */
+export interface Mmff94 {
+  readonly atomCount: number;
+  readonly variant: Mmff94Variant;
+  readonly dielectric: Dielectric;
+  readonly parameters: Mmff94Parameters;
+  /**
+   * Energy in kcal/mol of the coordinates (angstrom, 3 an atom); overwrites `gradient`, when given, with dE/dx (kcal/mol/angstrom, 3 an atom).
+   * Throws `mmff94/coordinates` for arrays of another length and for coordinates that are no finite numbers.
+   */
+  evaluate(x: Coordinates, gradient?: Float64Array): number;
+  /** The energy term by term. Throws as `evaluate`. */
+  terms(x: Coordinates): EnergyTerms;
+}
+
+/**
+ * Types the atoms, assigns charges and parameters, and returns the energy function.
+ *
+ * Throws `mmff94/atom-type` for an atom that MMFF94 does not cover, naming it and the reason, and `mmff94/dielectric` for a dielectric
+ * constant that is not a positive number.
+ */
+export function mmff94(molecule: Molecule, options: Mmff94Options = {}): Mmff94 {
+  const { variant = 'MMFF94s', dielectric = { model: 'constant', constant: 1 }, vectors = true } = options;
+  if (!(dielectric.constant > 0 && Number.isFinite(dielectric.constant)))
+    throw new TordialError('mmff94/dielectric', `the dielectric constant must be a positive number, not ${dielectric.constant}`);
+
+  const { atomCount } = molecule;
+  const parameters = assignParameters(molecule, variant);
+  const { bondStretching, angleBending, stretchBend, outOfPlane, torsion } = parameters;
+  const rows = nonBondedRows(molecule, parameters.vanDerWaals, parameters.partialCharges, dielectric);
+  const unread = new Float64Array(3 * atomCount);
+
+  function evaluate(x: Coordinates, gradient: Float64Array = unread): number {
+    checkCoordinates(x, atomCount);
+    if (gradient.length !== 3 * atomCount) throw wrongLength('gradient', gradient.length, atomCount);
+    gradient.fill(0);
+    const bonded =
+      addBondStretching(bondStretching, x, gradient) +
+      addAngleBending(angleBending, x, gradient) +
+      addStretchBend(stretchBend, x, gradient) +
+      addOutOfPlane(outOfPlane, x, gradient) +
+      addTorsions(torsion, x, gradient);
+    const nonBonded = (vectors ? addNonBondedVectors(rows, x, gradient) : undefined) ?? addNonBonded(rows, x, gradient);
+    return checkEnergy(bonded + nonBonded);
+  }
+
+  function terms(x: Coordinates): EnergyTerms {
+    checkCoordinates(x, atomCount);
+    const energies = {
+      bondStretching: addBondStretching(bondStretching, x, unread),
+      angleBending: addAngleBending(angleBending, x, unread),
+      stretchBend: addStretchBend(stretchBend, x, unread),
+      outOfPlane: addOutOfPlane(outOfPlane, x, unread),
+      torsion: addTorsions(torsion, x, unread),
+      ...nonBondedEnergies(rows, x),
+    };
+    for (const energy of Object.values(energies)) checkEnergy(energy);
+    return energies;
+  }
+
+  return { atomCount, variant, dielectric, parameters, evaluate, terms };
+}
+
+function wrongLength(what: string, length: number, atomCount: number): TordialError {
+  return new TordialError('mmff94/coordinates', `${length} ${what} values for ${atomCount} atoms; give three an atom`);
+}
+
+function checkCoordinates(x: Coordinates, atomCount: number): void {
+  if (x.length !== 3 * atomCount) throw wrongLength('coordinate', x.length, atomCount);
+  for (let n = 0; n < x.length; n++) {
+    if (Number.isFinite(x[n])) continue;
+    const atom = Math.floor(n / 3);
+    throw new TordialError('mmff94/coordinates', `the ${'xyz'[n % 3]} coordinate of atom ${atom} is ${x[n]}; give finite numbers`, {
+      atom,
+    });
+  }
+}
+
+/** Finite coordinates give a finite energy unless the atoms are so far apart that the seventh power of the distance overflows. */
+function checkEnergy(energy: number): number {
+  if (Number.isFinite(energy)) return energy;
+  throw new TordialError('mmff94/coordinates', 'the energy overflows; the atoms lie too far apart to be one system');
+}
