@@ -2,8 +2,9 @@
 import { type ErrorPlace, TordialError } from '@tordial/geometry';
 import type { BondStretchingTable } from '../terms/bond-stretching.js';
 import type { AtomTyping } from '../typing/atom-types.js';
-import { empiricalForce, empiricalLength, ruleBondOrder } from './empirical-bond.js';
+import { empiricalForce, empiricalLength } from './empirical-bond.js';
 import { key3, keyedTable, lazily } from './keyed-table.js';
+import { ruleBondOrder } from './rule-bond-order.js';
 import { EMPIRICAL, SPECIFIC } from './source.js';
 import { BONDS } from './tables.generated.js';
 
@@ -21,7 +22,7 @@ const table = lazily(() =>
 
 /** Throws `mmff94/parameter` for a bond without constants and without a rule. */
 export function assignBondStretching(typing: AtomTyping, classes: Uint8Array): BondStretchingParameters {
-  const { form, atomTypes, aromaticity } = typing;
+  const { form, atomTypes } = typing;
   const { a, b, count } = form.molecule.bonds;
   const { rows, values } = table();
   const parameters = {
@@ -44,8 +45,7 @@ export function assignBondStretching(typing: AtomTyping, classes: Uint8Array): B
       parameters.source[n] = SPECIFIC;
       continue;
     }
-    const order = ruleBondOrder(form.order[n], aromaticity.bonds[n] === 1, type_i, type_j);
-    const length = empiricalLength(order, type_i, type_j);
+    const length = empiricalLength(ruleBondOrder(typing, n), type_i, type_j);
     const force = length === undefined ? undefined : empiricalForce(form.element[a[n]], form.element[b[n]], length);
     if (length === undefined || force === undefined)
       throw noParameter(`the bond between atoms ${a[n]} and ${b[n]} (types ${type_i} and ${type_j})`, { bond: n });

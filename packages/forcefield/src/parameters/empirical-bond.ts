@@ -18,6 +18,7 @@
  */
 import { key3, keyedTable, lazily, numbers } from './keyed-table.js';
 import { periodicRow } from './periodic-row.js';
+import { AROMATIC, UNCOVERED } from './rule-bond-order.js';
 import { BOND_RULE, COVALENT_RADII, HERSCHBACH_LAURIE } from './tables.generated.js';
 import { typeProperties } from './type-properties.js';
 
@@ -28,14 +29,13 @@ const C_HYDROGEN = 0.05;
 const C_FIRST_ROW = 0.085;
 const C_BEYOND = 0.08;
 
-/** Orders beyond single, double and triple: an aromatic bond that the rule has no correction for, partial double bonds and aromatic ones. */
-const UNCORRECTED = 0;
+/** Orders of partial double bonds, aromatic ones among them, beside single, double and triple. */
 const STRONG_PARTIAL = 4;
 const WEAK_PARTIAL = 5;
 
 /** How much each radius shrinks, angstrom, by bond order. */
 const SHRINK_BY_ORDER: Readonly<Record<number, number>> = {
-  [UNCORRECTED]: 0,
+  [UNCOVERED]: 0,
   2: 0.1,
   3: 0.17,
   [STRONG_PARTIAL]: 0.075,
@@ -58,20 +58,18 @@ const covalent = lazily(() => {
 const references = lazily(() => keyedTable(BOND_RULE, 2, 2, (data, at) => [key3(0, 0, data[at], data[at + 1])]));
 const herschbachLaurie = lazily(() => keyedTable(HERSCHBACH_LAURIE, 2, 3, (data, at) => [key3(0, 0, data[at], data[at + 1])]));
 
-/** Bond order for the rule from the written order and the two types; `aromatic` where the bond belongs to an aromatic ring. */
-export function ruleBondOrder(order: number, aromatic: boolean, type_i: number, type_j: number): number {
-  const { mltb, pilp, arom } = typeProperties();
-  // an aromatic bond of an atom without an aromatic type (oxygen in pyrylium) is neither single nor double; the rule has no correction for it
-  if (aromatic && !(arom[type_i] && arom[type_j])) return UNCORRECTED;
-  if (aromatic) return pilp[type_i] || pilp[type_j] ? WEAK_PARTIAL : STRONG_PARTIAL;
+/** The order that decides how much the radii shrink: partial double bonds by the types' pi electrons. */
+function lengthOrder(order: number, type_i: number, type_j: number): number {
+  const { mltb, pilp } = typeProperties();
+  if (order === AROMATIC) return pilp[type_i] || pilp[type_j] ? WEAK_PARTIAL : STRONG_PARTIAL;
   if (order !== 1) return order;
   if (mltb[type_i] === 1 && mltb[type_j] === 1) return STRONG_PARTIAL;
-  if (mltb[type_i] + mltb[type_j] === 3 && mltb[type_i] > 0 && mltb[type_j] > 0) return WEAK_PARTIAL;
+  if (mltb[type_i] * mltb[type_j] === 2) return WEAK_PARTIAL;
   return 1;
 }
 
-/** Reference length (angstrom) of a bond of this rule order between atoms of these types; undefined for elements without a radius. */
-export function empiricalLength(order: number, type_i: number, type_j: number): number | undefined {
+/** Reference length (angstrom) of a bond of this order (`ruleBondOrder`) between atoms of these types; undefined for elements without a radius. */
+export function empiricalLength(bondOrder: number, type_i: number, type_j: number): number | undefined {
   const { atomicNumber, mltb } = typeProperties();
   const { radius, electronegativity } = covalent();
   const element_i = atomicNumber[type_i];
@@ -79,6 +77,7 @@ export function empiricalLength(order: number, type_i: number, type_j: number): 
   let r_i = radius[element_i];
   let r_j = radius[element_j];
   if (r_i === 0 || r_j === 0) return undefined;
+  const order = lengthOrder(bondOrder, type_i, type_j);
   const hydrogen = element_i === HYDROGEN || element_j === HYDROGEN;
   if (order !== 1) {
     r_i -= SHRINK_BY_ORDER[order];

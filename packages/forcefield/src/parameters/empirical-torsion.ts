@@ -5,10 +5,11 @@
  *   V3 = (V_j V_k)^1/2 / N_jk              between saturated atoms; N_jk is the number of torsions about the axis
  *   V2 = -(W_j W_k)^1/2                    between two divalent atoms of group 16
  *
- * Source: T. A. Halgren, J. Comput. Chem. 17, 616 (1996), rules (a) to (h) and the table of U, V, W. V of sulphur is printed as 0.49 in
- * some copies; the validation suite was computed with 0.48.
+ * Source: T. A. Halgren, J. Comput. Chem. 17, 616 (1996), rules (a) to (h) and the table of U, V, W. V of sulphur is 0.48:
+ * the rows of MMFFTOR made by rule and the molecules ERULE_01, 02 and 04 of the validation suite tell it from 0.49.
  */
 import { periodicRow } from './periodic-row.js';
+import { AROMATIC } from './rule-bond-order.js';
 import { typeProperties } from './type-properties.js';
 
 const U: Readonly<Record<number, number>> = { 6: 2, 7: 2, 8: 2, 14: 1.25, 15: 1.25, 16: 1.25 };
@@ -25,11 +26,11 @@ export interface TorsionConstants {
 const NONE: TorsionConstants = { v1: 0, v2: 0, v3: 0 };
 
 /**
- * Constants (kcal/mol) for torsions about an axis between atoms of types j and k with the written bond order; `aromatic` where the axis
- * belongs to an aromatic ring. Undefined where the rule has no number for an element.
+ * Constants (kcal/mol) for torsions about an axis between atoms of types j and k with this bond order (`ruleBondOrder`). Undefined where the
+ * rule has no number for an element.
  */
-export function empiricalTorsion(j: number, k: number, order: number, aromatic: boolean): TorsionConstants | undefined {
-  const { atomicNumber, crd, val, pilp, mltb, arom, lin } = typeProperties();
+export function empiricalTorsion(j: number, k: number, order: number): TorsionConstants | undefined {
+  const { atomicNumber, crd, val, pilp, mltb, lin } = typeProperties();
   const element_j = atomicNumber[j];
   const element_k = atomicNumber[k];
 
@@ -45,14 +46,11 @@ export function empiricalTorsion(j: number, k: number, order: number, aromatic: 
   // (a) a linear atom
   if (lin[j] || lin[k]) return NONE;
 
-  // (b) an aromatic bond
-  if (aromatic && arom[j] && arom[k]) {
-    const mixed = (val[j] === 3 && val[k] === 4) || (val[j] === 4 && val[k] === 3);
-    return twofold(mixed ? 3 : 6, pilp[j] || pilp[k] ? 0.3 : 0.5);
-  }
+  // (b) an aromatic bond; the rows of MMFFTOR made by this rule have beta = 6 for nitrogen next to carbon too, where the text has 3
+  if (order === AROMATIC) return twofold(6, pilp[j] || pilp[k] ? 0.3 : 0.5);
 
-  // (c) a double bond; in an aromatic ring a bond that (b) does not cover (oxygen in pyrylium) is neither double nor single, and (h) holds
-  if (order === 2 && !aromatic) return twofold(6, mltb[j] === 2 && mltb[k] === 2 ? 1 : 0.4);
+  // (c) a double bond
+  if (order === 2) return twofold(6, mltb[j] === 2 && mltb[k] === 2 ? 1 : 0.4);
 
   // (d) two tetracoordinate atoms
   if (crd[j] === 4 && crd[k] === 4) return threefold();
@@ -66,7 +64,7 @@ export function empiricalTorsion(j: number, k: number, order: number, aromatic: 
   }
 
   // (g) a single bond between atoms with pi electrons
-  if (order === 1 && !aromatic && ((mltb[j] > 0 && mltb[k] > 0) || (mltb[j] > 0 && pilp[k]) || (pilp[j] && mltb[k] > 0))) {
+  if (order === 1 && ((mltb[j] > 0 && mltb[k] > 0) || (mltb[j] > 0 && pilp[k]) || (pilp[j] && mltb[k] > 0))) {
     if (pilp[j] && pilp[k]) return NONE;
     if (pilp[j] || pilp[k]) {
       const donor = pilp[j] ? j : k;

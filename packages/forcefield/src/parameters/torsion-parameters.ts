@@ -12,6 +12,7 @@ import { noParameter } from './bond-stretching-parameters.js';
 import { empiricalTorsion } from './empirical-torsion.js';
 import { torsionClass } from './interaction-classes.js';
 import { type KeyedTable, key4, keyedTable, lazily } from './keyed-table.js';
+import { ruleBondOrder } from './rule-bond-order.js';
 import { EMPIRICAL, SPECIFIC, WILDCARD } from './source.js';
 import { TORSIONS, TORSIONS_STATIC } from './tables.generated.js';
 import { levelThree, typeProperties } from './type-properties.js';
@@ -40,7 +41,7 @@ interface Found {
 
 /** Throws `mmff94/parameter` for a torsion without constants and without a rule. */
 export function assignTorsions(typing: AtomTyping, bondClasses: Uint8Array, variant: Mmff94Variant): TorsionParameters {
-  const { form, atomTypes, aromaticity } = typing;
+  const { form, atomTypes } = typing;
   const { neighbours, bonds } = form.molecule;
   const { lin } = typeProperties();
   const equivalent = levelThree();
@@ -92,7 +93,7 @@ export function assignTorsions(typing: AtomTyping, bondClasses: Uint8Array, vari
         parameters.v3[n] = found.values[3 * found.row + 2];
         parameters.source[n] = found.source;
       } else {
-        const rule = empiricalTorsion(type_j, type_k, form.order[axis], aromaticity.bonds[axis] === 1);
+        const rule = empiricalTorsion(type_j, type_k, ruleBondOrder(typing, axis));
         if (rule === undefined) throw noParameter(`torsions about atoms ${j} and ${k} (types ${type_j} and ${type_k})`, { bond: axis });
         parameters.v1[n] = rule.v1;
         parameters.v2[n] = rule.v2;
