@@ -21,6 +21,7 @@ export * from './isometries.js';
 export * from './network.js';
 export * from './nitrogen-pyramids.js';
 export * from './oki.js';
+export * from './point-group.js';
 export * from './populations.js';
 export * from './processes.js';
 export * from './profile-checks.js';
