@@ -1,5 +1,6 @@
 /** One SMILES for one structure, whatever the order of its atoms and the way its alternating bonds are written. */
 import { makeDefinite, makeDiscrete } from './colouring.js';
+import { cumulatedChains } from './cumulenes.js';
 import { doubleBondMatching, doubleCanBeSingle, singleCanBeDouble } from './delocalised-bonds.js';
 import { elementSymbol } from './elements.js';
 import { fragmentsOf } from './fragments.js';
@@ -263,7 +264,7 @@ function chiralityMark(
     const four = own.length === 4 ? own : parent[a] >= 0 ? [own[0], LONE_PAIR, ...own.slice(1)] : [LONE_PAIR, ...own];
     return [a, element.sign * permutationSign(element.ligands, four) > 0 ? '@' : '@@'];
   }
-  const chain = cumulatedChain(molecule, a, b);
+  const chain = cumulatedChains(molecule).find((atoms) => atoms[0] === a && atoms[atoms.length - 1] === b) ?? [a, b];
   const middle = chain[(chain.length - 1) / 2];
   if (parent[middle] === -2) return [middle, ''];
   // the ends in the order in which the middle atom names its two neighbours
@@ -271,22 +272,6 @@ function chiralityMark(
   const ends = inner[0] === chain[(chain.length - 3) / 2] ? [chain, chain.slice().reverse()] : [chain.slice().reverse(), chain];
   const four = ends.flatMap((path) => ligands(path[0]).filter((j) => j !== path[1]));
   return [middle, element.sign * permutationSign(element.ligands, four) > 0 ? '@' : '@@'];
-}
-
-/** Atoms of the double-bond chain from a to b. */
-function cumulatedChain(molecule: Molecule, a: number, b: number): number[] {
-  const { neighbours, bonds } = molecule;
-  const chain = [a];
-  for (let before = -1, at = a; at !== b; ) {
-    let next = -1;
-    for (let n = neighbours.start[at]; n < neighbours.start[at + 1]; n++)
-      if (bonds.order[neighbours.bond[n]] === 2 && neighbours.atom[n] !== before) next = neighbours.atom[n];
-    if (next < 0) break;
-    before = at;
-    at = next;
-    chain.push(at);
-  }
-  return chain;
 }
 
 /** +1 when two orders of the same ligands differ by an even permutation. An axis' ligands may also exchange their ends, which is even. */

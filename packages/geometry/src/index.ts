@@ -11,6 +11,7 @@ export * from './molecule.js';
 export { type MolecularRecord, readMolfile } from './molfile.js';
 export * from './molfile-writer.js';
 export * from './random.js';
+export * from './records.js';
 export * from './smiles.js';
 export { completeStereo, openStereo } from './stereo.js';
 export { perceiveStereo } from './stereo-perception.js';

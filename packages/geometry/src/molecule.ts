@@ -32,7 +32,7 @@ export interface TetrahedralCentre {
   readonly sign: -1 | 0 | 1;
 }
 
-/** A double bond a=b with one reference substituent at each end (the lowest index); `cis` is null where the input leaves it open. */
+/** A double bond a=b (or the ends of three, five ... cumulated ones) with one reference substituent at each end (the lowest index); `cis` is null where the input leaves it open. */
 export interface DoubleBondStereo {
   readonly a: number;
   readonly b: number;

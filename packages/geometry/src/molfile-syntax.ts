@@ -4,7 +4,7 @@
  * Source: CTfile Formats, BIOVIA (2020): header block, counts line, atom, bond and property blocks; extended connection table.
  * Query atoms and bonds, R groups, atom lists and radicals are refused: they are no single structure.
  */
-import { atomicMass, atomicNumberOf } from './elements.js';
+import { atomicMass, atomicNumberOf, elementSymbol } from './elements.js';
 import { TordialError } from './errors.js';
 import { checkLimit, type Limits } from './limits.js';
 import { normalValences } from './valence.js';
@@ -49,24 +49,24 @@ type Fail = (line: number, what: string, code?: string) => never;
 const LAST_LINE = 4;
 
 /**
- * Reads the connection table at the start of `lines`. Throws `molfile/syntax` (with `line`, counted from 1), `molfile/unsupported`,
+ * Reads the connection table at the start of `lines`. Throws `molfile/syntax` (with `line`, counted from `firstLine`), `molfile/unsupported`,
  * `molecule/radical`, `limit/atoms`.
  */
-export function parseMolfile(lines: readonly string[], limits: Limits): WrittenMolfile {
+export function parseMolfile(lines: readonly string[], limits: Limits, firstLine = 1): WrittenMolfile {
   const fail: Fail = (line, what, code = 'molfile/syntax') => {
-    throw new TordialError(code, `molfile, line ${line + 1}: ${what}`, { line: line + 1 });
+    throw new TordialError(code, `molfile, line ${line + firstLine}: ${what}`, { line: line + firstLine });
   };
   if (lines.length < LAST_LINE) fail(Math.max(0, lines.length - 1), 'the file ends before the counts line, the fourth');
   const counts = lines[3];
   const version = /V(\d{4})\s*$/i.exec(counts)?.[1] ?? (counts.length > 33 ? counts.slice(33).trim() : '');
   const code = lines[1].slice(20, 22).toUpperCase();
   const header = { name: lines[0].trim(), dimension: code === '2D' || code === '3D' ? code : '' } as const;
-  if (version === '3000') return { ...header, ...extendedTable(lines, limits, fail) };
+  if (version === '3000') return { ...header, ...extendedTable(lines, limits, firstLine, fail) };
   if (version !== '2000' && version !== '') fail(3, `the version '${version}' is not known; V2000 and V3000 are`, 'molfile/unsupported');
-  return { ...header, ...plainTable(lines, limits, fail) };
+  return { ...header, ...plainTable(lines, limits, firstLine, fail) };
 }
 
-function plainTable(lines: readonly string[], limits: Limits, fail: Fail): Omit<WrittenMolfile, 'name' | 'dimension'> {
+function plainTable(lines: readonly string[], limits: Limits, firstLine: number, fail: Fail): Omit<WrittenMolfile, 'name' | 'dimension'> {
   const counts = /^([ \d]{2}\d)([ \d]{2}\d)(?: |\d|$)/.exec(lines[3]);
   if (!counts) fail(3, 'the counts line must begin with the numbers of atoms and bonds, three columns each');
   const atomCount = Number(counts[1]);
@@ -90,7 +90,7 @@ function plainTable(lines: readonly string[], limits: Limits, fail: Fail): Omit<
   }
   checkDuplicates(bonds, bondStart, fail);
   const lineCount = properties(lines, end, drafts, fail);
-  return { atoms: finish(drafts, bonds, fail), bonds, lineCount };
+  return { atoms: finish(drafts, bonds, firstLine, fail), bonds, lineCount };
 }
 
 const PLAIN_CHARGES = [0, 3, 2, 1, 0, -1, -2, -3];
@@ -182,7 +182,12 @@ function extendedRows(lines: readonly string[], fail: Fail): { rows: { text: str
   return fail(lines.length - 1, "the line 'M  END' is missing; the file may have been cut short");
 }
 
-function extendedTable(lines: readonly string[], limits: Limits, fail: Fail): Omit<WrittenMolfile, 'name' | 'dimension'> {
+function extendedTable(
+  lines: readonly string[],
+  limits: Limits,
+  firstLine: number,
+  fail: Fail,
+): Omit<WrittenMolfile, 'name' | 'dimension'> {
   const { rows, lineCount } = extendedRows(lines, fail);
   const drafts: AtomDraft[] = [];
   const bonds: MolfileBond[] = [];
@@ -230,7 +235,7 @@ function extendedTable(lines: readonly string[], limits: Limits, fail: Fail): Om
   if (announced[0] !== drafts.length || announced[1] !== bonds.length)
     fail(lineCount - 1, `${announced[0]} atoms and ${announced[1]} bonds are announced, ${drafts.length} and ${bonds.length} are there`);
   checkDuplicates(bonds, bondLine, fail);
-  return { atoms: finish(drafts, bonds, fail), bonds, lineCount };
+  return { atoms: finish(drafts, bonds, firstLine, fail), bonds, lineCount };
 }
 
 function extendedAttribute(draft: AtomDraft, field: string, line: number, fail: Fail): void {
@@ -272,7 +277,7 @@ function checkedBond(
   fail: Fail,
 ): MolfileBond {
   if (a < 0 || b < 0 || a >= atomCount || b >= atomCount || a === b)
-    fail(line, `a bond cannot join the atoms ${a + 1} and ${b + 1} of ${atomCount}`);
+    fail(line, `a bond cannot join the file's atoms ${a + 1} and ${b + 1} of ${atomCount}`);
   if (type < 1 || type > 4) fail(line, `the bond type ${type} is a query or coordination bond, no single structure`, 'molfile/unsupported');
   return { a, b, order: type === 4 ? AROMATIC_ORDER : type, wedge };
 }
@@ -281,12 +286,12 @@ function checkDuplicates(bonds: readonly MolfileBond[], firstLine: number, fail:
   const seen = new Set<string>();
   bonds.forEach(({ a, b }, n) => {
     const key = a < b ? `${a} ${b}` : `${b} ${a}`;
-    if (seen.has(key)) fail(firstLine + n, `the atoms ${a + 1} and ${b + 1} are bonded twice`);
+    if (seen.has(key)) fail(firstLine + n, `the file's atoms ${a + 1} and ${b + 1} are bonded twice`);
     seen.add(key);
   });
 }
 
-function finish(drafts: readonly AtomDraft[], bonds: readonly MolfileBond[], fail: Fail): MolfileAtom[] {
+function finish(drafts: readonly AtomDraft[], bonds: readonly MolfileBond[], firstLine: number, fail: Fail): MolfileAtom[] {
   const valence = new Int32Array(drafts.length);
   const aromatic = new Uint8Array(drafts.length);
   for (const { a, b, order } of bonds)
@@ -296,11 +301,13 @@ function finish(drafts: readonly AtomDraft[], bonds: readonly MolfileBond[], fai
     }
   return drafts.map((draft, i) => {
     const { atomicNumber, isotope, charge, x, y, z, line } = draft;
-    const label = `atom ${i} (line ${line + 1})`;
-    if (draft.radical !== 0 && normalValences(atomicNumber, charge)) fail(line, `${label} is marked as a radical; only closed-shell structures can be scanned`, 'molecule/radical');
+    const label = `atom ${i} (${elementSymbol(atomicNumber)}, line ${line + firstLine})`;
+    if (draft.radical !== 0 && normalValences(atomicNumber, charge))
+      fail(line, `${label} is marked as a radical; only closed-shell structures can be scanned`, 'molecule/radical');
     if (![x, y, z].every((value) => Math.abs(value) < 1e5)) fail(line, 'a coordinate is out of range');
     const stated = draft.valence === 0 || aromatic[i] === 1 ? -1 : draft.valence < 0 ? 0 : draft.valence - valence[i];
-    if (draft.valence !== 0 && aromatic[i] === 0 && stated < 0) fail(line, `the stated valence ${Math.max(0, draft.valence)} is less than the atom's bonds`);
+    if (draft.valence !== 0 && aromatic[i] === 0 && stated < 0)
+      fail(line, `the stated valence ${Math.max(0, draft.valence)} is less than the atom's bonds`);
     return { atomicNumber, isotope, charge, aromatic: aromatic[i] === 1, hydrogens: stated, label, x, y, z };
   });
 }

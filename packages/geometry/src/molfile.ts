@@ -31,12 +31,12 @@ export interface MolecularRecord {
 export function readMolfile(text: string, limits?: Partial<Limits>): MolecularRecord {
   const bounds = withDefaults(limits);
   checkLimit('recordLength', text.length, bounds);
-  return readRecord(text.split(/\r\n|\n|\r/), bounds);
+  return readRecord(text.replace(/^\uFEFF/, '').split(/\r\n|\n|\r/), bounds);
 }
 
 /** Reads the lines of one record; `place` is handed on. */
 export function readRecord(lines: readonly string[], limits: Limits, place: ErrorPlace = {}): MolecularRecord {
-  const written = parseMolfile(lines, limits);
+  const written = parseMolfile(lines, limits, place.line);
   const { parts } = assemble(written.atoms, written.bonds, limits);
   const molecule = createMolecule({ ...parts, name: written.name });
   const properties = dataFields(lines.slice(written.lineCount));

@@ -1,5 +1,6 @@
 /** Molecules from SMILES. */
 import { type Assembled, assemble } from './assemble.js';
+import { cumulatedChains } from './cumulenes.js';
 import { TordialError } from './errors.js';
 import { checkLimit, type Limits, withDefaults } from './limits.js';
 import {
@@ -32,21 +33,24 @@ export function moleculeFromSmiles(smiles: string, limits?: Partial<Limits>): Mo
     });
   const written = parseSmiles(line, bounds);
   const assembled = assemble(written.atoms, written.bonds, bounds);
-  const molecule = createMolecule({ ...assembled.parts, stereo: statedStereo(written, assembled), name });
-  return { ...molecule, stereo: completeStereo(molecule) };
+  const molecule = createMolecule({ ...assembled.parts, name });
+  const stated = { ...molecule, stereo: statedStereo(molecule, written, assembled) };
+  return { ...stated, stereo: completeStereo(stated) };
 }
 
 /** What the line says about configuration, whether it makes sense or not. */
-function statedStereo(written: WrittenSmiles, assembled: Assembled): StereoTable {
+function statedStereo(molecule: Molecule, written: WrittenSmiles, assembled: Assembled): StereoTable {
   const ligands = ligandOrder(written, assembled);
+  const chains = cumulatedChains(molecule);
   const tetrahedral: TetrahedralCentre[] = [];
   const axes: AxialStereo[] = [];
   written.atoms.forEach(({ chirality }, atom) => {
     if (chirality === '') return;
     const own = ligands[atom];
     const sign = chirality === '@' ? 1 : -1;
-    if (own.length === 2) {
-      const axis = statedAxis(written, ligands, atom, sign);
+    const chain = chains.find((atoms) => atoms.length % 2 === 1 && atoms[(atoms.length - 1) / 2] === atom);
+    if (chain) {
+      const axis = statedAxis(chain, ligands, sign);
       if (axis) axes.push(axis);
     } else if (own.length === 3 || own.length === 4) {
       // a lone pair is seen, like a hydrogen, right after the atom one comes from
@@ -55,7 +59,7 @@ function statedStereo(written: WrittenSmiles, assembled: Assembled): StereoTable
       tetrahedral.push({ atom, neighbours, sign: permutationSign(four, neighbours) === sign ? 1 : -1 });
     }
   });
-  return { tetrahedral, axes, doubleBonds: statedDoubleBonds(written, assembled, ligands) };
+  return { tetrahedral, axes, doubleBonds: statedDoubleBonds(chains, written, assembled, ligands) };
 }
 
 const comesFromNowhere = ({ atoms }: WrittenSmiles, atom: number): boolean =>
@@ -76,33 +80,27 @@ function ligandOrder({ atoms }: WrittenSmiles, { firstHydrogen, addedHydrogens }
 }
 
 /** `@` on the middle atom of cumulated bonds: the four end ligands in the order of the line, seen like those of a tetrahedron. */
-function statedAxis(written: WrittenSmiles, ligands: readonly number[][], middle: number, sign: 1 | -1): AxialStereo | null {
-  const order = (i: number, j: number) => written.bonds.find(({ a, b }) => (a === i && b === j) || (a === j && b === i))?.order ?? 1;
-  const walk = (start: number) => {
-    let [before, at] = [middle, start];
-    for (let steps = 0; steps < written.atoms.length; steps++) {
-      const next = ligands[at].filter((j) => j !== before && j < written.atoms.length && order(at, j) === 2);
-      if (ligands[at].length !== 2 || next.length !== 1) break;
-      [before, at] = [at, next[0]];
-    }
-    return { end: at, inner: before };
-  };
-  if (ligands[middle].some((j) => j >= written.atoms.length || order(middle, j) !== 2)) return null;
-  const ends = ligands[middle].map(walk);
-  const four = ends.flatMap(({ end, inner }) => ligands[end].filter((j) => j !== inner));
-  if (four.length !== 4 || ends[0].end === ends[1].end) return null;
-  let [a, b] = ends.map(({ end }) => end);
-  let [p, q, r, s] = four;
-  let sense: 1 | -1 = sign;
-  if (p > q) sense = -sense as 1 | -1;
-  if (r > s) sense = -sense as 1 | -1;
-  [p, r] = [Math.min(p, q), Math.min(r, s)];
-  if (a > b) [a, b, p, r] = [b, a, r, p];
-  return { a, b, substituentA: p, substituentB: r, sign: sense };
+function statedAxis(chain: readonly number[], ligands: readonly number[][], sign: 1 | -1): AxialStereo | null {
+  const middle = (chain.length - 1) / 2;
+  const forward = ligands[chain[middle]][0] === chain[middle - 1];
+  const path = forward ? chain : chain.slice().reverse();
+  const [first, last] = [path[0], path[path.length - 1]];
+  const atFirst = ligands[first].filter((j) => j !== path[1]);
+  const atLast = ligands[last].filter((j) => j !== path[path.length - 2]);
+  if (atFirst.length !== 2 || atLast.length !== 2) return null;
+  const exchanged = atFirst[0] > atFirst[1] !== atLast[0] > atLast[1];
+  const [low, high] = [Math.min(...atFirst), Math.min(...atLast)];
+  const [substituentA, substituentB] = first < last ? [low, high] : [high, low];
+  return { a: Math.min(first, last), b: Math.max(first, last), substituentA, substituentB, sign: exchanged ? (-sign as 1 | -1) : sign };
 }
 
-/** Reads the slashes next to each double bond. Throws `smiles/stereo` where two at one end contradict each other. */
-function statedDoubleBonds(written: WrittenSmiles, assembled: Assembled, ligands: readonly number[][]): DoubleBondStereo[] {
+/** Reads the slashes next to each double bond and each odd chain of them. Throws `smiles/stereo` where two at one end contradict each other. */
+function statedDoubleBonds(
+  chains: readonly number[][],
+  written: WrittenSmiles,
+  assembled: Assembled,
+  ligands: readonly number[][],
+): DoubleBondStereo[] {
   const sides = written.atoms.map(() => new Map<number, number>());
   for (const { a, b, direction } of written.bonds) {
     if (direction === 0) continue;
@@ -110,11 +108,15 @@ function statedDoubleBonds(written: WrittenSmiles, assembled: Assembled, ligands
     sides[b].set(a, -direction);
   }
   const stated: DoubleBondStereo[] = [];
-  for (const [p, q, order] of assembled.parts.bonds) {
-    if (order !== 2 || sides[p].size === 0 || sides[q].size === 0) continue;
-    const [a, b] = [Math.min(p, q), Math.max(p, q)];
-    const endA = reference(a, b);
-    const endB = reference(b, a);
+  const units = [
+    ...assembled.parts.bonds.filter(([, , order]) => order === 2).map(([p, q]) => (p < q ? [p, q] : [q, p])),
+    ...chains.filter((chain) => chain.length % 2 === 0),
+  ];
+  for (const unit of units) {
+    const [a, b] = [unit[0], unit[unit.length - 1]];
+    if (sides[a].size === 0 || sides[b].size === 0) continue;
+    const endA = reference(a, unit[1]);
+    const endB = reference(b, unit[unit.length - 2]);
     if (endA && endB) stated.push({ a, b, substituentA: endA.ligand, substituentB: endB.ligand, cis: endA.side === endB.side });
   }
   return stated;

@@ -7,6 +7,7 @@
  */
 
 import { makeDefinite, refine } from './colouring.js';
+import { cumulatedChains } from './cumulenes.js';
 import { doubleBondMatching, doubleCanBeSingle } from './delocalised-bonds.js';
 import { elementSymbol } from './elements.js';
 import type { Note } from './errors.js';
@@ -82,7 +83,7 @@ export function openStereo(molecule: Molecule): Note[] {
 function stereoCandidates(molecule: Molecule): StereoElement[] {
   const { atomCount, atomicNumbers, bonds } = molecule;
   const signs = new Map(molecule.stereo.tetrahedral.map((centre) => [centre.atom, centre.sign]));
-  const cis = new Map(molecule.stereo.doubleBonds.map(({ a, b, cis }) => [`${a} ${b}`, cis === null ? 0 : cis ? 1 : -1]));
+  const cis = new Map<string, Sign>(molecule.stereo.doubleBonds.map(({ a, b, cis }) => [`${a} ${b}`, cis === null ? 0 : cis ? 1 : -1]));
   const axes = new Map(molecule.stereo.axes.map(({ a, b, sign }) => [`${a} ${b}`, sign]));
   const elements: StereoElement[] = [];
   for (let i = 0; i < atomCount; i++) {
@@ -98,22 +99,19 @@ function stereoCandidates(molecule: Molecule): StereoElement[] {
     const [a, b] = [bonds.a[n], bonds.b[n]];
     const ends = [endLigands(molecule, a, b), endLigands(molecule, b, a)];
     if (!ends[0] || !ends[1]) continue;
-    const sign = (cis.get(`${a} ${b}`) ?? 0) as Sign;
+    const sign = cis.get(`${a} ${b}`) ?? 0;
     const imineHydrogen = ends.some((end) => end?.[1] === LONE_PAIR && atomicNumbers[end[0]] === 1);
     if (smallestRing(molecule, a, b) < SMALLEST_RING_WITH_TRANS) continue;
     if (sign === 0 && canAlternate(molecule, a, b)) continue;
     elements.push({ kind: 'doubleBond', atoms: [a, b], ligands: [...ends[0], ...ends[1]], sign, onlyIfStated: imineHydrogen });
   }
-  for (const { a, beforeA, b, beforeB } of evenCumulenes(molecule)) {
-    const ends = [endLigands(molecule, a, beforeA), endLigands(molecule, b, beforeB)];
-    if (ends[0] && ends[1])
-      elements.push({
-        kind: 'axis',
-        atoms: [a, b],
-        ligands: [...ends[0], ...ends[1]],
-        sign: axes.get(`${a} ${b}`) ?? 0,
-        onlyIfStated: false,
-      });
+  for (const chain of cumulatedChains(molecule)) {
+    const [a, b] = [chain[0], chain[chain.length - 1]];
+    const ends = [endLigands(molecule, a, chain[1]), endLigands(molecule, b, chain[chain.length - 2])];
+    if (!ends[0] || !ends[1]) continue;
+    const isAxis = chain.length % 2 === 1;
+    const sign = (isAxis ? axes.get(`${a} ${b}`) : cis.get(`${a} ${b}`)) ?? 0;
+    elements.push({ kind: isAxis ? 'axis' : 'doubleBond', atoms: [a, b], ligands: [...ends[0], ...ends[1]], sign, onlyIfStated: false });
   }
   return elements;
 }
@@ -183,31 +181,6 @@ function smallestRing({ rings }: Molecule, a: number, b: number): number {
 function canAlternate(molecule: Molecule, a: number, b: number): boolean {
   if (smallestRing(molecule, a, b) === Number.POSITIVE_INFINITY) return false;
   return doubleCanBeSingle(doubleBondMatching(molecule), a, b);
-}
-
-/** Chains of two, four, ... cumulated double bonds, from end to end with the atom before each end; a below b. */
-function evenCumulenes({ atomCount, neighbours, bonds }: Molecule): { a: number; beforeA: number; b: number; beforeB: number }[] {
-  const doubles = (i: number) => {
-    const partners: number[] = [];
-    for (let n = neighbours.start[i]; n < neighbours.start[i + 1]; n++)
-      if (bonds.order[neighbours.bond[n]] === 2) partners.push(neighbours.atom[n]);
-    return partners;
-  };
-  const degree = (i: number) => neighbours.start[i + 1] - neighbours.start[i];
-  const found: { a: number; beforeA: number; b: number; beforeB: number }[] = [];
-  for (let a = 0; a < atomCount; a++) {
-    const first = doubles(a);
-    if (first.length !== 1) continue;
-    let before = a;
-    let at = first[0];
-    let length = 1;
-    for (let next = doubles(at); next.length === 2 && degree(at) === 2 && length < atomCount; next = doubles(at)) {
-      [before, at] = [at, next[0] === before ? next[1] : next[0]];
-      length++;
-    }
-    if (length % 2 === 0 && a < at && doubles(at).length === 1) found.push({ a, beforeA: first[0], b: at, beforeB: before });
-  }
-  return found;
 }
 
 /** Whether the ligands of an element differ in the given colouring. Oxo, hydroxy and oxide on P, S and As exchange protons and count as one. */

@@ -58,7 +58,7 @@ export function drawnStereo(possible: StereoTable, { atoms, bonds }: WrittenMolf
         const rest = ligands.filter((j) => isDrawn(j) && j !== other);
         return rest.length === 1 ? -across(rest[0]) : 0;
       };
-      const around = (i: number) => bonds.flatMap(({ a, b }) => (a === i ? [b] : b === i ? [a] : []));
+      const around = (i: number) => bonds.flatMap(({ a, b, order }) => (order !== 1 ? [] : a === i ? [b] : b === i ? [a] : []));
       const product = side(bond.a, bond.b, bond.substituentA, around(bond.a)) * side(bond.b, bond.a, bond.substituentB, around(bond.b));
       // seen from the other end the sides of the axis are exchanged
       return { ...bond, cis: Math.abs(product) < 0.05 ? null : product < 0 };
