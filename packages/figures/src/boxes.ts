@@ -11,25 +11,21 @@ export function boxesOverlap(p: Box, q: Box, margin = 0): boolean {
   return p.left < q.right + margin && q.left < p.right + margin && p.top < q.bottom + margin && q.top < p.bottom + margin;
 }
 
-/** Whether the segment (x0, y0)-(x1, y1) comes closer than `margin` to the box (measured along the axes); Liang and Barsky's clipping (1984). */
+/** Whether the segment (x0, y0)-(x1, y1) comes closer than `margin` to the box, measured along the axes. */
 export function segmentMeetsBox(x0: number, y0: number, x1: number, y1: number, box: Box, margin = 0): boolean {
+  const left = box.left - margin;
+  const right = box.right + margin;
+  const top = box.top - margin;
+  const bottom = box.bottom + margin;
+  if (Math.max(x0, x1) < left || Math.min(x0, x1) > right || Math.max(y0, y1) < top || Math.min(y0, y1) > bottom) return false;
+  // the segment's extent meets the box: so does the segment unless all four corners lie on one side of its line
   const dx = x1 - x0;
   const dy = y1 - y0;
-  let enter = 0;
-  let leave = 1;
-  const sides = [
-    [-dx, x0 - box.left + margin],
-    [dx, box.right + margin - x0],
-    [-dy, y0 - box.top + margin],
-    [dy, box.bottom + margin - y0],
-  ];
-  for (const [step, room] of sides) {
-    if (step === 0) {
-      if (room < 0) return false;
-    } else if (step < 0) enter = Math.max(enter, room / step);
-    else leave = Math.min(leave, room / step);
-  }
-  return enter <= leave;
+  const a = dx * (top - y0) - dy * (left - x0);
+  const b = dx * (top - y0) - dy * (right - x0);
+  const c = dx * (bottom - y0) - dy * (left - x0);
+  const d = dx * (bottom - y0) - dy * (right - x0);
+  return !((a > 0 && b > 0 && c > 0 && d > 0) || (a < 0 && b < 0 && c < 0 && d < 0));
 }
 
 /** The smallest box around all given ones. Throws nothing; an empty list gives a box without extent at the origin. */

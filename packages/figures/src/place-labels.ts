@@ -82,14 +82,13 @@ export function placeLabels(requests: readonly LabelRequest[], obstacles: Obstac
 
 function inConflict(p: PlacedLabel, q: PlacedLabel): boolean {
   return (
-    boxesOverlap(p.box, q.box, MARGIN) ||
-    (p.tie !== undefined && segmentMeetsBox(...p.tie, q.box, 1)) ||
-    (q.tie !== undefined && segmentMeetsBox(...q.tie, p.box, 1))
+    boxesOverlap(p.box, q.box, MARGIN) || (p.tie !== undefined && meets(p.tie, q.box, 1)) || (q.tie !== undefined && meets(q.tie, p.box, 1))
   );
 }
 
 /** All places that touch no obstacle, the best first. */
-function freePlaces(request: LabelRequest, others: readonly LabelRequest[], obstacles: Obstacles, frame: Box): Candidate[] {
+function freePlaces(request: LabelRequest, others: readonly LabelRequest[], everything: Obstacles, frame: Box): Candidate[] {
+  const obstacles = withinReach(request, everything);
   const places: Candidate[] = [];
   for (const distance of DISTANCES)
     for (const [turn, cost] of DIRECTIONS) {
@@ -102,7 +101,7 @@ function freePlaces(request: LabelRequest, others: readonly LabelRequest[], obst
       )
         continue;
       if (obstacles.boxes.some((other) => boxesOverlap(box, other, 2))) continue;
-      if (obstacles.segments.some((segment) => segmentMeetsBox(...segment, box, MARGIN))) continue;
+      if (obstacles.segments.some((segment) => meets(segment, box, MARGIN))) continue;
       const [nearX, nearY] = nearestTo(request, box);
       const gap = Math.hypot(nearX - request.x, nearY - request.y);
       const ambiguous = others.some((other) => {
@@ -111,29 +110,48 @@ function freePlaces(request: LabelRequest, others: readonly LabelRequest[], obst
       });
       const tie: Segment | undefined = ambiguous || gap > TIED_FROM ? [request.x, request.y, nearX, nearY] : undefined;
       if (tie && runsInto(tie, obstacles)) continue;
-      const covered = obstacles.avoided.filter((segment) => segmentMeetsBox(...segment, box, 1)).length;
+      const covered = obstacles.avoided.filter((segment) => meets(segment, box, 1)).length;
       places.push({ box, tie, cost: distance + cost + COVERING_COST * covered + (ambiguous ? AMBIGUITY_COST : 0) });
     }
   return places.sort((p, q) => p.cost - q.cost);
 }
 
+/** The obstacles that a label of this point could come near to, wherever it stands. */
+function withinReach({ x, y, width, height }: LabelRequest, { boxes, segments, avoided }: Obstacles): Obstacles {
+  const reach = DISTANCES[DISTANCES.length - 1] + 2 * MARGIN;
+  const around = { left: x - width - reach, right: x + width + reach, top: y - height - reach, bottom: y + height + reach };
+  return {
+    boxes: boxes.filter((box) => boxesOverlap(box, around)),
+    segments: segments.filter((segment) => meets(segment, around, 0)),
+    avoided: avoided.filter((segment) => meets(segment, around, 0)),
+  };
+}
+
+function meets(segment: Segment, box: Box, margin: number): boolean {
+  return segmentMeetsBox(segment[0], segment[1], segment[2], segment[3], box, margin);
+}
+
 /** Whether a tie meets an obstacle other than the point's own marker, where it begins. */
 function runsInto([x0, y0, x1, y1]: Segment, { boxes, segments }: Obstacles): boolean {
-  const length = Math.hypot(x1 - x0, y1 - y0);
-  const t = TIED_FROM / 2 / length;
-  const start = [x0 + t * (x1 - x0), y0 + t * (y1 - y0)] as const;
+  const t = Math.min(1, TIED_FROM / 2 / Math.hypot(x1 - x0, y1 - y0));
+  const startX = x0 + t * (x1 - x0);
+  const startY = y0 + t * (y1 - y0);
   return (
     boxes.some(
-      (box) => segmentMeetsBox(...start, x1, y1, box) && !(box.left <= x0 && box.right >= x0 && box.top <= y0 && box.bottom >= y0),
-    ) || segments.some((segment) => cross(start[0], start[1], x1, y1, ...segment))
+      (box) => !(box.left <= x0 && box.right >= x0 && box.top <= y0 && box.bottom >= y0) && segmentMeetsBox(startX, startY, x1, y1, box),
+    ) || segments.some((segment) => cross(startX, startY, x1, y1, segment))
   );
 }
 
-/** Whether two segments cross. */
-function cross(ax: number, ay: number, bx: number, by: number, cx: number, cy: number, dx: number, dy: number): boolean {
-  const side = (px: number, py: number, qx: number, qy: number, rx: number, ry: number): number =>
-    (qx - px) * (ry - py) - (qy - py) * (rx - px);
+/** Whether the segment (ax, ay)-(bx, by) crosses another one. */
+function cross(ax: number, ay: number, bx: number, by: number, segment: Segment): boolean {
+  const [cx, cy, dx, dy] = segment;
   return side(ax, ay, bx, by, cx, cy) * side(ax, ay, bx, by, dx, dy) < 0 && side(cx, cy, dx, dy, ax, ay) * side(cx, cy, dx, dy, bx, by) < 0;
+}
+
+/** Sign tells on which side of the line p-q the point r lies. */
+function side(px: number, py: number, qx: number, qy: number, rx: number, ry: number): number {
+  return (qx - px) * (ry - py) - (qy - py) * (rx - px);
 }
 
 function boxAt({ x, y, width, height, side }: LabelRequest, distance: number, turn: number): Box {

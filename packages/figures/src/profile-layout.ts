@@ -239,7 +239,7 @@ function markBox(x: number, y: number): Box {
   return { left: x - 5, right: x + 5, top: y - 5, bottom: y + 5 };
 }
 
-const SAMPLES = 8;
+const SAMPLES = 6;
 
 function samples(segment: CurveSegment): [number, number][] {
   return Array.from({ length: SAMPLES + 1 }, (_, n) => {

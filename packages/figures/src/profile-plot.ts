@@ -59,7 +59,7 @@ function header({ molecule, rotor, points, stationaryPoints }: ProfileDocument, 
     ...([...points, ...stationaryPoints].some(({ converged }) => !converged) ? [marked('unconverged', 'not converged')] : []),
   ];
   const row = legend(entries, plot.right, 41, LABEL_SIZE, theme);
-  const subtitle = [molecule.smiles === title ? '' : molecule.smiles, rotor.kind].filter((one) => one !== '').join('   ');
+  const subtitle = [molecule.smiles === title ? '' : molecule.smiles, rotor.kind].filter((one) => one !== '').join('  ·  ');
   const titleText = fitText(title, plot.right - plot.left, TITLE_SIZE, true);
   return [
     textLine(plot.left, 27, titleText, { 'font-size': TITLE_SIZE, 'font-weight': 'bold', fill: theme.ink }),
