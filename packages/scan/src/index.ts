@@ -1,3 +1,4 @@
+export * from './conformers.js';
 export * from './drive.js';
 export { type DrivenRotor, drivenRotor } from './driven-rotor.js';
 export { type Constraint, type MinimiseOptions, minimise, type Preconditioner, type Relaxed, relax } from './minimise.js';
