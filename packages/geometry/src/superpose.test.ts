@@ -4,6 +4,8 @@ import { leastRmsd, rmsd, superpose } from './superpose.js';
 const points = (count: number, seed: number) =>
   Float64Array.from({ length: 3 * count }, (_, n) => 4 * Math.sin(seed + 12.9898 * n * n + n));
 
+const cube = Float64Array.from([1, -1].flatMap((p) => [1, -1].flatMap((q) => [1, -1].flatMap((r) => [p, q, r]))));
+
 /** Right-hand turn by `angle` about the unit axis, then a shift. */
 function moved(x: Float64Array, axis: readonly number[], angle: number, shift: readonly number[]): Float64Array {
   const length = Math.hypot(...axis);
@@ -75,6 +77,23 @@ describe('superposition', () => {
       [0, 0, 0.01],
     ])
       expect(rmsd(moved(coordinates, [1, 0, 0], 0, shift), reference)).toBeGreaterThan(best);
+  });
+  it('finds the least distance from the eigenvalue alone, also where the largest one is double', () => {
+    const planar = points(6, 2).map((value, n) => (n % 3 === 2 ? 0 : value));
+    const linear = Float64Array.of(0, 0, 0, 0, 0, 1.2, 0, 0, 2.3);
+    for (let seed = 10; seed < 40; seed++)
+      for (const [p, q] of [
+        [points(5, seed), points(5, seed + 50)],
+        [planar, points(6, seed)],
+        [planar, moved(planar, [1, seed, 2], seed, [0, 1, 0])],
+        [linear, points(3, seed)],
+        [linear, moved(linear, [1, seed, 2], seed, [0, 1, 0])],
+        [points(5, seed).map((value, n) => (n % 3 === 0 ? -value : value)), points(5, seed)],
+        // a cube against its mirror image: all turns equally good
+        [cube.map((value) => value * seed), cube],
+      ])
+        expect(Math.abs(leastRmsd(p, q) - superpose(p, q).rmsd)).toBeLessThan(1e-6);
+    expect(leastRmsd(Float64Array.of(1, 2, 3), Float64Array.of(4, 5, 6))).toBe(0);
   });
   it('counts chosen atoms, weights and relabelled partners only', () => {
     const reference = points(6, 6);

@@ -71,9 +71,7 @@ export function rmsd(moving: Coordinates, reference: Coordinates, options: Super
  */
 export function leastRmsd(moving: Coordinates, reference: Coordinates, options: SuperpositionOptions = {}): number {
   const { covariance, spread, totalWeight } = correlate(moving, reference, pairUp(moving, reference, options));
-  const { realEigenvalues } = new EigenvalueDecomposition(quaternionMatrix(covariance), { assumeSymmetric: true });
-  const largest = realEigenvalues[indexOfLargest(realEigenvalues)];
-  return Math.sqrt(Math.max(0, spread - 2 * largest) / totalWeight);
+  return Math.sqrt(Math.max(0, spread - 2 * largestEigenvalue(covariance, spread / 2)) / totalWeight);
 }
 
 interface Pairs {
@@ -86,42 +84,118 @@ function pairUp(moving: Coordinates, reference: Coordinates, { atoms, image, wei
   const count = reference.length / 3;
   if (moving.length !== reference.length)
     throw new TordialError('geometry/superposition', `structures of ${moving.length / 3} and ${count} atoms cannot be superposed`);
-  const chosen = atoms ? Int32Array.from(atoms) : Int32Array.from({ length: count }, (_, i) => i);
-  const partner = image ? chosen.map((i) => image[i]) : chosen;
-  const weight = Float64Array.from(chosen, (i) => (weights ? weights[i] : 1));
-  const bad = chosen.find((i, n) => !(i >= 0 && i < count && partner[n] >= 0 && partner[n] < count && weight[n] >= 0));
-  if (bad !== undefined)
-    throw new TordialError('geometry/superposition', `atom ${bad} has no partner or no weight among the ${count} atoms`, { atom: bad });
-  if (!weight.some((w) => w > 0)) throw new TordialError('geometry/superposition', 'no atom with a positive weight is left to superpose');
-  return { moving: partner, reference: chosen, weight };
+  const chosen = atoms ? atoms.length : count;
+  const pairs = { moving: new Int32Array(chosen), reference: new Int32Array(chosen), weight: new Float64Array(chosen) };
+  let heaviest = 0;
+  for (let n = 0; n < chosen; n++) {
+    const i = atoms ? atoms[n] : n;
+    const partner = image ? image[i] : i;
+    const weight = weights ? weights[i] : 1;
+    if (!(i >= 0 && i < count && partner >= 0 && partner < count && weight >= 0))
+      throw new TordialError('geometry/superposition', `atom ${i} has no partner or no weight among the ${count} atoms`, { atom: i });
+    pairs.reference[n] = i;
+    pairs.moving[n] = partner;
+    pairs.weight[n] = weight;
+    heaviest = Math.max(heaviest, weight);
+  }
+  if (!(heaviest > 0)) throw new TordialError('geometry/superposition', 'no atom with a positive weight is left to superpose');
+  return pairs;
 }
 
+/** Weighted covariance of the centred structures (row: moving, column: reference), their centres, and the sum of both squared radii. */
 function correlate(moving: Coordinates, reference: Coordinates, pairs: Pairs) {
   const centreMoving = new Float64Array(3);
   const centreReference = new Float64Array(3);
   let totalWeight = 0;
-  pairs.weight.forEach((w, n) => {
+  for (let n = 0; n < pairs.weight.length; n++) {
+    const w = pairs.weight[n];
+    const p = 3 * pairs.moving[n];
+    const q = 3 * pairs.reference[n];
     totalWeight += w;
     for (let k = 0; k < 3; k++) {
-      centreMoving[k] += w * moving[3 * pairs.moving[n] + k];
-      centreReference[k] += w * reference[3 * pairs.reference[n] + k];
+      centreMoving[k] += w * moving[p + k];
+      centreReference[k] += w * reference[q + k];
     }
-  });
+  }
   for (let k = 0; k < 3; k++) {
     centreMoving[k] /= totalWeight;
     centreReference[k] /= totalWeight;
   }
   const covariance = new Float64Array(9);
   let spread = 0;
-  pairs.weight.forEach((w, n) => {
-    for (let k = 0; k < 3; k++) {
-      const p = moving[3 * pairs.moving[n] + k] - centreMoving[k];
-      const own = reference[3 * pairs.reference[n] + k] - centreReference[k];
-      spread += w * (p * p + own * own);
-      for (let m = 0; m < 3; m++) covariance[3 * k + m] += w * p * (reference[3 * pairs.reference[n] + m] - centreReference[m]);
-    }
-  });
+  for (let n = 0; n < pairs.weight.length; n++) {
+    const w = pairs.weight[n];
+    const p = 3 * pairs.moving[n];
+    const q = 3 * pairs.reference[n];
+    const px = moving[p] - centreMoving[0];
+    const py = moving[p + 1] - centreMoving[1];
+    const pz = moving[p + 2] - centreMoving[2];
+    const qx = reference[q] - centreReference[0];
+    const qy = reference[q + 1] - centreReference[1];
+    const qz = reference[q + 2] - centreReference[2];
+    spread += w * (px * px + py * py + pz * pz + qx * qx + qy * qy + qz * qz);
+    covariance[0] += w * px * qx;
+    covariance[1] += w * px * qy;
+    covariance[2] += w * px * qz;
+    covariance[3] += w * py * qx;
+    covariance[4] += w * py * qy;
+    covariance[5] += w * py * qz;
+    covariance[6] += w * pz * qx;
+    covariance[7] += w * pz * qy;
+    covariance[8] += w * pz * qz;
+  }
   return { covariance, centreMoving, centreReference, spread, totalWeight };
+}
+
+/** Newton steps at most, and the slope (relative to that of four simple roots) below which they are not trusted. */
+const NEWTON_STEPS = 30;
+const FLAT = 1e-4;
+
+/**
+ * Largest eigenvalue of the quaternion matrix of a covariance: Newton's method on the characteristic polynomial from an upper bound
+ * (Theobald 2005), which falls monotonically to the largest root; where that is nearly double (planar and linear structures turned
+ * over), the full decomposition.
+ */
+function largestEigenvalue(covariance: Float64Array, upperBound: number): number {
+  // by index: taking a typed array apart by its iterator costs more than all that follows
+  const xx = covariance[0],
+    xy = covariance[1],
+    xz = covariance[2];
+  const yx = covariance[3],
+    yy = covariance[4],
+    yz = covariance[5];
+  const zx = covariance[6],
+    zy = covariance[7],
+    zz = covariance[8];
+  const c2 = -2 * (xx * xx + xy * xy + xz * xz + yx * yx + yy * yy + yz * yz + zx * zx + zy * zy + zz * zz);
+  const c1 = -8 * (xx * (yy * zz - yz * zy) - xy * (yx * zz - yz * zx) + xz * (yx * zy - yy * zx));
+  // determinant of the matrix, its rows as in quaternionMatrix
+  const a = xx + yy + zz,
+    b = xx - yy - zz,
+    c = yy - xx - zz,
+    d = zz - xx - yy;
+  const p = yz - zy,
+    q = zx - xz,
+    r = xy - yx,
+    s = xy + yx,
+    t = zx + xz,
+    u = yz + zy;
+  const c0 =
+    a * (b * (c * d - u * u) - s * (s * d - u * t) + t * (s * u - c * t)) -
+    p * (p * (c * d - u * u) - s * (q * d - u * r) + t * (q * u - c * r)) +
+    q * (p * (s * d - u * t) - b * (q * d - u * r) + t * (q * t - s * r)) -
+    r * (p * (s * u - c * t) - b * (q * u - c * r) + s * (q * t - s * r));
+  let root = upperBound;
+  for (let step = 0; step < NEWTON_STEPS; step++) {
+    const square = root * root;
+    const slope = 4 * square * root + 2 * c2 * root + c1;
+    if (!(slope > FLAT * square * root)) break;
+    const change = (square * square + c2 * square + c1 * root + c0) / slope;
+    root -= change;
+    if (Math.abs(change) < 1e-13 * root) return root;
+  }
+  const { realEigenvalues } = new EigenvalueDecomposition(quaternionMatrix(covariance), { assumeSymmetric: true });
+  return realEigenvalues[indexOfLargest(realEigenvalues)];
 }
 
 /** Horn's symmetric matrix N of the covariance S (row: moving, column: reference). */
@@ -143,12 +217,14 @@ function indexOfLargest(values: ArrayLike<number>): number {
 function weightedRmsd(moving: Coordinates, reference: Coordinates, pairs: Pairs): number {
   let sum = 0;
   let total = 0;
-  pairs.weight.forEach((w, n) => {
-    total += w;
-    for (let k = 0; k < 3; k++) {
-      const apart = moving[3 * pairs.moving[n] + k] - reference[3 * pairs.reference[n] + k];
-      sum += w * apart * apart;
-    }
-  });
+  for (let n = 0; n < pairs.weight.length; n++) {
+    const p = 3 * pairs.moving[n];
+    const q = 3 * pairs.reference[n];
+    const dx = moving[p] - reference[q];
+    const dy = moving[p + 1] - reference[q + 1];
+    const dz = moving[p + 2] - reference[q + 2];
+    total += pairs.weight[n];
+    sum += pairs.weight[n] * (dx * dx + dy * dy + dz * dz);
+  }
   return Math.sqrt(sum / total);
 }
