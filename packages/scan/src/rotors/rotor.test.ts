@@ -1,4 +1,4 @@
-import { createMolecule, type Molecule, moleculeFromSmiles, neighboursOf } from '@tordial/geometry';
+import { createMolecule, embed, type Molecule, moleculeFromSmiles, neighboursOf, perceiveStereo } from '@tordial/geometry';
 import { describe, expect, it } from 'vitest';
 import { findRotors, type Rotor, rotorOfTorsion } from './rotor.js';
 import { ROTOR_TABLE } from './rotor-table.fixture.js';
@@ -148,6 +148,29 @@ describe('symmetry of rotors', () => {
         .map(({ mirrored }) => mirrored),
     ).toEqual([false, true]);
     expect(rotorsOf('CCCC').map(({ mirrored }) => mirrored)).toEqual([false, false, false]);
+  });
+  it.each([
+    'C[C@@H](O)[C@H](O)C',
+    'C[C@@H](O)[C@@H](O)C',
+    'CC(C)[C@@H](O)[C@H](O)C(C)C',
+    'OC[C@H]1CC[C@@H](CO)CC1',
+    'OC[C@@H]1CC[C@@H]1CO',
+    'OC[C@@H]1CC[C@H]1CO',
+    'CC/C=C/CC',
+    'C[C@H](F)c1ccc([C@@H](C)F)cc1',
+    'CC=C=CC',
+    'C[C@H](O)C(C)C',
+  ])('leads to a structure of the stated configuration: %s', (smiles) => {
+    const molecule = moleculeFromSmiles(smiles);
+    const x = embed(molecule, { seed: 1 });
+    const stated = perceiveStereo(molecule, x);
+    for (const { relabelling, mirrored } of findRotors(molecule)) {
+      const copy = new Float64Array(x.length);
+      relabelling.forEach((target, i) => {
+        copy.set([mirrored ? -x[3 * i] : x[3 * i], x[3 * i + 1], x[3 * i + 2]], 3 * target);
+      });
+      expect(perceiveStereo(molecule, copy)).toEqual(stated);
+    }
   });
   it('does not count a phenyl whose sides differ in configuration alone', () => {
     // 2,6-bis(1-fluoroethyl)phenol: with both centres alike the ring has a twofold axis, with opposite ones it has not
