@@ -179,6 +179,19 @@ describe('analysis of a helical profile', () => {
 describe('no number where none is justified', () => {
   const document = profileDocument(PEROXIDE, HELICAL);
 
+  it('of a single well: it has a population of 1 and nothing to turn into', () => {
+    const { rows, barriers, rotamers: wells } = analyseProfile(profileDocument(PEROXIDE, seriesOfBarriers([5])));
+    expect(wells).toHaveLength(1);
+    expect(barriers[0].forward).toBeCloseTo(5, 8);
+    expect(rows[0].populations).toEqual({ byEnergy: [1], byProfile: [1], byFreeEnergy: null });
+    expect(rows[0].processes).toEqual([]);
+  });
+
+  it('over a barrier that vanishes in free energy', () => {
+    const { rows } = analyseProfile(document, { freeEnergies: () => ({ wells: [0, 1], barriers: [0.8, 20] }) });
+    expect(rows[0].processes[0]).toMatchObject({ forward: null, refused: [{ code: 'analysis/no-rate' }] });
+  });
+
   it('over a crossing of branches', () => {
     const crossed = {
       ...document,

@@ -101,9 +101,16 @@ export function analyseProfile(document: ProfileDocument, options: AnalysisOptio
 
   const networkAt = (temperature: number): WellNetwork => {
     const free = freeEnergies?.(temperature);
+    const heights = free ? free.wells : wells.map((well) => well.energy);
     return {
-      wells: free ? free.wells : wells.map((well) => well.energy),
-      barriers: barriers.map((barrier, i) => (barrier.kind === 'crossing' ? null : free ? free.barriers[i] : barrier.energy)),
+      wells: heights,
+      barriers: barriers.map((barrier, i) => {
+        if (barrier.kind === 'crossing') return null;
+        if (!free) return barrier.energy;
+        // a low barrier can vanish in free energy: there is no rate over it then
+        const height = free.barriers[i];
+        return height !== null && height >= Math.max(heights[i], heights[(i + 1) % heights.length]) ? height : null;
+      }),
       transmission: transmission?.(temperature),
     };
   };

@@ -76,7 +76,8 @@ export function analysedProcess(
   if (!rates)
     refused.push({
       code: 'analysis/no-rate',
-      message: 'no rate: a route passes a crossing of branches where no saddle is known; refine it first',
+      message:
+        'no rate: a route passes a crossing of branches where no saddle is known, or a barrier that vanishes in free energy; refine it first',
     });
   const coalesced = signals && rates ? coalescenceOf(process, networkAt, rates, temperature, error, signals) : null;
   if (coalesced && 'code' in coalesced) refused.push(coalesced);

@@ -7,6 +7,9 @@
  */
 import { TordialError } from '@tordial/geometry';
 
+/** Temperatures (K) at which shelf lives are asked for: 25, 37, 40, 60 and 80 C. */
+export const SHELF_TEMPERATURES = [298.15, 310.15, 313.15, 333.15, 353.15] as const;
+
 /** Half-life of exchange, ln 2 / k, in seconds, of k in 1/s: half of the molecules have left the well they were in. */
 export function exchangeHalfLife(rate: number): number {
   return Math.LN2 / positive(rate);

@@ -2,7 +2,7 @@
  * Which levels belong together: the copies of one torsional state in equivalent wells, split by tunnelling between them.
  */
 import { occupancy, type TorsionalLevels } from './levels.js';
-import { extremaOfSeries, type PeriodicSeries, seriesValue, withoutNoise } from './periodic-series.js';
+import { extremaOfSeries, type PeriodicSeries, type SeriesExtremum, seriesValue, withoutNoise } from './periodic-series.js';
 
 /** One torsional state in a set of equivalent wells: as many levels as wells. */
 export interface Multiplet {
@@ -57,18 +57,22 @@ export function equivalentWells(potential: PeriodicSeries, constant: PeriodicSer
 
 /**
  * Sorts levels into multiplets. A level belongs to the set of equivalent wells whose basins (from barrier to barrier) hold at least 70 % of it;
- * s successive levels of a set of s wells are one torsional state. Levels spread over several sets, and a set's last incomplete group, are left out.
+ * s successive levels of a set of s wells are one torsional state. Levels spread over several sets, levels above the highest barrier where there is
+ * more than one set, and a set's last incomplete group are left out.
  */
 export function multiplets(levels: TorsionalLevels, potential: PeriodicSeries, constant: PeriodicSeries): Multiplet[] {
   const sets = equivalentWells(potential, constant);
-  const shares =
-    sets.length === 1 ? [Float64Array.from(levels.energies, () => 1)] : sets.map((wells) => occupancyOfBasins(levels, potential, wells));
+  if (sets.length === 0) return [];
+  const tops = extremaOfSeries(withoutNoise(potential)).filter((extremum) => extremum.kind === 'maximum');
+  const highest = Math.max(...tops.map((top) => top.value));
+  const above = levels.energies.findIndex((energy) => energy > highest);
+  const bound = above < 0 ? levels.energies.length : above;
   return sets
-    .flatMap((wells, s) => {
-      const own: number[] = [];
-      levels.energies.forEach((_, n) => {
-        if (shares[s][n] >= 0.7) own.push(n);
-      });
+    .flatMap((wells) => {
+      const own =
+        sets.length === 1
+          ? Array.from(levels.energies.keys())
+          : [...occupancyOfBasins(levels, tops, wells, bound)].flatMap((share, n) => (share >= 0.7 ? [n] : []));
       return Array.from({ length: Math.floor(own.length / wells.length) }, (_, v): Multiplet => {
         const members = own.slice(v * wells.length, (v + 1) * wells.length);
         const energies = members.map((n) => levels.energies[n]);
@@ -84,15 +88,19 @@ export function multiplets(levels: TorsionalLevels, potential: PeriodicSeries, c
     .sort((a, b) => a.energy - b.energy);
 }
 
-function occupancyOfBasins(levels: TorsionalLevels, potential: PeriodicSeries, wells: readonly number[]): Float64Array {
-  const tops = extremaOfSeries(withoutNoise(potential))
-    .filter((extremum) => extremum.kind === 'maximum')
-    .map((extremum) => extremum.angle);
-  const share = new Float64Array(levels.energies.length);
+/** Of each of the first `count` levels the share in the basins of these wells. */
+function occupancyOfBasins(
+  levels: TorsionalLevels,
+  tops: readonly SeriesExtremum[],
+  wells: readonly number[],
+  count: number,
+): Float64Array {
+  const angles = tops.map((top) => top.angle);
+  const share = new Float64Array(count);
   for (const well of wells) {
-    const to = tops.find((top) => top > well) ?? tops[0] + 2 * Math.PI;
-    const from = tops.findLast((top) => top < well) ?? tops[tops.length - 1] - 2 * Math.PI;
-    occupancy(levels, from, to).forEach((part, n) => {
+    const to = angles.find((top) => top > well) ?? angles[0] + 2 * Math.PI;
+    const from = angles.findLast((top) => top < well) ?? angles[angles.length - 1] - 2 * Math.PI;
+    occupancy(levels, from, to, count).forEach((part, n) => {
       share[n] += part;
     });
   }
