@@ -17,6 +17,8 @@ import { fitText } from './text-width.js';
 import type { FigureTheme } from './theme.js';
 
 const TITLE_SIZE = 16;
+/** Estimated stretches no longer than this lie under the marks at their ends, px. */
+const VISIBLE = 8;
 
 /**
  * The figure of a torsion profile: the periodic curve over [-180, 180] with its points, wells and barriers with angle and energy, and a Newman
@@ -47,15 +49,15 @@ export function profilePlot(document: ProfileDocument, options: ProfilePlotOptio
   );
 }
 
-function header({ molecule, rotor, points, stationaryPoints }: ProfileDocument, { plot, parts, theme, title }: ProfileLayout): string[] {
+function header({ molecule, rotor, points, stationaryPoints }: ProfileDocument, { plot, parts, x, theme, title }: ProfileLayout): string[] {
   const kinds = new Set(stationaryPoints.map(({ kind }) => kind));
-  const marked = (kind: MarkKind, label: string): LegendEntry => ({ label, width: 10, symbol: (x, y) => mark(kind, x, y, theme) });
+  const marked = (kind: MarkKind, label: string): LegendEntry => ({ label, width: 10, symbol: (px, py) => mark(kind, px, py, theme) });
   const entries = [
     ...(kinds.has('well') ? [marked('well', 'well')] : []),
     ...(kinds.has('barrier') ? [marked('barrier', 'barrier')] : []),
     ...(kinds.has('crossing') ? [marked('crossing', 'crossing of branches')] : []),
     ...(parts.changes.length > 0 ? [marked('change', 'change of branch')] : []),
-    ...(parts.estimated.length > 0 ? [estimatedEntry(theme)] : []),
+    ...(parts.estimated.some(({ from, to }) => x(to) - x(from) > VISIBLE) ? [estimatedEntry(theme)] : []),
     ...([...points, ...stationaryPoints].some(({ converged }) => !converged) ? [marked('unconverged', 'not converged')] : []),
   ];
   const row = legend(entries, plot.right, 41, LABEL_SIZE, theme);
