@@ -18,8 +18,8 @@ import {
   TordialError,
 } from '@tordial/geometry';
 import { drive } from './drive.js';
-import { checkSizes, minimise, type Relaxed } from './minimise.js';
-import { type ModelHessian, modelHessian, preconditionerAt } from './model-hessian.js';
+import { checkSizes, minimise, type Preconditioner, type Relaxed } from './minimise.js';
+import { modelHessian } from './model-hessian.js';
 import type { Calculation, Potential } from './potential.js';
 
 export interface ConformerOptions {
@@ -133,8 +133,8 @@ export function* conformerSearch(molecule: Molecule, options: ConformerOptions =
   return { conformers: result, notes, evaluations };
 }
 
-function* relaxation(model: ModelHessian, start: Coordinates, tolerance: number): Calculation<Relaxed> {
-  return yield* minimise(start, preconditionerAt(model, start), { tolerance });
+function* relaxation(model: Preconditioner, start: Coordinates, tolerance: number): Calculation<Relaxed> {
+  return yield* minimise(start, model, { tolerance });
 }
 
 /** The molecule with its open configurations stated as a first structure has them. */

@@ -6,48 +6,60 @@
  */
 import { type Coordinates, type Molecule, neighboursOf } from '@tordial/geometry';
 
-/** Half the distance of the minimum, angstrom, and the well depth, kcal/mol. */
-interface Contact {
-  readonly radius: number;
-  readonly depth: number;
-}
+/** Half the distance of the minimum, angstrom, and the well depth, kcal/mol, of each kind of atom. */
+const KINDS = [
+  { radius: 1.5, depth: 0.02 }, // hydrogen
+  { radius: 0.6, depth: 0.02 }, // hydrogen on nitrogen, oxygen, fluorine or sulfur: comes close to what it bonds to without touching
+  { radius: 1.95, depth: 0.07 }, // carbon
+  { radius: 1.85, depth: 0.07 }, // nitrogen
+  { radius: 1.75, depth: 0.07 }, // oxygen
+  { radius: 1.6, depth: 0.07 }, // fluorine
+  { radius: 2.05, depth: 0.07 }, // others
+];
+const OTHER = KINDS.length - 1;
 
-const HYDROGEN: Contact = { radius: 1.5, depth: 0.02 };
-/** Bonded to nitrogen, oxygen, fluorine or sulfur: it comes close to what it bonds to without touching. */
-const POLAR_HYDROGEN: Contact = { radius: 0.6, depth: 0.02 };
-const BY_ELEMENT: Readonly<Record<number, Contact>> = {
-  6: { radius: 1.95, depth: 0.07 },
-  7: { radius: 1.85, depth: 0.07 },
-  8: { radius: 1.75, depth: 0.07 },
-  9: { radius: 1.6, depth: 0.07 },
-};
-const OTHER: Contact = { radius: 2.05, depth: 0.07 };
-
-/** Farther apart than this no pair is stiff enough to count, angstrom. */
-const REACH = 3.5;
 /** Softer than this a contact does not count, and none is stiffer than that, kcal/mol/angstrom^2. */
 const LEAST = 1;
 const MOST = 50;
 
-/** Each atom's part in contacts. */
-export function contactAtoms(molecule: Molecule): readonly Contact[] {
+/** Kind of each atom as a partner in contacts. */
+export function contactKinds(molecule: Molecule): Uint8Array {
   const { atomicNumbers } = molecule;
-  return Array.from(atomicNumbers, (z, i) => {
-    if (z !== 1) return BY_ELEMENT[z] ?? OTHER;
-    return [...neighboursOf(molecule, i)].some((j) => [7, 8, 9, 16].includes(atomicNumbers[j])) ? POLAR_HYDROGEN : HYDROGEN;
-  });
+  const polar = (i: number) => neighboursOf(molecule, i).some((j) => [7, 8, 9, 16].includes(atomicNumbers[j]));
+  return atomicNumbers.map((z, i) => (z === 1 ? (polar(i) ? 1 : 0) : z >= 6 && z <= 9 ? z - 4 : OTHER));
 }
 
-/** The pairs of atoms (flat, the lower one first) that touch at x, and how stiffly, kcal/mol/angstrom^2; pairs with the key i * atomCount + j in `bonded` are left out. */
-export function contactsAt(
-  atoms: readonly Contact[],
-  bonded: ReadonlySet<number>,
-  x: Coordinates,
-): { readonly pairs: readonly number[]; readonly stiffness: readonly number[] } {
-  const count = atoms.length;
+/** Squares of the distances (angstrom^2) within which atoms of two kinds touch, row by row. */
+const TOUCH = Float64Array.from({ length: KINDS.length ** 2 }, (_, n) => {
+  const pair = pairOf(n);
+  let low = 0.5;
+  let high = 1;
+  if (pair.scale * bendOfWell(low) < LEAST) return 0;
+  for (let step = 0; step < 40; step++) {
+    const middle = (low + high) / 2;
+    if (pair.scale * bendOfWell(middle) > LEAST) low = middle;
+    else high = middle;
+  }
+  return (low * pair.size) ** 2;
+});
+
+function pairOf(n: number): { size: number; scale: number } {
+  const a = KINDS[Math.floor(n / KINDS.length)];
+  const b = KINDS[n % KINDS.length];
+  const size = a.radius + b.radius;
+  return { size, scale: Math.sqrt(a.depth * b.depth) / (size * size) };
+}
+
+/**
+ * The pairs i < j of atoms (flat) that touch at x, or would if they were `margin` angstrom closer. Pairs with the key i * atomCount + j in
+ * `bonded` are left out.
+ */
+export function contactsAt(kinds: Uint8Array, bonded: ReadonlySet<number>, x: Coordinates, margin = 0): number[] {
+  const count = kinds.length;
+  const touch = margin === 0 ? TOUCH : TOUCH.map((square) => (square > 0 ? (Math.sqrt(square) + margin) ** 2 : 0));
   const pairs: number[] = [];
-  const stiffness: number[] = [];
   for (let i = 0; i < count; i++) {
+    const row = kinds[i] * KINDS.length;
     const xi = x[3 * i],
       yi = x[3 * i + 1],
       zi = x[3 * i + 2];
@@ -55,29 +67,29 @@ export function contactsAt(
       const dx = xi - x[3 * j],
         dy = yi - x[3 * j + 1],
         dz = zi - x[3 * j + 2];
-      const square = dx * dx + dy * dy + dz * dz;
-      if (square > REACH * REACH || bonded.has(i * count + j)) continue;
-      const size = atoms[i].radius + atoms[j].radius;
-      const depth = Math.sqrt(atoms[i].depth * atoms[j].depth);
-      const k = (depth / (size * size)) * bendOfWell(Math.sqrt(square) / size);
-      if (k < LEAST) continue;
-      pairs.push(i, j);
-      stiffness.push(Math.min(k, MOST));
+      if (dx * dx + dy * dy + dz * dz < touch[row + kinds[j]] && !bonded.has(i * count + j)) pairs.push(i, j);
     }
   }
-  return { pairs, stiffness };
+  return pairs;
+}
+
+/** Stiffness along the line between two atoms of these kinds at a distance (angstrom), kcal/mol/angstrom^2. */
+export function contactStiffness(kindI: number, kindJ: number, distance: number): number {
+  const { size, scale } = pairOf(kindI * KINDS.length + kindJ);
+  return Math.min(MOST, scale * bendOfWell(Math.max(0.5, distance / size)));
 }
 
 /** Second derivative of the buffered 14-7 potential with depth 1 at the distance rho, in units of its minimum's. */
-function bendOfWell(distance: number): number {
-  // closer than half way the potential is of no use, the stiffness is cut off anyway
-  const rho = Math.max(distance, 0.5);
+function bendOfWell(rho: number): number {
   const b = rho + 0.07;
-  const p6 = rho ** 6;
+  const cube = rho * rho * rho;
+  const p6 = cube * cube;
   const d = p6 * rho + 0.12;
-  const outer = (1.07 / b) ** 7;
+  const ratio = 1.07 / b;
+  const ratio3 = ratio * ratio * ratio;
+  const outer = ratio3 * ratio3 * ratio;
   const inner = 1.12 / d - 2;
   const innerSlope = (-7.84 * p6) / (d * d);
-  const innerBend = -7.84 * ((6 * p6) / (rho * d * d) - (14 * p6 * p6) / (d * d * d));
+  const innerBend = (-7.84 / (d * d)) * ((6 * p6) / rho - (14 * p6 * p6) / d);
   return outer * ((56 / (b * b)) * inner - (14 / b) * innerSlope + innerBend);
 }

@@ -2,7 +2,7 @@ export * from './conformers.js';
 export * from './drive.js';
 export { type DrivenRotor, drivenRotor } from './driven-rotor.js';
 export { type Constraint, type MinimiseOptions, minimise, type Preconditioner, type Relaxed, relax } from './minimise.js';
-export { type ModelHessian, modelHessian, preconditionerAt } from './model-hessian.js';
+export { modelHessian } from './model-hessian.js';
 export * from './potential.js';
 export * from './profile-curve.js';
 export * from './profile-document.js';

@@ -3,7 +3,7 @@ import { expect, test } from 'vitest';
 import { alkane, modelPotential, tetrahedral } from './chain.fixture.js';
 import { drive, driveAsync } from './drive.js';
 import { minimise, relax } from './minimise.js';
-import { modelHessian, preconditionerAt } from './model-hessian.js';
+import { modelHessian } from './model-hessian.js';
 
 const skeletons = [
   [0, 1, 2],
@@ -80,7 +80,7 @@ test('a potential that answers later gives the same bytes', async () => {
     },
   };
   const now = relax(molecule, potential, x);
-  const then = await driveAsync(minimise(x, preconditionerAt(modelHessian(molecule), x)), later);
+  const then = await driveAsync(minimise(x, modelHessian(molecule)), later);
   expect(then.energy).toBe(now.energy);
   expect(then.coordinates).toEqual(now.coordinates);
 });

@@ -9,7 +9,7 @@
  */
 import { type Coordinates, type Molecule, TordialError } from '@tordial/geometry';
 import { drive } from './drive.js';
-import { modelHessian, preconditionerAt } from './model-hessian.js';
+import { modelHessian } from './model-hessian.js';
 import type { Calculation, Potential, Question } from './potential.js';
 import { forget, remember, type SecantMemory, searchDirection, secantMemory } from './secant-memory.js';
 
@@ -67,7 +67,7 @@ const SUFFICIENT = 1e-4;
 const ROUNDING = 1e-11;
 
 /**
- * Minimises the energy from `start` (left as it is). The preconditioner must be made at a geometry like `start`.
+ * Minimises the energy from `start` (left as it is).
  * A minimisation that cannot go on returns its best geometry with `converged` false.
  * Throws `scan/energy` when the energy or gradient at the start is not finite.
  */
@@ -221,5 +221,5 @@ export function relax(
   options: Omit<MinimiseOptions, 'constraint' | 'memory'> = {},
 ): Relaxed {
   checkSizes(molecule, potential, x);
-  return drive(minimise(x, preconditionerAt(modelHessian(molecule), x), options), potential);
+  return drive(minimise(x, modelHessian(molecule), options), potential);
 }

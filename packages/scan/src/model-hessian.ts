@@ -12,342 +12,300 @@
  * Sci. Rep. 8, 13991 (2018). The force constants here are rounded from typical molecular mechanics: a preconditioner changes how fast
  * a relaxation arrives, not where, so they carry no result.
  */
-import { angle, type Coordinates, type Molecule, neighboursOf, torsionGradient } from '@tordial/geometry';
-import {
-  addOuterProduct,
-  type BlockMatrix,
-  type BlockPattern,
-  blockMatrix,
-  blockPattern,
-  factorise,
-  solveFactorised,
-} from './block-cholesky.js';
-import { contactAtoms, contactsAt } from './contact-stiffness.js';
+import { type Coordinates, type Molecule, torsionGradient } from '@tordial/geometry';
+import { type BlockPattern, blockAt, blockMatrix, blockPattern, factorise, solveFactorised } from './block-cholesky.js';
+import { contactStiffness, contactsAt } from './contact-stiffness.js';
 import type { Preconditioner } from './minimise.js';
-import { aromaticAtoms } from './rotors/aromatic-atoms.js';
-import { atomShape } from './rotors/atom-shape.js';
+import { type ModelCoordinates, modelCoordinates } from './model-coordinates.js';
 import type { Torsion } from './rotors/defining-torsion.js';
-
-/** The internal coordinates of a molecule that its model Hessian is made of, as rows of atoms. Made once a molecule (and rotor). */
-export interface ModelHessian {
-  readonly bonds: Int32Array;
-  readonly angles: Int32Array;
-  readonly torsions: Int32Array;
-  /** Force constant of each torsion, kcal/mol/radian^2. */
-  readonly torsionForces: Float64Array;
-  /** Rows of a planar centre and its three neighbours. */
-  readonly planes: Int32Array;
-  readonly atoms: ReturnType<typeof contactAtoms>;
-  /** Pairs i < j, as i * atomCount + j, joined by one or two bonds: no contacts. */
-  readonly bonded: ReadonlySet<number>;
-  /** Pairs of atoms, flat, that bonds, angles and torsions couple. */
-  readonly couplings: readonly number[];
-  /** The pattern in use and the contacts that it has room for; grows as new ones are met. */
-  readonly room: { pattern: BlockPattern; contacts: Set<number> };
-  /** Periods of the table of constants (1, 2, 3) by atom. */
-  readonly period: Uint8Array;
-  /** Added to the diagonal, kcal/mol/angstrom^2. */
-  readonly shift: number;
-  /** The torsion that a constraint holds: other torsions on its axis count by how they differ from it. */
-  readonly driven: Torsion | null;
-}
 
 const BOHR = 0.529177210903;
 /** kcal/mol/angstrom^2 and kcal/mol/radian^2 where rho is 1. */
 const STRETCH = 650;
 const BEND = 75;
-/** Resistance of a planar centre to leaving the plane of its neighbours, kcal/mol/angstrom^2: a multiple bond at it, or a lone pair that conjugates. */
+/** Resistance of a planar centre to leaving the plane of its neighbours, kcal/mol/angstrom^2. */
 const OUT_OF_PLANE = 100;
-
-/** Stiffness of turning about a bond, kcal/mol/radian^2, shared out among the torsions about it. */
-const TURN = { aromatic: 60, double: 100, amide: 30, conjugated: 10, planarToOther: 2, other: 10 };
+/** Motions that no internal coordinate resists (the whole molecule's) get this much, kcal/mol/angstrom^2; more where fragments are not held together. */
+const SHIFT = 0.01;
+const SHIFT_BETWEEN_FRAGMENTS = 1;
 
 /** Lindh's alpha (1/bohr^2) and r0 (bohr) by the periods of both atoms; later periods count as the third. */
 const ALPHA = [1.0, 0.3949, 0.3949, 0.28, 0.28, 0.28];
 const REFERENCE = [1.35, 2.1, 2.53, 2.87, 3.4, 3.4];
-
-/** Motions that no internal coordinate of the model resists (the whole molecule's) get this much, kcal/mol/angstrom^2. */
-const SHIFT = 0.01;
-/** The same where fragments are held against each other by nothing that the model knows. */
-const SHIFT_BETWEEN_FRAGMENTS = 1;
-
-/** Lists the internal coordinates. With `driven`, the model is that of the energy minimised with this torsion angle held. */
-export function modelHessian(molecule: Molecule, driven: Torsion | null = null): ModelHessian {
-  const { atomCount, bonds } = molecule;
-  const bondRows: number[] = [];
-  const angles: number[] = [];
-  const torsions: number[] = [];
-  const torsionForces: number[] = [];
-  const planes: number[] = [];
-  const aromatic = aromaticAtoms(molecule);
-  const sharesRing = (b: number, c: number) => molecule.rings.some((ring) => ring.includes(b) && ring.includes(c));
-  const planar = Array.from({ length: atomCount }, (_, i) => atomShape(molecule, i) === 'planar');
-  for (let n = 0; n < bonds.count; n++) {
-    const b = bonds.a[n];
-    const c = bonds.b[n];
-    bondRows.push(b, c);
-    const first = torsions.length;
-    for (const a of neighboursOf(molecule, b))
-      for (const d of neighboursOf(molecule, c)) if (a !== c && d !== b && a !== d) torsions.push(a, b, c, d);
-    const count = (torsions.length - first) / 4;
-    const turn = TURN[turningKind(molecule, n, aromatic, planar, sharesRing(b, c))];
-    for (let m = 0; m < count; m++) torsionForces.push(turn / count);
-  }
-  for (let j = 0; j < atomCount; j++) {
-    const around = neighboursOf(molecule, j);
-    for (let p = 0; p < around.length; p++) for (let q = 0; q < p; q++) angles.push(around[q], j, around[p]);
-    if (planar[j]) planes.push(j, ...around);
-  }
-  const couplings = [...bondRows];
-  for (let n = 0; n < angles.length; n += 3) couplings.push(angles[n], angles[n + 2]);
-  const bonded: number[] = [];
-  for (let n = 0; n < couplings.length; n += 2)
-    bonded.push(Math.min(couplings[n], couplings[n + 1]) * atomCount + Math.max(couplings[n], couplings[n + 1]));
-  for (let n = 0; n < torsions.length; n += 4) couplings.push(torsions[n], torsions[n + 3]);
-  return {
-    atoms: contactAtoms(molecule),
-    bonded: new Set(bonded),
-    couplings,
-    room: { pattern: blockPattern(atomCount, couplings), contacts: new Set() },
-    bonds: Int32Array.from(bondRows),
-    angles: Int32Array.from(angles),
-    torsions: Int32Array.from(torsions),
-    torsionForces: Float64Array.from(torsionForces),
-    planes: Int32Array.from(planes),
-    period: molecule.atomicNumbers.map((z) => (z <= 2 ? 1 : z <= 10 ? 2 : 3)),
-    shift: fragmentCount(molecule) > 1 ? SHIFT_BETWEEN_FRAGMENTS : SHIFT,
-    driven,
-  };
-}
-
-/** The kind of a bond as far as turning about it goes. */
-function turningKind(
-  { bonds, atomicNumbers }: Molecule,
-  n: number,
-  aromatic: Uint8Array,
-  planar: readonly boolean[],
-  inRing: boolean,
-): keyof typeof TURN {
-  const b = bonds.a[n];
-  const c = bonds.b[n];
-  if (aromatic[b] && aromatic[c]) return bonds.order[n] > 1 || inRing ? 'aromatic' : 'conjugated';
-  if (bonds.order[n] > 1) return 'double';
-  if (planar[b] && planar[c]) return atomicNumbers[b] === 6 && atomicNumbers[c] === 6 ? 'conjugated' : 'amide';
-  if (planar[b] || planar[c]) return atomicNumbers[planar[b] ? c : b] === 8 ? 'conjugated' : 'planarToOther';
-  return 'other';
-}
-
-function fragmentCount(molecule: Molecule): number {
-  const seen = new Set<number>();
-  let fragments = 0;
-  for (let start = 0; start < molecule.atomCount; start++) {
-    if (seen.has(start)) continue;
-    fragments++;
-    const fragment = [start];
-    seen.add(start);
-    for (const i of fragment)
-      for (const j of neighboursOf(molecule, i))
-        if (!seen.has(j)) {
-          seen.add(j);
-          fragment.push(j);
-        }
-  }
-  return fragments;
-}
-
 /** How far a stretched or squeezed geometry may move rho from 1: an embedded start is no reason for a wild model. */
 const LEAST_DECAY = 0.3;
 const MOST_DECAY = 2;
+
+/** Sine of an angle below which it counts as straight: it bends in two directions, and torsions over it are left out. */
+const STRAIGHT = 0.17;
+/** Square of a torsion's slope (radian^2/angstrom^2) at an end atom, above which an angle within it is that straight. */
+const STEEP = 36;
 
 /**
  * How far (angstrom) a coordinate may move before the model is made anew. A stretch is a thousand times as stiff as a turn: a few degrees of
  * misalignment already make soft motions look stiff.
  */
 const STALE = 0.05;
+/** Pairs this much (angstrom) too far apart to touch get room in the matrix as well, so that its pattern need not change at each step. */
+const ROOM = 0.4;
 
-/** The model at the geometry x, factored; it is made anew when the geometry that it follows has gone far from there. */
-export function preconditionerAt(model: ModelHessian, x: Coordinates): Preconditioner {
-  let matrix = blockMatrix(model.room.pattern);
-  const work = new Float64Array(x.length);
-  const made = new Float64Array(x.length);
-  make(x);
+/** Coordinates of one kind with the blocks of the matrix that they add to: for atoms p >= q of a row, twice the offset, plus 1 if q is its row. */
+interface Placed {
+  readonly atoms: Int32Array;
+  readonly blocks: Int32Array;
+}
+
+/**
+ * The model Hessian of a molecule as a preconditioner, for a free relaxation or for one with the torsion `driven` held.
+ * It is made at the first geometry that it follows, and anew whenever an atom has gone far from there.
+ */
+export function modelHessian(molecule: Molecule, driven: Torsion | null = null): Required<Preconditioner> {
+  const model = modelCoordinates(molecule, driven);
+  const { atomCount, bonds, angles, torsions, differences, planes } = model;
+  const couplings = couplingsOf(model);
+  const shift = model.fragments > 1 ? SHIFT_BETWEEN_FRAGMENTS : SHIFT;
+  const work = new Float64Array(3 * atomCount);
+  const made = new Float64Array(3 * atomCount).fill(Number.NaN);
+  const rho = new Float64Array(bonds.length / 2);
+  let room = new Set<number>();
+  let matrix = blockMatrix(blockPattern(atomCount, couplings));
+  let placed = place(matrix.pattern);
+
+  function place(pattern: BlockPattern) {
+    return {
+      bonds: placedIn(pattern, bonds, 2),
+      angles: placedIn(pattern, angles, 3),
+      torsions: placedIn(pattern, torsions, 4),
+      planes: placedIn(pattern, planes, 4),
+      differences: differences.map(({ atoms }) => placedIn(pattern, atoms, atoms.length)),
+    };
+  }
+
+  function make(x: Coordinates): void {
+    made.set(x);
+    const contacts = contactsAt(model.contactKinds, model.bonded, x);
+    if (!hasRoom(contacts)) {
+      const near = contactsAt(model.contactKinds, model.bonded, x, ROOM);
+      room = new Set(keysOf(near));
+      matrix = blockMatrix(blockPattern(atomCount, [...couplings, ...near]));
+      placed = place(matrix.pattern);
+    }
+    const { values, pattern } = matrix;
+    values.fill(0);
+    for (let d = 0; d < 9 * atomCount; d += 9) values[d] = values[d + 4] = values[d + 8] = shift;
+    addContacts(model, placedIn(pattern, Int32Array.from(contacts), 2), x, values);
+    addStretches(model, placed.bonds, x, rho, values);
+    addBends(model, placed.angles, x, rho, values);
+    addTorsions(model, placed.torsions, x, values);
+    addDifferences(model, placed.differences, x, values);
+    addPlanes(placed.planes, x, values);
+    factorise(matrix, 1e-3 * shift);
+  }
+
+  function hasRoom(contacts: readonly number[]): boolean {
+    for (let n = 0; n < contacts.length; n += 2) if (!room.has(contacts[n] * atomCount + contacts[n + 1])) return false;
+    return true;
+  }
+
+  function keysOf(pairs: readonly number[]): number[] {
+    return pairs.flatMap((i, n) => (n % 2 === 0 ? i * atomCount + pairs[n + 1] : []));
+  }
+
   return {
     solve: (v, out) => solveFactorised(matrix, v, out, work),
-    follow: (now) => {
-      for (let k = 0; k < now.length; k++)
-        if (Math.abs(now[k] - made[k]) > STALE) {
-          make(now);
+    follow: (x) => {
+      for (let k = 0; k < x.length; k++)
+        if (!(Math.abs(x[k] - made[k]) <= STALE)) {
+          make(x);
           return true;
         }
       return false;
     },
   };
+}
 
-  function make(at: Coordinates): void {
-    made.set(at);
-    const { pairs, stiffness } = contactsAt(model.atoms, model.bonded, at);
-    const pattern = patternFor(model, pairs);
-    if (pattern !== matrix.pattern) matrix = blockMatrix(pattern);
-    else {
-      matrix.below.fill(0);
-      matrix.diagonal.fill(0);
+/** Pairs of atoms, flat, that share a coordinate. */
+function couplingsOf({ bonds, angles, torsions, differences }: ModelCoordinates): number[] {
+  const pairs = [...bonds];
+  for (let n = 0; n < angles.length; n += 3) pairs.push(angles[n], angles[n + 2]);
+  for (let n = 0; n < torsions.length; n += 4) pairs.push(torsions[n], torsions[n + 3]);
+  for (const { atoms } of differences) for (const i of atoms) for (const j of atoms) if (i < j) pairs.push(i, j);
+  return pairs;
+}
+
+function placedIn(pattern: BlockPattern, atoms: Int32Array, width: number): Placed {
+  const rows = atoms.length / width;
+  const blocks = new Int32Array((rows * width * (width + 1)) / 2);
+  let at = 0;
+  for (let n = 0; n < atoms.length; n += width)
+    for (let p = 0; p < width; p++)
+      for (let q = 0; q <= p; q++) {
+        const { offset, iIsRow } = blockAt(pattern, atoms[n + p], atoms[n + q]);
+        blocks[at++] = 2 * offset + (iIsRow ? 0 : 1);
+      }
+  return { atoms, blocks };
+}
+
+/** Adds k g g^T for a coordinate with the gradient g at `count` atoms, whose blocks start at `at`. */
+function addCoordinate(values: Float64Array, blocks: Int32Array, at: number, count: number, g: Float64Array, k: number): void {
+  for (let p = 0, n = at; p < count; p++)
+    for (let q = 0; q <= p; q++, n++) {
+      const flipped = blocks[n] & 1;
+      const row = flipped ? 3 * q : 3 * p;
+      const column = flipped ? 3 * p : 3 * q;
+      const o = blocks[n] >> 1;
+      const c0 = k * g[column],
+        c1 = k * g[column + 1],
+        c2 = k * g[column + 2];
+      const r0 = g[row],
+        r1 = g[row + 1],
+        r2 = g[row + 2];
+      values[o] += r0 * c0;
+      values[o + 1] += r0 * c1;
+      values[o + 2] += r0 * c2;
+      values[o + 3] += r1 * c0;
+      values[o + 4] += r1 * c1;
+      values[o + 5] += r1 * c2;
+      values[o + 6] += r2 * c0;
+      values[o + 7] += r2 * c1;
+      values[o + 8] += r2 * c2;
     }
-    for (let d = 0; d < matrix.diagonal.length; d += 9) for (let k = 0; k < 9; k += 4) matrix.diagonal[d + k] = model.shift;
-    addContacts(pairs, stiffness, at, matrix);
-    addStretches(model, at, matrix);
-    addBends(model, at, matrix);
-    addTorsions(model, at, matrix);
-    addPlanes(model, at, matrix);
-    factorise(matrix, 1e-3 * model.shift);
-  }
 }
 
-/** The pattern that has room for the contacts: the last one if they all are in it, a new one otherwise. */
-function patternFor(model: ModelHessian, pairs: readonly number[]): BlockPattern {
-  const { room } = model;
-  const count = model.period.length;
-  const keys: number[] = [];
-  for (let n = 0; n < pairs.length; n += 2) keys.push(pairs[n] * count + pairs[n + 1]);
-  if (keys.every((key) => room.contacts.has(key))) return room.pattern;
-  // contacts come and go along a scan: what was met before keeps its room, until most of that lies idle
-  const kept = room.contacts.size > 2 * keys.length + 20 ? [] : room.contacts;
-  room.contacts = new Set([...kept, ...keys]);
-  room.pattern = blockPattern(count, [...model.couplings, ...[...room.contacts].flatMap((key) => [Math.floor(key / count), key % count])]);
-  return room.pattern;
-}
+/** Gradient of the coordinate at hand; no coordinate has more than eight atoms. */
+const gradient = new Float64Array(24);
+const slope = new Float64Array(12);
 
-function addContacts(pairs: readonly number[], stiffness: readonly number[], x: Coordinates, matrix: BlockMatrix): void {
-  const gradient = new Float64Array(6);
-  stiffness.forEach((k, n) => {
-    unitVector(x, pairs[2 * n], pairs[2 * n + 1], gradient);
-    for (let m = 0; m < 3; m++) gradient[m + 3] = -gradient[m];
-    addCoordinate(matrix, pairs, 2 * n, 2, gradient, k);
-  });
-}
-
-/** Lindh's rho of the atoms i and j. */
-function decay({ period }: ModelHessian, x: Coordinates, i: number, j: number): number {
-  const low = Math.min(period[i], period[j]);
-  const high = Math.max(period[i], period[j]);
-  const row = low === 1 ? high - 1 : low + high - 1;
+/** Writes the gradient of the distance of i and j and returns the distance. */
+function stretchGradient(x: Coordinates, i: number, j: number): number {
   const dx = x[3 * i] - x[3 * j],
     dy = x[3 * i + 1] - x[3 * j + 1],
     dz = x[3 * i + 2] - x[3 * j + 2];
-  const rho = Math.exp(ALPHA[row] * (REFERENCE[row] ** 2 - (dx * dx + dy * dy + dz * dz) / BOHR ** 2));
-  return Math.min(Math.max(rho, LEAST_DECAY), MOST_DECAY);
-}
-
-/** Adds k g g^T for an internal coordinate with the gradient g, 3 values for each of `count` atoms from `atoms[at]` on. */
-function addCoordinate(matrix: BlockMatrix, atoms: ArrayLike<number>, at: number, count: number, gradient: Float64Array, k: number): void {
-  for (let p = 0; p < count; p++)
-    for (let q = 0; q <= p; q++) addOuterProduct(matrix, atoms[at + p], atoms[at + q], gradient, gradient, 3 * p, 3 * q, k);
-}
-
-function addStretches(model: ModelHessian, x: Coordinates, matrix: BlockMatrix): void {
-  const gradient = new Float64Array(6);
-  for (let n = 0; n < model.bonds.length; n += 2) {
-    const i = model.bonds[n];
-    const j = model.bonds[n + 1];
-    unitVector(x, i, j, gradient);
-    for (let k = 0; k < 3; k++) gradient[k + 3] = -gradient[k];
-    addCoordinate(matrix, model.bonds, n, 2, gradient, STRETCH * decay(model, x, i, j));
-  }
-}
-
-/** Writes the unit vector from j to i into out[0..2] and returns the distance. */
-function unitVector(x: Coordinates, i: number, j: number, out: Float64Array): number {
-  const dx = x[3 * i] - x[3 * j],
-    dy = x[3 * i + 1] - x[3 * j + 1],
-    dz = x[3 * i + 2] - x[3 * j + 2];
-  const r = Math.max(Math.hypot(dx, dy, dz), 1e-3);
-  out[0] = dx / r;
-  out[1] = dy / r;
-  out[2] = dz / r;
+  const r = Math.max(Math.sqrt(dx * dx + dy * dy + dz * dz), 1e-3);
+  gradient[0] = dx / r;
+  gradient[1] = dy / r;
+  gradient[2] = dz / r;
+  gradient[3] = -gradient[0];
+  gradient[4] = -gradient[1];
+  gradient[5] = -gradient[2];
   return r;
 }
 
-/** Sine of an angle below which it counts as straight and bends in two directions. */
-const STRAIGHT = 0.17;
+function addContacts({ contactKinds }: ModelCoordinates, { atoms, blocks }: Placed, x: Coordinates, values: Float64Array): void {
+  for (let n = 0; n < atoms.length; n += 2) {
+    const r = stretchGradient(x, atoms[n], atoms[n + 1]);
+    addCoordinate(values, blocks, (3 * n) / 2, 2, gradient, contactStiffness(contactKinds[atoms[n]], contactKinds[atoms[n + 1]], r));
+  }
+}
 
-function addBends(model: ModelHessian, x: Coordinates, matrix: BlockMatrix): void {
-  const u = new Float64Array(3);
-  const v = new Float64Array(3);
-  const gradient = new Float64Array(9);
-  for (let n = 0; n < model.angles.length; n += 3) {
-    const i = model.angles[n],
-      j = model.angles[n + 1],
-      k = model.angles[n + 2];
-    const force = BEND * decay(model, x, i, j) * decay(model, x, j, k);
-    const ri = unitVector(x, i, j, u);
-    const rk = unitVector(x, k, j, v);
-    const cosine = u[0] * v[0] + u[1] * v[1] + u[2] * v[2];
+/** Also writes each bond's rho. */
+function addStretches(
+  { period }: ModelCoordinates,
+  { atoms, blocks }: Placed,
+  x: Coordinates,
+  rho: Float64Array,
+  values: Float64Array,
+): void {
+  for (let n = 0; n < atoms.length; n += 2) {
+    const i = atoms[n],
+      j = atoms[n + 1];
+    const r = stretchGradient(x, i, j) / BOHR;
+    const low = Math.min(period[i], period[j]);
+    const row = low === 1 ? Math.max(period[i], period[j]) - 1 : period[i] + period[j] - 1;
+    const decay = Math.exp(ALPHA[row] * (REFERENCE[row] * REFERENCE[row] - r * r));
+    rho[n / 2] = Math.min(Math.max(decay, LEAST_DECAY), MOST_DECAY);
+    addCoordinate(values, blocks, (3 * n) / 2, 2, gradient, STRETCH * rho[n / 2]);
+  }
+}
+
+function addBends(
+  { angleBonds }: ModelCoordinates,
+  { atoms, blocks }: Placed,
+  x: Coordinates,
+  rho: Float64Array,
+  values: Float64Array,
+): void {
+  for (let n = 0, bond = 0, at = 0; n < atoms.length; n += 3, bond += 2, at += 6) {
+    const force = BEND * rho[angleBonds[bond]] * rho[angleBonds[bond + 1]];
+    const i = 3 * atoms[n],
+      j = 3 * atoms[n + 1],
+      k = 3 * atoms[n + 2];
+    let ux = x[i] - x[j],
+      uy = x[i + 1] - x[j + 1],
+      uz = x[i + 2] - x[j + 2];
+    let vx = x[k] - x[j],
+      vy = x[k + 1] - x[j + 1],
+      vz = x[k + 2] - x[j + 2];
+    const ru = Math.max(Math.sqrt(ux * ux + uy * uy + uz * uz), 1e-3),
+      rv = Math.max(Math.sqrt(vx * vx + vy * vy + vz * vz), 1e-3);
+    ux /= ru;
+    uy /= ru;
+    uz /= ru;
+    vx /= rv;
+    vy /= rv;
+    vz /= rv;
+    const cosine = ux * vx + uy * vy + uz * vz;
     const sine = Math.sqrt(Math.max(0, 1 - cosine * cosine));
     if (sine > STRAIGHT) {
-      for (let m = 0; m < 3; m++) {
-        gradient[m] = (cosine * u[m] - v[m]) / (ri * sine);
-        gradient[m + 6] = (cosine * v[m] - u[m]) / (rk * sine);
-        gradient[m + 3] = -gradient[m] - gradient[m + 6];
-      }
-      addCoordinate(matrix, model.angles, n, 3, gradient, force);
-    } else {
-      // a straight angle bends alike in every plane through it: the sum over two directions e is the projector I - u u^T
-      for (let m = 0; m < 3; m++) {
-        for (let o = 0; o < 3; o++) {
-          const e = (m === o ? 1 : 0) - u[m] * u[o];
-          gradient[o] = e / ri;
-          gradient[o + 6] = (-Math.sign(cosine) * e) / rk;
-          gradient[o + 3] = -gradient[o] - gradient[o + 6];
-        }
-        addCoordinate(matrix, model.angles, n, 3, gradient, force);
-      }
-    }
-  }
-}
-
-/** Below this angle (radian) at a middle atom, from 0 or from pi, a torsion is left out. */
-const TORSION_UNDEFINED = 0.2;
-
-function addTorsions(model: ModelHessian, x: Coordinates, matrix: BlockMatrix): void {
-  const { torsions, driven } = model;
-  const gradient = new Float64Array(12);
-  const atoms = new Int32Array(8);
-  const difference = new Float64Array(24);
-  for (let n = 0; n < torsions.length; n += 4) {
-    const a = torsions[n],
-      b = torsions[n + 1],
-      c = torsions[n + 2],
-      d = torsions[n + 3];
-    if (bent(x, a, b, c) < TORSION_UNDEFINED || bent(x, b, c, d) < TORSION_UNDEFINED) continue;
-    const force = model.torsionForces[n / 4];
-    torsionGradient(x, a, b, c, d, gradient);
-    if (!driven || !sameAxis(b, c, driven)) {
-      addCoordinate(matrix, torsions, n, 4, gradient, force);
+      const perU = 1 / (ru * sine),
+        perV = 1 / (rv * sine);
+      gradient[0] = (cosine * ux - vx) * perU;
+      gradient[1] = (cosine * uy - vy) * perU;
+      gradient[2] = (cosine * uz - vz) * perU;
+      gradient[6] = (cosine * vx - ux) * perV;
+      gradient[7] = (cosine * vy - uy) * perV;
+      gradient[8] = (cosine * vz - uz) * perV;
+      for (let m = 0; m < 3; m++) gradient[m + 3] = -gradient[m] - gradient[m + 6];
+      addCoordinate(values, blocks, at, 3, gradient, force);
       continue;
     }
-    // held with the driven torsion: only the difference of the two is free to change (a torsion is the same from either end)
-    let count = 4;
-    for (let p = 0; p < 4; p++) {
-      atoms[p] = torsions[n + p];
-      for (let k = 0; k < 3; k++) difference[3 * p + k] = gradient[3 * p + k];
-    }
-    torsionGradient(x, driven[0], driven[1], driven[2], driven[3], gradient);
-    for (let p = 0; p < 4; p++) {
-      let to = 0;
-      while (to < count && atoms[to] !== driven[p]) to++;
-      if (to === count) {
-        atoms[count++] = driven[p];
-        difference.fill(0, 3 * to, 3 * to + 3);
+    // a straight angle bends alike in every plane through it: the sum over two directions is the projector I - u u^T
+    const u = [ux, uy, uz];
+    for (let m = 0; m < 3; m++) {
+      for (let o = 0; o < 3; o++) {
+        const across = (m === o ? 1 : 0) - u[m] * u[o];
+        gradient[o] = across / ru;
+        gradient[o + 6] = (-Math.sign(cosine) * across) / rv;
+        gradient[o + 3] = -gradient[o] - gradient[o + 6];
       }
-      for (let k = 0; k < 3; k++) difference[3 * to + k] -= gradient[3 * p + k];
+      addCoordinate(values, blocks, at, 3, gradient, force);
     }
-    addCoordinate(matrix, atoms, 0, count, difference, force);
   }
 }
 
-function addPlanes({ planes }: ModelHessian, x: Coordinates, matrix: BlockMatrix): void {
-  const gradient = new Float64Array(12);
-  for (let n = 0; n < planes.length; n += 4) {
-    const [c, p, q, r] = [3 * planes[n], 3 * planes[n + 1], 3 * planes[n + 2], 3 * planes[n + 3]];
+/** Whether a torsion's gradient in the first 12 values of `g` comes from angles that are not nearly straight. */
+function isBent(g: Float64Array): boolean {
+  return g[0] * g[0] + g[1] * g[1] + g[2] * g[2] < STEEP && g[9] * g[9] + g[10] * g[10] + g[11] * g[11] < STEEP;
+}
+
+function addTorsions({ torsionForces }: ModelCoordinates, { atoms, blocks }: Placed, x: Coordinates, values: Float64Array): void {
+  for (let n = 0, row = 0; n < atoms.length; n += 4, row++) {
+    torsionGradient(x, atoms[n], atoms[n + 1], atoms[n + 2], atoms[n + 3], gradient);
+    if (isBent(gradient)) addCoordinate(values, blocks, 10 * row, 4, gradient, torsionForces[row]);
+  }
+}
+
+/** With the driven torsion held, the others about its axis can change only by what they differ from it (a torsion is the same from either end). */
+function addDifferences({ differences, driven }: ModelCoordinates, placed: readonly Placed[], x: Coordinates, values: Float64Array): void {
+  if (!driven) return;
+  differences.forEach(({ torsion, atoms, placeOfDriven, force }, n) => {
+    gradient.fill(0);
+    torsionGradient(x, torsion[0], torsion[1], torsion[2], torsion[3], gradient);
+    torsionGradient(x, driven[0], driven[1], driven[2], driven[3], slope);
+    if (!isBent(gradient) || !isBent(slope)) return;
+    placeOfDriven.forEach((place, p) => {
+      for (let k = 0; k < 3; k++) gradient[3 * place + k] -= slope[3 * p + k];
+    });
+    addCoordinate(values, placed[n].blocks, 0, atoms.length, gradient, force);
+  });
+}
+
+function addPlanes({ atoms, blocks }: Placed, x: Coordinates, values: Float64Array): void {
+  for (let n = 0, at = 0; n < atoms.length; n += 4, at += 10) {
+    const c = 3 * atoms[n],
+      p = 3 * atoms[n + 1],
+      q = 3 * atoms[n + 2],
+      r = 3 * atoms[n + 3];
     const ux = x[q] - x[p],
       uy = x[q + 1] - x[p + 1],
       uz = x[q + 2] - x[p + 2];
@@ -357,7 +315,7 @@ function addPlanes({ planes }: ModelHessian, x: Coordinates, matrix: BlockMatrix
     const wx = x[c] - x[p],
       wy = x[c + 1] - x[p + 1],
       wz = x[c + 2] - x[p + 2];
-    let nx = uy * vz - uz * vy,
+    const nx = uy * vz - uz * vy,
       ny = uz * vx - ux * vz,
       nz = ux * vy - uy * vx;
     const square = nx * nx + ny * ny + nz * nz;
@@ -366,23 +324,14 @@ function addPlanes({ planes }: ModelHessian, x: Coordinates, matrix: BlockMatrix
     const weightR = ((uy * wz - uz * wy) * nx + (uz * wx - ux * wz) * ny + (ux * wy - uy * wx) * nz) / square;
     const weightQ = ((wy * vz - wz * vy) * nx + (wz * vx - wx * vz) * ny + (wx * vy - wy * vx) * nz) / square;
     const length = Math.sqrt(square);
-    nx /= length;
-    ny /= length;
-    nz /= length;
-    [1, weightQ + weightR - 1, -weightQ, -weightR].forEach((weight, m) => {
-      gradient[3 * m] = weight * nx;
-      gradient[3 * m + 1] = weight * ny;
-      gradient[3 * m + 2] = weight * nz;
-    });
-    addCoordinate(matrix, planes, n, 4, gradient, OUT_OF_PLANE);
+    gradient[0] = nx / length;
+    gradient[1] = ny / length;
+    gradient[2] = nz / length;
+    for (let k = 0; k < 3; k++) {
+      gradient[3 + k] = (weightQ + weightR - 1) * gradient[k];
+      gradient[6 + k] = -weightQ * gradient[k];
+      gradient[9 + k] = -weightR * gradient[k];
+    }
+    addCoordinate(values, blocks, at, 4, gradient, OUT_OF_PLANE);
   }
-}
-
-function bent(x: Coordinates, i: number, j: number, k: number): number {
-  const at = angle(x, i, j, k);
-  return Math.min(at, Math.PI - at);
-}
-
-function sameAxis(b: number, c: number, driven: Torsion): boolean {
-  return (b === driven[1] && c === driven[2]) || (b === driven[2] && c === driven[1]);
 }

@@ -2,8 +2,8 @@
 import { type Coordinates, type Molecule, radians } from '@tordial/geometry';
 import { drive } from './drive.js';
 import { checkBent, type DrivenRotor, drivenRotor, heldAt, rigidTorque } from './driven-rotor.js';
-import { checkSizes, type MinimiseOptions, minimise, type Relaxed } from './minimise.js';
-import { type ModelHessian, modelHessian, preconditionerAt } from './model-hessian.js';
+import { checkSizes, type MinimiseOptions, minimise, type Preconditioner, type Relaxed } from './minimise.js';
+import { modelHessian } from './model-hessian.js';
 import type { Calculation, Potential } from './potential.js';
 import type { Torsion } from './rotors/defining-torsion.js';
 
@@ -15,14 +15,14 @@ export interface RelaxedAt extends Relaxed {
 export type RelaxAtOptions = Omit<MinimiseOptions, 'constraint'>;
 
 /**
- * Relaxes `start` with the rotor held at `angle` (radian). `model` is the molecule's model Hessian with this torsion driven.
+ * Relaxes `start` with the rotor held at `angle` (radian). The preconditioner must be one for this constraint, as `modelHessian` with the rotor's torsion is.
  *
  * The torque is that of turning side b rigidly at the relaxed geometry. There g = lambda dphi/dx with the multiplier lambda, and the rigid
  * turn t has t . dphi/dx = 1, so g . t = lambda, which by the envelope theorem is the slope of the relaxed energy.
  */
 export function* relaxationAt(
   rotor: DrivenRotor,
-  model: ModelHessian,
+  preconditioner: Preconditioner,
   angle: number,
   start: Coordinates,
   options: RelaxAtOptions = {},
@@ -31,7 +31,7 @@ export function* relaxationAt(
   const constraint = heldAt(rotor, angle);
   const x = start.slice();
   constraint.retract(x);
-  const relaxed = yield* minimise(x, preconditionerAt(model, x), { ...options, constraint });
+  const relaxed = yield* minimise(x, preconditioner, { ...options, constraint });
   checkBent(rotor, relaxed.coordinates);
   return { ...relaxed, torque: rigidTorque(rotor, relaxed.coordinates, relaxed.gradient) };
 }

@@ -9,8 +9,8 @@ import { type Coordinates, degrees, type Molecule, type Note, radians, TordialEr
 import { type Branches, branches, type Direction, enter, type HeldMinimum, joined, lead, lowest, mirrored, next } from './branches.js';
 import { drive, driveAsync } from './drive.js';
 import { checkBent, type DrivenRotor, drivenRotor, intoRotorFrame, rigidTorque, rotorAngle, turnTo } from './driven-rotor.js';
-import { checkSizes } from './minimise.js';
-import { type ModelHessian, modelHessian } from './model-hessian.js';
+import { checkSizes, MEMORY, type Preconditioner } from './minimise.js';
+import { modelHessian } from './model-hessian.js';
 import { neighbouringRotors, turnedNeighbours } from './neighbouring-rotors.js';
 import { invertedNitrogens } from './nitrogen-inversion.js';
 import type { Abortable, AsyncPotential, Calculation, Potential } from './potential.js';
@@ -19,6 +19,7 @@ import { type BranchEnd, type CurvePoint, profileCurve } from './profile-curve.j
 import { refinedExtrema, type StationaryPoint } from './refined-extrema.js';
 import { relaxationAt } from './relax-at.js';
 import type { Torsion } from './rotors/defining-torsion.js';
+import { forget, type SecantMemory, secantMemory } from './secant-memory.js';
 
 export interface ScanProgress {
   /** Steps done, and those in sight: `total` can grow or shrink as branches are found or turn out to be known. */
@@ -195,18 +196,23 @@ function report(scan: Scan, angle: number, energy: number, total: number): void 
   scan.options.onProgress?.({ done: scan.done, total: Math.max(total, scan.done), angle, energy });
 }
 
-/** A relaxed scan at work: the branches found so far, and the model Hessian that serves every relaxation. */
+/** A relaxed scan at work: the branches found so far, and what serves every relaxation. */
 interface Search {
   readonly scan: Scan;
-  readonly model: ModelHessian;
+  readonly preconditioner: Preconditioner;
+  readonly memory: SecantMemory;
   readonly map: Branches;
 }
 
 function* relaxedScan(scan: Scan): Calculation<Profile> {
   const { rotor, angles, options, molecule } = scan;
-  const model = modelHessian(molecule, rotor.torsion);
   const mirror = options.search !== 'sweep' && (yield* mirrorImagesAreAlike(scan));
-  const search: Search = { scan, model, map: branches(angles.length, mirror ? oppositePlaces(angles) : null) };
+  const search: Search = {
+    scan,
+    preconditioner: modelHessian(molecule, rotor.torsion),
+    memory: secantMemory(3 * molecule.atomCount, MEMORY),
+    map: branches(angles.length, mirror ? oppositePlaces(angles) : null),
+  };
   if (options.search === 'sweep') yield* singleSweep(search);
   else yield* searchEnvelope(search);
 
@@ -258,12 +264,20 @@ interface RelaxedHeld {
   readonly converged: boolean;
 }
 
-function* relaxed1({ scan, model }: Search, angle: number, start: Coordinates): Calculation<RelaxedHeld> {
+function* relaxed1({ scan, preconditioner, memory }: Search, angle: number, start: Coordinates): Calculation<RelaxedHeld> {
   scan.options.signal?.throwIfAborted();
-  const { energy, torque, coordinates, gradientMax, converged, evaluations } = yield* relaxationAt(scan.rotor, model, angle, start, {
-    tolerance: scan.tolerance,
-    maxEvaluations: scan.options.maxEvaluations,
-  });
+  forget(memory);
+  const { energy, torque, coordinates, gradientMax, converged, evaluations } = yield* relaxationAt(
+    scan.rotor,
+    preconditioner,
+    angle,
+    start,
+    {
+      memory,
+      tolerance: scan.tolerance,
+      maxEvaluations: scan.options.maxEvaluations,
+    },
+  );
   scan.evaluations += evaluations;
   intoRotorFrame(scan.rotor, coordinates);
   return { energy, torque, coordinates, gradientMax, converged };
