@@ -38,6 +38,14 @@ export function linearAngleBending(cosine: number, force: number): number {
   return KCAL_PER_MDYN_ANGSTROM * force * (1 + cosine);
 }
 
+/**
+ * The angle in radians, 0 to pi, whose cosine and (positive) sine are given. The arc cosine is fast but loses its digits near a
+ * straight angle, where the sine has them.
+ */
+export function angleFrom(cosine: number, sine: number): number {
+  return Math.abs(cosine) < 0.99 ? Math.acos(cosine) : Math.atan2(sine, cosine);
+}
+
 /** Adds the gradient (kcal/mol/angstrom) of every angle to `gradient` and returns the energy (kcal/mol). */
 export function addAngleBending(table: AngleBendingTable, x: Float64Array, gradient: Float64Array): number {
   const { angle, force, linear } = table;
@@ -45,30 +53,30 @@ export function addAngleBending(table: AngleBendingTable, x: Float64Array, gradi
   for (let n = 0; n < angle.length; n++) {
     const i = table.i[n], j = table.j[n], k = table.k[n];
 
-    // unit vectors u, v from the centre to both ends
-    let ux = x[i] - x[j], uy = x[i + 1] - x[j + 1], uz = x[i + 2] - x[j + 2];
-    let vx = x[k] - x[j], vy = x[k + 1] - x[j + 1], vz = x[k + 2] - x[j + 2];
-    const perU = 1 / Math.max(Math.sqrt(ux * ux + uy * uy + uz * uz), 1e-12);
-    const perV = 1 / Math.max(Math.sqrt(vx * vx + vy * vy + vz * vz), 1e-12);
-    ux *= perU; uy *= perU; uz *= perU;
-    vx *= perV; vy *= perV; vz *= perV;
-    const cosine = ux * vx + uy * vy + uz * vz;
-
-    // dE/dcos comes with u(u.v) - v = u x (u x v), whose length is the sine: the cross product keeps its digits near a straight angle
+    // u, v from the centre to both ends, w = u x v of length |u| |v| sin theta
+    const ux = x[i] - x[j], uy = x[i + 1] - x[j + 1], uz = x[i + 2] - x[j + 2];
+    const vx = x[k] - x[j], vy = x[k + 1] - x[j + 1], vz = x[k + 2] - x[j + 2];
     const wx = uy * vz - uz * vy, wy = uz * vx - ux * vz, wz = ux * vy - uy * vx;
-    let perCosine: number;
+    const u2 = ux * ux + uy * uy + uz * uz, v2 = vx * vx + vy * vy + vz * vz;
+    // 1 / |u| |v|; two atoms on one spot have no direction
+    const perUV = 1 / Math.sqrt(u2 * v2 + 1e-24);
+    const cosine = (ux * vx + uy * vy + uz * vz) * perUV;
+
+    // -dE/dcos
+    let slope: number;
     if (linear[n]) {
       energy += linearAngleBending(cosine, force[n]);
-      perCosine = -KCAL_PER_MDYN_ANGSTROM * force[n];
+      slope = -KCAL_PER_MDYN_ANGSTROM * force[n];
     } else {
       // a straight angle has no defined direction of bending: its sine is kept away from zero, its force vanishes there
-      const sine = Math.max(Math.sqrt(wx * wx + wy * wy + wz * wz), 1e-12);
-      const dtheta = DEGREES * Math.atan2(sine, cosine) - angle[n];
+      const sine = Math.sqrt(wx * wx + wy * wy + wz * wz) * perUV + 1e-12;
+      const dtheta = DEGREES * angleFrom(cosine, sine) - angle[n];
       energy += angleBending(dtheta, force[n]);
-      perCosine = (KCAL_PER_DEGREE_SQUARED * DEGREES * force[n] * dtheta * (1 + 1.5 * CUBIC * dtheta)) / sine;
+      slope = (KCAL_PER_DEGREE_SQUARED * DEGREES * force[n] * dtheta * (1 + 1.5 * CUBIC * dtheta)) / sine;
     }
 
-    const toI = perCosine * perU, toK = perCosine * perV;
+    // -dcos/du = u x w / u^2 |u| |v|: the cross product keeps its digits near a straight angle
+    const toI = slope * perUV * perUV * perUV * v2, toK = slope * perUV * perUV * perUV * u2;
     const gix = toI * (uy * wz - uz * wy), giy = toI * (uz * wx - ux * wz), giz = toI * (ux * wy - uy * wx);
     const gkx = toK * (wy * vz - wz * vy), gky = toK * (wz * vx - wx * vz), gkz = toK * (wx * vy - wy * vx);
     gradient[i] += gix; gradient[i + 1] += giy; gradient[i + 2] += giz;

@@ -36,7 +36,7 @@ export function addBondStretching(table: BondStretchingTable, x: Float64Array, g
     const i = table.i[n], j = table.j[n];
     const dx = x[i] - x[j], dy = x[i + 1] - x[j + 1], dz = x[i + 2] - x[j + 2];
     // two atoms on one spot have no direction to part in
-    const r = Math.max(Math.sqrt(dx * dx + dy * dy + dz * dz), 1e-12);
+    const r = Math.sqrt(dx * dx + dy * dy + dz * dz + 1e-24);
     const dr = r - length[n];
     energy += bondStretching(dr, force[n]);
 

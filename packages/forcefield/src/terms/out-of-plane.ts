@@ -36,33 +36,29 @@ export function addOutOfPlane(table: OutOfPlaneTable, x: Float64Array, gradient:
   for (let n = 0; n < force.length; n++) {
     const i = table.i[n], j = table.j[n], k = table.k[n], l = table.l[n];
 
-    // unit vectors u, v, w from the centre to i, k, l
-    let ux = x[i] - x[j], uy = x[i + 1] - x[j + 1], uz = x[i + 2] - x[j + 2];
-    let vx = x[k] - x[j], vy = x[k + 1] - x[j + 1], vz = x[k + 2] - x[j + 2];
+    // u, v from the centre to i and k, w of unit length from the centre to l
+    const ux = x[i] - x[j], uy = x[i + 1] - x[j + 1], uz = x[i + 2] - x[j + 2];
+    const vx = x[k] - x[j], vy = x[k + 1] - x[j + 1], vz = x[k + 2] - x[j + 2];
     let wx = x[l] - x[j], wy = x[l + 1] - x[j + 1], wz = x[l + 2] - x[j + 2];
-    const perU = 1 / Math.max(Math.sqrt(ux * ux + uy * uy + uz * uz), 1e-12);
-    const perV = 1 / Math.max(Math.sqrt(vx * vx + vy * vy + vz * vz), 1e-12);
-    const perW = 1 / Math.max(Math.sqrt(wx * wx + wy * wy + wz * wz), 1e-12);
-    ux *= perU; uy *= perU; uz *= perU;
-    vx *= perV; vy *= perV; vz *= perV;
+    const perW = 1 / Math.sqrt(wx * wx + wy * wy + wz * wz + 1e-24);
     wx *= perW; wy *= perW; wz *= perW;
 
     // unit normal m of the plane; three atoms in a line span none, their area is kept away from zero
     let mx = uy * vz - uz * vy, my = uz * vx - ux * vz, mz = ux * vy - uy * vx;
-    const perArea = 1 / Math.max(Math.sqrt(mx * mx + my * my + mz * mz), 1e-6);
+    const perArea = 1 / Math.sqrt(mx * mx + my * my + mz * mz + 1e-18);
     mx *= perArea; my *= perArea; mz *= perArea;
     const sine = Math.min(Math.max(mx * wx + my * wy + mz * wz, -1), 1);
     const chi = DEGREES * Math.asin(sine);
     energy += outOfPlane(chi, force[n]);
 
     // dE/dsine: a bond upright on the plane has no side to fall to, its cosine is kept away from zero
-    const perSine = (KCAL_PER_DEGREE_SQUARED * DEGREES * force[n] * chi) / Math.max(Math.sqrt(1 - sine * sine), 1e-6);
-    // w' = w - sine m lies in the plane; dsine/du = v x w' / area, dsine/dv = w' x u / area, dsine/dw = m - sine w
+    const perSine = (KCAL_PER_DEGREE_SQUARED * DEGREES * force[n] * chi) / Math.sqrt(1 - sine * sine + 1e-12);
+    // p = w - sine m lies in the plane; dsine/du = v x p / area, dsine/dv = p x u / area, dsine/dw = (m - sine w) / |w|
     const px = wx - sine * mx, py = wy - sine * my, pz = wz - sine * mz;
-    const toI = perSine * perArea * perU, toK = perSine * perArea * perV, toL = perSine * perW;
-    const gix = toI * (vy * pz - vz * py), giy = toI * (vz * px - vx * pz), giz = toI * (vx * py - vy * px);
-    const gkx = toK * (py * uz - pz * uy), gky = toK * (pz * ux - px * uz), gkz = toK * (px * uy - py * ux);
-    const glx = toL * (mx - sine * wx), gly = toL * (my - sine * wy), glz = toL * (mz - sine * wz);
+    const inPlane = perSine * perArea, upright = perSine * perW;
+    const gix = inPlane * (vy * pz - vz * py), giy = inPlane * (vz * px - vx * pz), giz = inPlane * (vx * py - vy * px);
+    const gkx = inPlane * (py * uz - pz * uy), gky = inPlane * (pz * ux - px * uz), gkz = inPlane * (px * uy - py * ux);
+    const glx = upright * (mx - sine * wx), gly = upright * (my - sine * wy), glz = upright * (mz - sine * wz);
     gradient[i] += gix; gradient[i + 1] += giy; gradient[i + 2] += giz;
     gradient[k] += gkx; gradient[k + 1] += gky; gradient[k + 2] += gkz;
     gradient[l] += glx; gradient[l + 1] += gly; gradient[l + 2] += glz;

@@ -8,6 +8,8 @@
  * Source: T. A. Halgren, J. Comput. Chem. 17, 490 (1996), equation 5.
  */
 
+import { angleFrom } from './angle-bending.js';
+
 const KCAL_PER_MDYN_RADIAN = 2.5121;
 const DEGREES = 180 / Math.PI;
 
@@ -42,16 +44,15 @@ export function addStretchBend(table: StretchBendTable, x: Float64Array, gradien
     // unit vectors u, v from the centre to both ends
     let ux = x[i] - x[j], uy = x[i + 1] - x[j + 1], uz = x[i + 2] - x[j + 2];
     let vx = x[k] - x[j], vy = x[k + 1] - x[j + 1], vz = x[k + 2] - x[j + 2];
-    const r_ij = Math.max(Math.sqrt(ux * ux + uy * uy + uz * uz), 1e-12);
-    const r_kj = Math.max(Math.sqrt(vx * vx + vy * vy + vz * vz), 1e-12);
+    const r_ij = Math.sqrt(ux * ux + uy * uy + uz * uz + 1e-24), r_kj = Math.sqrt(vx * vx + vy * vy + vz * vz + 1e-24);
     const perU = 1 / r_ij, perV = 1 / r_kj;
     ux *= perU; uy *= perU; uz *= perU;
     vx *= perV; vy *= perV; vz *= perV;
 
     // a straight angle has no defined direction of bending: its sine is kept away from zero, its force vanishes there
     const wx = uy * vz - uz * vy, wy = uz * vx - ux * vz, wz = ux * vy - uy * vx;
-    const sine = Math.max(Math.sqrt(wx * wx + wy * wy + wz * wz), 1e-12);
-    const dtheta = DEGREES * Math.atan2(sine, ux * vx + uy * vy + uz * vz) - angle[n];
+    const sine = Math.sqrt(wx * wx + wy * wy + wz * wz) + 1e-12;
+    const dtheta = DEGREES * angleFrom(ux * vx + uy * vy + uz * vz, sine) - angle[n];
     const dr_ij = r_ij - length_ij[n], dr_kj = r_kj - length_kj[n];
     energy += stretchBend(dr_ij, dr_kj, dtheta, force_ij[n], force_kj[n]);
 

@@ -43,10 +43,9 @@ export function addTorsions(table: TorsionTable, x: Float64Array, gradient: Floa
     const bx = hy * gz - hz * gy, by = hz * gx - hx * gz, bz = hx * gy - hy * gx;
 
     // three atoms in a line have no dihedral angle: the squared areas are kept away from zero
-    const perA2 = 1 / Math.max(ax * ax + ay * ay + az * az, 1e-12);
-    const perB2 = 1 / Math.max(bx * bx + by * by + bz * bz, 1e-12);
-    const perG2 = 1 / Math.max(gx * gx + gy * gy + gz * gz, 1e-12);
-    const perAB = Math.sqrt(perA2 * perB2), lengthG = Math.sqrt(gx * gx + gy * gy + gz * gz);
+    const perA2 = 1 / (ax * ax + ay * ay + az * az + 1e-18);
+    const perB2 = 1 / (bx * bx + by * by + bz * bz + 1e-18);
+    const g2 = gx * gx + gy * gy + gz * gz + 1e-18, perG2 = 1 / g2, lengthG = Math.sqrt(g2), perAB = Math.sqrt(perA2 * perB2);
     const cosine = (ax * bx + ay * by + az * bz) * perAB;
     // the triple product (b x a) . g / |g| shortened by a = f x g and b . g = 0
     const sine = -(fx * bx + fy * by + fz * bz) * lengthG * perAB;
