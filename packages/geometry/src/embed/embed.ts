@@ -55,6 +55,9 @@ export function embedMany(molecule: Molecule, count: number, { seed = 1, attempt
 /** Atoms from which on a random start is tried first. */
 const LARGE = 50;
 
+/** Times that the strain is lowered when flat bonds turn away from their side meanwhile. */
+const PASSES = 3;
+
 /** Makes structures of one connected molecule; what depends on the bonding alone is worked out once. */
 function embedder(molecule: Molecule): (random: Random, attempts: number) => Coordinates {
   const shapes = atomShapes(molecule);
@@ -88,12 +91,14 @@ function embedder(molecule: Molecule): (random: Random, attempts: number) => Coo
       // drawn distances lead small molecules to a structure more often, a random box large ones: begin with that, then take turns
       const x4 = (attempt % 2 === 0) === atomCount < LARGE ? embedDistances(bounds, random) : randomCoordinates(atomCount, random);
       if (mirrored(x4)) for (let p = 0; p < x4.length; p += 4) x4[p] = -x4[p];
-      descend(loose, x4, { iterations: 200, gradient: 1e-3, decrease: 1e-3 * atomCount, stride: 1 });
-      descend(flattening, x4, { iterations: 100, gradient: 1e-3, decrease: 1e-3 * atomCount, stride: 1 });
+      descend(loose, x4, { iterations: 200, gradient: 1e-3, decrease: 0.03, stride: 1 });
+      descend(flattening, x4, { iterations: 100, gradient: 1e-3, decrease: 0.03, stride: 1 });
       const x = new Float64Array(3 * atomCount);
       for (let i = 0; i < atomCount; i++) for (let c = 0; c < 3; c++) x[3 * i + c] = x4[4 * i + c];
-      turnRound(x);
-      descend(strained, x, { iterations: 300, gradient: 0.3, decrease: 0.02 * atomCount, stride: 0.3 });
+      for (let pass = 0; pass < PASSES; pass++) {
+        if (!turnRound(x) && pass > 0) break;
+        descend(strained, x, { iterations: 600, gradient: 0.3, decrease: 0.3, stride: 0.3 });
+      }
       const fault = structureFault(molecule, ideal, turns, volumes, x);
       if (fault === null) return centred(x);
       reason = fault;
@@ -104,12 +109,16 @@ function embedder(molecule: Molecule): (random: Random, attempts: number) => Coo
     );
   };
 
-  /** Flat bonds outside of rings that came out on the wrong side are turned round: what they then touch, the strain pushes apart. */
-  function turnRound(x: Coordinates): void {
+  /** Flat bonds outside of rings that came out on the wrong side are turned round: what they then touch, the strain pushes apart. Says whether any was. */
+  function turnRound(x: Coordinates): boolean {
+    let turned = false;
     for (const { a, b, atA, atB, cis, side } of turnable) {
       const away = (cis ? 0 : Math.PI) - torsion(x, atA, a, b, atB);
-      if (Math.cos(away) < 0) turnAbout(x, a, b, side, away);
+      if (Math.cos(away) >= 0) continue;
+      turnAbout(x, a, b, side, away);
+      turned = true;
     }
+    return turned;
   }
 
   /** More of the signed volumes have the wrong sign than the right one. */

@@ -11,7 +11,7 @@ const BOND_OFF = 0.2;
 /** Radians beyond the usual spread: sound cages and crowded molecules stay below 0.27, bridges forced into an impossible form begin at 0.4. */
 const ANGLE_OFF = 0.35;
 /** Least distance as a share of the sum of van der Waals radii. */
-const CONTACT_SHARE = 0.55;
+const CONTACT_SHARE = 0.62;
 
 /** The first fault of coordinates x (3 values an atom), or null. */
 export function structureFault(
@@ -33,7 +33,7 @@ export function structureFault(
   }
   for (const { a, b, atA, atB, cis } of flat) {
     const cosine = Math.cos(torsion(x, atA, a, b, atB));
-    if (cis === null ? Math.abs(cosine) < 0.7 : cis ? cosine < 0.5 : cosine > -0.5)
+    if (cis === null ? Math.abs(cosine) < 0.5 : cis ? cosine < 0.5 : cosine > -0.5)
       return `the flat bond ${a}-${b} is turned by ${Math.round((Math.acos(Math.max(-1, Math.min(1, cosine))) * 180) / Math.PI)} degrees`;
   }
   for (const { a, b, atA, atB } of crossed)

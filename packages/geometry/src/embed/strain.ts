@@ -16,7 +16,7 @@ const ANGLE = 55;
 const STRAIGHT = -0.97;
 const OUT_OF_PLANE = 12;
 const VOLUME = 40;
-const CONTACT = 12;
+const CONTACT = 25;
 
 /** The strain (kcal/mol) as a function of x (3 values an atom). */
 export function strain(
