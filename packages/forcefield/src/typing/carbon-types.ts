@@ -22,7 +22,7 @@ export function carbonType(form: ValenceForm, rings: RingMembership, i: number):
       return neighbourByOrder(form, i, 3) >= 0 ? 'CSP' : '=C=';
     case 1: {
       const partner = neighbourByOrder(form, i, 3);
-      if (partner >= 0 && form.element[partner] === N) return 'C%';
+      if (partner >= 0 && form.element[partner] === N && form.degree[partner] === 2) return 'C%';
     }
   }
   throw untypable(form, i, form.charge[i] < 0 ? 'it knows no carbanion' : `${form.degree[i]} neighbours fit no carbon type`);
@@ -32,6 +32,7 @@ function planarCarbonType(form: ValenceForm, rings: RingMembership, i: number): 
   const { element } = form;
   const partner = neighbourByOrder(form, i, 2);
   if (partner < 0) throw untypable(form, i, 'it knows no carbanion');
+  if (terminalCount(form, i, O) === 3) throw untypable(form, i, 'it does not know the carbonate ion');
   if (terminalCount(form, i, O) === 2) return 'CO2M';
   if (terminalCount(form, i, S) === 2) return 'CS2M';
   switch (element[partner]) {
@@ -47,9 +48,10 @@ function planarCarbonType(form: ValenceForm, rings: RingMembership, i: number): 
     case N:
       return nitrogenCarbonType(form, i, partner);
     case S:
-      if (form.degree[partner] === 3) return 'CSO2';
+      if (form.degree[partner] === 1) return elementCount(form, i, N) > 0 ? 'C=SN' : 'C=S';
       if (form.degree[partner] === 2) return 'C=SO';
-      return elementCount(form, i, N) > 0 ? 'C=SN' : 'C=S';
+      if (form.degree[partner] === 3 && terminalCount(form, partner, O) === 2) return 'CSO2';
+      throw untypable(form, i, 'it knows no sulphur ylide');
     case C:
       return inRing(rings, 4, i) ? 'CE4R' : 'C=C';
     case P:

@@ -92,6 +92,7 @@ function twoCoordinateType(form: ValenceForm, i: number): SymbolicType {
     case 4:
       return partner >= 0 ? '=N=' : 'NR%';
     case 3:
+      if (terminalCount(form, i, O) === 2) throw untypable(form, i, 'it does not know the nitrite ion');
       if (element[partner] === O) return 'N=O';
       if (element[partner] === C) return 'N=C';
       if (element[partner] === N) return 'N=N';

@@ -1,5 +1,5 @@
 /** Types of oxygen outside aromatic rings. Source: T. A. Halgren, J. Comput. Chem. 17, 490 (1996), Table III. */
-import { bondBetween, neighboursOf } from '@tordial/geometry';
+import { bondBetween, elementSymbol, neighboursOf } from '@tordial/geometry';
 import type { SymbolicType } from './symbolic-types.js';
 import { elementCount, neighbourByOrder, terminalCount, untypable, type ValenceForm } from './valence-form.js';
 
@@ -85,5 +85,9 @@ function terminalType(form: ValenceForm, types: readonly (SymbolicType | undefin
     case H:
       return 'OM';
   }
-  throw untypable(form, i, 'it knows no terminal oxygen on this neighbour');
+  throw untypable(
+    form,
+    i,
+    `it knows no terminal oxygen on ${elementSymbol(element[centre])}${element[centre] === Cl ? ' but in perchlorate' : ''}`,
+  );
 }

@@ -41,7 +41,8 @@ export function sulphurType(form: ValenceForm, types: readonly (SymbolicType | u
       if (valence[i] !== 4) break;
       if (oxygens === 2) return 'SO2M';
       if (oxygens === 1) return terminalCount(form, i, S) === 1 ? 'SSOM' : 'S=O';
-      return '>S=N';
+      if (oxygens === 0 && form.element[neighbourByOrder(form, i, 2)] === N) return '>S=N';
+      break;
     case 2:
       if (valence[i] === 2) return 'S';
       if (valence[i] === 4 && oxygens > 0) return '=S=O';

@@ -5,7 +5,7 @@
  * writings of one structure must come out the same. A positive S, P or Cl takes a double bond to each negative neighbour, a negative
  * charge on S moves to a terminal atom, and a five-valent nitrogen gives one bond up.
  */
-import { type Molecule, neighboursOf, TordialError } from '@tordial/geometry';
+import { elementSymbol, type Molecule, neighboursOf, TordialError } from '@tordial/geometry';
 
 /** The molecule with bond orders and charges of the one writing that atom types are read from. */
 export interface ValenceForm {
@@ -103,17 +103,6 @@ export function elementCount(form: ValenceForm, i: number, element: number): num
 
 /** The error for an atom that MMFF94 has no type for; the message names the atom and the reason. */
 export function untypable(form: ValenceForm, i: number, reason: string): TordialError {
-  const symbol = ELEMENT_SYMBOLS[form.element[i]] ?? `element ${form.element[i]}`;
+  const symbol = elementSymbol(form.element[i]);
   return new TordialError('mmff94/atom-type', `MMFF94 has no type for atom ${i} (${symbol}): ${reason}`, { atom: i });
 }
-
-// biome-ignore format: one row a period
-const ELEMENT_SYMBOLS = [
-  'dummy', 'H', 'He',
-  'Li', 'Be', 'B', 'C', 'N', 'O', 'F', 'Ne',
-  'Na', 'Mg', 'Al', 'Si', 'P', 'S', 'Cl', 'Ar',
-  'K', 'Ca', 'Sc', 'Ti', 'V', 'Cr', 'Mn', 'Fe', 'Co', 'Ni', 'Cu', 'Zn', 'Ga', 'Ge', 'As', 'Se', 'Br', 'Kr',
-  'Rb', 'Sr', 'Y', 'Zr', 'Nb', 'Mo', 'Tc', 'Ru', 'Rh', 'Pd', 'Ag', 'Cd', 'In', 'Sn', 'Sb', 'Te', 'I', 'Xe',
-  'Cs', 'Ba', 'La', 'Ce', 'Pr', 'Nd', 'Pm', 'Sm', 'Eu', 'Gd', 'Tb', 'Dy', 'Ho', 'Er', 'Tm', 'Yb', 'Lu',
-  'Hf', 'Ta', 'W', 'Re', 'Os', 'Ir', 'Pt', 'Au', 'Hg', 'Tl', 'Pb', 'Bi',
-];
