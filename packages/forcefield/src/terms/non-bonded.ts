@@ -62,21 +62,44 @@ export function nonBondedRows(
   // a pair without strength still needs denominators that are not zero
   const a = new Float64Array(length).fill(1), b = new Float64Array(length).fill(1);
   const d = new Float64Array(length), e = new Float64Array(length), q = new Float64Array(length);
+  const { kind, count, constants } = constantsByKind(atoms);
   let pair = 0;
   for (let i = 0; i < atomCount; i++) {
     const bonds = separations(molecule, i);
     for (let j = i + 1; j < atomCount; j++, pair++) {
       if (bonds[j] < 3) continue;
-      const { distance, depth } = vanDerWaalsPair(atoms, i, j);
-      const seventh = distance ** 7;
-      a[pair] = 0.07 * distance;
-      b[pair] = 0.12 * seventh;
-      e[pair] = 2 * depth * (1.07 * distance) ** 7;
-      d[pair] = 0.56 * seventh * e[pair];
+      const at = 4 * (kind[i] * count + kind[j]);
+      a[pair] = constants[at];
+      b[pair] = constants[at + 1];
+      d[pair] = constants[at + 2];
+      e[pair] = constants[at + 3];
       q[pair] = chargeProduct(partialCharges[i], partialCharges[j], dielectric.constant) * (bonds[j] === 3 ? ONE_FOUR_SCALE : 1);
     }
   }
   return { atomCount, dielectricModel: dielectric.model, a, b, d, e, q };
+}
+
+/** Atoms of one type have the same constants, so that a molecule has few different pairs: a, b, d, e of each pair of kinds. */
+function constantsByKind(atoms: VanDerWaalsAtoms): { kind: Int32Array; count: number; constants: Float64Array } {
+  const { polarizability, effectiveElectrons, scaleA, scaleG, donorAcceptor } = atoms;
+  const examples: number[] = [];
+  const same = (m: number, n: number): boolean =>
+    polarizability[m] === polarizability[n] && effectiveElectrons[m] === effectiveElectrons[n] &&
+    scaleA[m] === scaleA[n] && scaleG[m] === scaleG[n] && donorAcceptor[m] === donorAcceptor[n];
+  const kind = Int32Array.from(polarizability, (_, atom) => {
+    const known = examples.findIndex((example) => same(example, atom));
+    return known >= 0 ? known : examples.push(atom) - 1;
+  });
+  const count = examples.length;
+  const constants = new Float64Array(4 * count * count);
+  for (let m = 0; m < count; m++)
+    for (let n = 0; n < count; n++) {
+      const { distance, depth } = vanDerWaalsPair(atoms, examples[m], examples[n]);
+      const seventh = distance ** 7;
+      const e = 2 * depth * (1.07 * distance) ** 7;
+      constants.set([0.07 * distance, 0.12 * seventh, 0.56 * seventh * e, e], 4 * (m * count + n));
+    }
+  return { kind, count, constants };
 }
 
 /** Adds the gradient (kcal/mol/angstrom) of every pair to `gradient` and returns the energy of both terms (kcal/mol). */
