@@ -5,6 +5,7 @@ import { doubleBondMatching, doubleCanBeSingle, singleCanBeDouble } from './delo
 import { elementSymbol } from './elements.js';
 import { fragmentsOf } from './fragments.js';
 import { type Molecule, neighboursOf } from './molecule.js';
+import { ringSystems } from './rings.js';
 import { elementsOf, LONE_PAIR, type StereoElement } from './stereo-elements.js';
 import { missingHydrogens } from './valence.js';
 
@@ -45,7 +46,7 @@ function canonicalRanks(molecule: Molecule, elements: readonly StereoElement[], 
   const start = Int32Array.from(symmetryClasses, (own, i) => (own * 64 + formalCharges[i] + 16) * 8 + Math.min(7, localised[i]));
   const bondKinds = bonds.order.map((order, n) => (delocalised[n] ? 0 : order));
   const structure = { atomCount, neighbours: molecule.neighbours, bondKinds };
-  return makeDiscrete(structure, makeDefinite(structure, start, elements).colours, elements);
+  return makeDiscrete(structure, makeDefinite(structure, start, elements, ringSystems(molecule)).colours, elements);
 }
 
 /** Ends of double bonds whose configuration is open: a slash beside them would state one. */

@@ -135,38 +135,98 @@ export interface Definite {
 }
 
 /**
- * Splits equal ligands until every configuration is definite. Each choice is tried and the one with the least text kept, so that the result
- * does not depend on the order of atoms.
+ * Splits equal ligands until every configuration is definite. Within a ring system (`systems`, one number an atom, -1 outside rings) each
+ * choice is tried and the one with the least text kept, so that the result does not depend on the order of atoms; separate systems, whose
+ * configurations do not depend on one another, are settled side by side.
  */
 export function makeDefinite(
-  molecule: Structure,
+  structure: Structure,
   start: ArrayLike<number>,
   elements: readonly StereoElement[],
-  budget = { left: COLOURING_BUDGET },
+  systems: ArrayLike<number>,
 ): Definite {
-  budget.left--;
-  const { colours } = refine(molecule, start, elements);
-  const text = describe(molecule, start, colours, elements);
-  const indefinite = elements.filter(
-    (element) => element.sign !== 0 && senseInColours(element, colours) === 0 && tied(element, colours).length > 0,
-  );
-  if (indefinite.length === 0) return { text, colours, decided: true };
-  const lowest = Math.min(...indefinite.map((element) => colours[element.atoms[0]]));
-  let best: Definite | null = null;
+  let { colours } = refine(structure, start, elements);
+  let text = describe(structure, start, colours, elements);
   let decided = true;
-  for (const element of indefinite) {
-    if (colours[element.atoms[0]] !== lowest) continue;
-    for (const ligand of tied(element, colours)) {
+  const isIndefinite = (element: StereoElement) =>
+    element.sign !== 0 && senseInColours(element, colours) === 0 && tied(element, colours).length > 0;
+  for (;;) {
+    const indefinite = elements.filter(isIndefinite);
+    if (indefinite.length === 0) return { text, colours, decided };
+    // elements outside rings become definite when the rings that their ligands hold do
+    const inRings = indefinite.filter(({ atoms }) => systems[atoms[0]] >= 0);
+    const eligible = inRings.length > 0 ? inRings : indefinite;
+    const lowest = Math.min(...eligible.map(({ atoms }) => colours[atoms[0]]));
+    const groups = new Map<number, StereoElement[]>();
+    for (const element of eligible) {
+      if (colours[element.atoms[0]] !== lowest) continue;
+      const key = systems[element.atoms[0]] >= 0 ? systems[element.atoms[0]] : -1 - element.atoms[0];
+      groups.set(key, [...(groups.get(key) ?? []), element]);
+    }
+    const chosen: number[][] = [];
+    for (const [key, leaders] of groups) {
+      const own = elements.filter((element) => !isIndefinite(element) || leaders.includes(element) || systems[element.atoms[0]] === key);
+      const best = settle(structure, colours, leaders, own);
+      decided &&= best.decided;
+      chosen.push(best.ligands);
+    }
+    const steps = Math.max(...chosen.map((ligands) => ligands.length)) + 1;
+    const split = colours.map((colour) => steps * colour + steps - 1);
+    for (const ligands of chosen)
+      ligands.forEach((ligand, n) => {
+        split[ligand] = steps * colours[ligand] + n;
+      });
+    ({ colours } = refine(structure, split, elements));
+    text += `\n${describe(structure, split, colours, elements)}`;
+  }
+}
+
+interface Settled {
+  readonly text: string;
+  /** Ligands set apart, in order. */
+  readonly ligands: number[];
+  readonly decided: boolean;
+}
+
+/** Sets ligands of the leaders, and then of what stays indefinite among `elements`, apart in the way that has the least text. */
+function settle(
+  structure: Structure,
+  colours: Int32Array,
+  leaders: readonly StereoElement[],
+  elements: readonly StereoElement[],
+  budget = { left: COLOURING_BUDGET },
+): Settled {
+  let best: Settled | null = null;
+  let decided = true;
+  for (const leader of leaders)
+    for (const ligand of tied(leader, colours)) {
       if (best && budget.left <= 0) {
         decided = false;
         continue;
       }
+      budget.left--;
       const split = colours.map((colour) => 2 * colour + 1);
       split[ligand]--;
-      const tried = makeDefinite(molecule, split, elements, budget);
-      decided &&= tried.decided;
-      if (!best || tried.text < best.text) best = tried;
+      const refined = refine(structure, split, elements).colours;
+      let text = describe(structure, split, refined, elements);
+      const ligands = [ligand];
+      const open = elements.filter(
+        (element) => element.sign !== 0 && senseInColours(element, refined) === 0 && tied(element, refined).length > 0,
+      );
+      if (open.length > 0) {
+        const lowest = Math.min(...open.map(({ atoms }) => refined[atoms[0]]));
+        const next = settle(
+          structure,
+          refined,
+          open.filter(({ atoms }) => refined[atoms[0]] === lowest),
+          elements,
+          budget,
+        );
+        text += `\n${next.text}`;
+        ligands.push(...next.ligands);
+        decided &&= next.decided;
+      }
+      if (!best || text < best.text) best = { text, ligands, decided: true };
     }
-  }
-  return { text: `${text}\n${best?.text ?? ''}`, colours: best?.colours ?? colours, decided };
+  return { text: best?.text ?? '', ligands: best?.ligands ?? [], decided };
 }

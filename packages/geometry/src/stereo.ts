@@ -12,6 +12,7 @@ import { doubleBondMatching, doubleCanBeSingle } from './delocalised-bonds.js';
 import { elementSymbol } from './elements.js';
 import type { Note } from './errors.js';
 import { bondBetween, type Molecule, neighboursOf, type StereoTable } from './molecule.js';
+import { ringSystems } from './rings.js';
 import { LONE_PAIR, type Sign, type StereoElement, tied, toTable } from './stereo-elements.js';
 
 /** Rings below this size hold their double bonds cis. */
@@ -39,11 +40,12 @@ export function completeStereo(molecule: Molecule): StereoTable {
   }
 
   // what is left has equal ligands: stated elements stay when exchanging them gives another structure
+  const systems = ringSystems(molecule);
   let stated = candidates.filter((element) => !kept.has(element) && element.sign !== 0 && !exchangesLeaves(molecule, element));
   for (let before = -1; stated.length !== before; ) {
     before = stated.length;
-    const all = [...kept, ...stated];
-    stated = stated.filter((element) => isStereogenic(molecule, element, colours, all));
+    const all = stated;
+    stated = all.filter((element) => isStereogenic(molecule, element, colours, systems, [...kept], all));
   }
   for (const element of stated) kept.add(element);
   for (const element of openRingCentres(molecule, candidates, kept, colours)) kept.add(element);
@@ -211,12 +213,24 @@ function exchangesLeaves({ symmetryClasses: classes, neighbours }: Molecule, { k
   return ligands.some((p, n) => ligands.slice(0, n).some((q) => equal(p, q)));
 }
 
-/** Compares the arrangement as it is with each arrangement that differs by an odd exchange of equal ligands; undecided counts as stereogenic. */
-function isStereogenic(molecule: Molecule, element: StereoElement, colours: ArrayLike<number>, all: readonly StereoElement[]): boolean {
-  const others = all.filter((other) => other !== element);
-  const own = makeDefinite(molecule, marked(molecule, element.ligands), others);
+/**
+ * Compares the arrangement as it is with each arrangement that differs by an odd exchange of equal ligands; undecided counts as stereogenic.
+ * In a ring only what is definite and the element's own ring system can matter.
+ */
+function isStereogenic(
+  molecule: Molecule,
+  element: StereoElement,
+  colours: ArrayLike<number>,
+  systems: Int32Array,
+  definite: readonly StereoElement[],
+  stated: readonly StereoElement[],
+): boolean {
+  const system = systems[element.atoms[0]];
+  const dependent = stated.filter((other) => other !== element && (system < 0 || systems[other.atoms[0]] === system));
+  const others = [...definite, ...dependent];
+  const own = makeDefinite(molecule, marked(molecule, element.ligands), others, systems);
   return oddArrangements(element, colours).every((arrangement) => {
-    const exchanged = makeDefinite(molecule, marked(molecule, arrangement), others);
+    const exchanged = makeDefinite(molecule, marked(molecule, arrangement), others, systems);
     return !own.decided || !exchanged.decided || exchanged.text !== own.text;
   });
 }
