@@ -23,7 +23,7 @@ const LARGEST_NUDGE = 55;
 const NUDGE = 1.25;
 
 /** Smaller torsion angles are not marked by a wedge, degrees; the front bond would hide it. */
-const SMALLEST_WEDGE = 12;
+const SMALLEST_WEDGE = 25;
 
 /** A substituent whose bond makes a smaller angle than this with the axis has no direction in the projection. */
 const SMALLEST_OFF_AXIS = 8 / DEGREES;
