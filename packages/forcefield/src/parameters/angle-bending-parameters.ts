@@ -2,7 +2,8 @@
  * Constants of angle bending for every angle of a molecule: MMFFANG by types, by the equivalent types of the outer atoms, by the centre
  * alone (which gives the angle only), else the empirical rule.
  *
- * Source: T. A. Halgren, J. Comput. Chem. 17, 490 and 616 (1996), step-down protocol 1-1-1, 2-2-2, 3-2-3, 5-2-5.
+ * Source: T. A. Halgren, J. Comput. Chem. 17, 490 and 616 (1996), step-down protocol 1-1-1, 2-2-2, 3-2-3, 5-2-5; molecule
+ * ERULE_07 of the validation suite takes its angle 8-1-22 from the row 8-1-1, level 4 of the equivalences, so 4-2-4 comes before 5-2-5.
  */
 import type { AngleBendingTable } from '../terms/angle-bending.js';
 import type { AtomTyping } from '../typing/atom-types.js';
