@@ -20,8 +20,8 @@ const resources = JSON.parse(readFileSync(join(dirname(openchemlib), 'resources.
 const DECIDED = {
   // MMFF94s out-of-plane, 37-64-63-64: -0.011 in MMFF94 and in one copy of MMFF94s; the rows that MMFF94s changed are marked and this one is not
   's out-of-plane 37 64 63 64': '-0.011',
-  // fluorine: 4.12 in the one copy; the N-F bond of molecule ERULE_06 of the validation suite, r0 = 1.37861 angstrom by its force constant, holds
-  // with one digit more
+  // fluorine: 4.12 in the one copy; 4.123 is fitted to the N-F bond of molecule ERULE_06 of the validation suite, r0 = 1.37861 angstrom by its
+  // force constant
   'electronegativity 9': '4.123',
 };
 

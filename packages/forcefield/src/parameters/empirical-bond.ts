@@ -8,8 +8,9 @@
  * with covalent radii r (angstrom), which shrink with bond order and between two unsaturated atoms, and Allred-Rochow electronegativities
  * chi; c = 0.05 with hydrogen, 0.085 (Blom and Haaland's) between atoms of the row Li to F, 0.08 with an atom beyond it.
  * The printed force constants of the validation suite tell r0 to 1e-5 angstrom: O-H 0.97781 (hydroxide ion), N-F 1.37861 (ERULE_06), P-Si 2.22378
- * (ERULE_03); a row of MMFFBOND made by the rule, N-H 1.01886. They fix c for hydrogen and for P-Si, rule out shrinking where one atom is
- * saturated or hydrogen, and ask for 4.123 as fluorine's electronegativity.
+ * (ERULE_03); a row of MMFFBOND made by the rule, N-H 1.01886. O-H and N-H confirm c = 0.05 and that nothing shrinks in bonds to hydrogen. P-Si alone
+ * sets c = 0.08 beyond the first row, and fluorine's electronegativity, 4.123, is fitted to N-F alone (published: 4.10, in one copy 4.12). That
+ * radii shrink in a single bond only between two unsaturated atoms is a choice; no published constant tests it.
  *
  * Force constant, by the inverse sixth power from a reference of the same elements:
  *
