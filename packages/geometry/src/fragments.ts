@@ -27,19 +27,26 @@ export function fragmentsOf(molecule: Pick<Molecule, 'atomCount' | 'neighbours'>
   return { count, ofAtom };
 }
 
+/** Each fragment as a molecule of its own, with the old index of each of its atoms; a molecule of one fragment is given as it is. */
+export function separateFragments(molecule: Molecule): { readonly molecule: Molecule; readonly atoms: Int32Array }[] {
+  const { count, ofAtom } = fragmentsOf(molecule);
+  return Array.from({ length: count }, (_, fragment) => {
+    const atoms = Int32Array.from(Array.from(ofAtom.keys()).filter((i) => ofAtom[i] === fragment));
+    return { molecule: count === 1 ? molecule : part(molecule, atoms), atoms };
+  });
+}
+
 /**
  * The largest organic fragment as a molecule of its own: among fragments with a carbon bonded to carbon or hydrogen (all, where there is
  * none) the one with the most heavy atoms, then the heaviest, then the first. `atoms` holds the old index of each of its atoms.
  */
 export function largestFragment(molecule: Molecule): { readonly molecule: Molecule; readonly atoms: Int32Array } {
-  const { count, ofAtom } = fragmentsOf(molecule);
-  const members: number[][] = Array.from({ length: count }, () => []);
-  for (let i = 0; i < molecule.atomCount; i++) members[ofAtom[i]].push(i);
+  const fragments = separateFragments(molecule);
   const organic = (i: number) =>
     molecule.atomicNumbers[i] === 6 &&
     neighboursOf(molecule, i).some((j) => molecule.atomicNumbers[j] === 6 || molecule.atomicNumbers[j] === 1);
-  const measured = members.map((atoms) => ({
-    atoms,
+  const measured = fragments.map(({ atoms }, n) => ({
+    n,
     measures: [
       atoms.some(organic) ? 1 : 0,
       atoms.filter((i) => molecule.atomicNumbers[i] > 1).length,
@@ -50,8 +57,7 @@ export function largestFragment(molecule: Molecule): { readonly molecule: Molecu
     const n = p.measures.findIndex((value, at) => Math.abs(value - q.measures[at]) > 1e-9);
     return n >= 0 && q.measures[n] > p.measures[n] ? q : p;
   });
-  const atoms = Int32Array.from(best.atoms);
-  return { molecule: count === 1 ? molecule : part(molecule, atoms), atoms };
+  return fragments[best.n];
 }
 
 /** The given atoms, which no bond joins to others, as a molecule; atom order, name and stereo are kept. */

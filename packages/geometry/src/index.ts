@@ -3,6 +3,7 @@ export { canonicalSmiles } from './canonical-smiles.js';
 export * from './cip-priority.js';
 export * from './elements.js';
 export * from './embed/embed.js';
+export { threadedRing } from './embed/threading.js';
 export * from './errors.js';
 export * from './fragments.js';
 export * from './internal-coordinates.js';

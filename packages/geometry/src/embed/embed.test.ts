@@ -1,3 +1,4 @@
+import { readFileSync } from 'node:fs';
 import { describe, expect, it } from 'vitest';
 import { angle, degrees, distance, torsion } from '../internal-coordinates.js';
 import { type Coordinates, createMolecule, type Molecule, neighboursOf } from '../molecule.js';
@@ -8,70 +9,12 @@ import { embed, embedMany } from './embed.js';
 import { atomShapes } from './shapes.js';
 import { threadedRing } from './threading.js';
 
-/** What is hard to build: every line a reason of its own. */
-const HARD: readonly (readonly [string, string])[] = [
-  ['morphinan', 'CN1CC[C@]23c4c5ccc(O)c4O[C@H]2[C@@H](O)C=C[C@H]3[C@H]1C5'],
-  ['steroid', 'C[C@]12CC[C@H]3[C@@H](CCC4=CC(=O)CC[C@]34C)[C@@H]1CC[C@@H]2O'],
-  ['bridged peroxide', 'C[C@@H]1CC[C@H]2[C@@H](C)C(=O)O[C@@H]3O[C@@]4(C)CC[C@@H]1[C@@]23OO4'],
-  ['taxane', 'CC1=C2[C@@H](C(=O)[C@@]3([C@H](C[C@@H]4[C@]([C@H]3[C@@H]([C@@](C2(C)C)(C[C@@H]1O)O)OC(=O)c5ccccc5)(CO4)OC(=O)C)O)C)OC(=O)C'],
-  ['penam', 'CC1(C)S[C@@H]2[C@H](NC(=O)Cc3ccccc3)C(=O)N2[C@H]1C(=O)O'],
-  ['cubane', 'C12C3C4C1C5C2C3C45'],
-  ['adamantane', 'C1C2CC3CC1CC(C2)C3'],
-  ['dodecahedrane', 'C12C3C4C5C1C6C7C2C8C3C9C4C1C5C6C2C7C8C9C12'],
-  ['tetrahedrane', 'C12C3C1C23'],
-  ['propellane', 'C1C23CC21C3'],
-  ['bicyclobutane', 'C1C2CC12'],
-  ['spiropentane', 'C1CC12CC2'],
-  ['dispiro', 'C1CC2(C1)CC1(CCC1)C2'],
-  ['camphor', 'CC1(C)[C@@H]2CC[C@@]1(C)C(=O)C2'],
-  ['pinene', 'CC1(C)[C@H]2CC=C(C)[C@@H]1C2'],
-  ['barrelene', 'C1=CC2C=CC1C=C2'],
-  ['trans-cyclooctene', 'C1CCC/C=C/CC1'],
-  ['cis-cyclooctene', 'C1CCC/C=C\\CC1'],
-  ['cyclooctyne', 'C1CCCCCC#C1'],
-  ['cyclooctatetraene', 'C1=CC=CC=CC=C1'],
-  ['trans,trans,trans triene ring', 'CC1=C/CC(C)(C)/C=C/C/C(C)=C/CC1'],
-  ['twelve-membered ring', 'C1CCCCCCCCCCC1'],
-  ['crown', 'C1COCCOCCOCCOCCOCCO1'],
-  ['thirty-membered ring', 'C1CCCCCCC/C=C/CCCCCCCCCCCCCCCCCCC1'],
-  [
-    'macrolide',
-    'CC[C@H]1OC(=O)[C@H](C)[C@@H](O[C@H]2C[C@@](C)(OC)[C@@H](O)[C@H](C)O2)[C@H](C)[C@@H](O)[C@](C)(O)C[C@@H](C)C(=O)[C@H](C)[C@@H](O)[C@]1(C)O',
-  ],
-  ['cyclic peptide', 'CC(C)C[C@@H]1NC(=O)[C@H](Cc2ccccc2)NC(=O)[C@@H]2CCCN2C(=O)[C@H](CO)NC(=O)[C@H](C)NC1=O'],
-  ['ortho biaryl', 'Cc1cccc(C)c1-c1c(C)cccc1C'],
-  ['paracyclophane', 'C1Cc2ccc(cc2)CCc2ccc1cc2'],
-  ['helicene', 'c1ccc2c(c1)ccc1ccc3ccc4ccccc4c3c12'],
-  ['azulene', 'c1ccc2cccc2cc1'],
-  ['porphine', 'c1cc2cc3ccc([nH]3)cc3ccc(n3)cc3ccc([nH]3)cc1n2'],
-  ['dibenzazepine', 'NC(=O)N1c2ccccc2C=Cc2ccccc21'],
-  ['phenothiazine', 'c1ccc2c(c1)Sc1ccccc1N2'],
-  ['sucrose', 'OC[C@H]1O[C@@](CO)(O[C@H]2O[C@H](CO)[C@@H](O)[C@H](O)[C@H]2O)[C@@H](O)[C@@H]1O'],
-  ['triphosphate', 'Nc1ncnc2c1ncn2[C@@H]1O[C@H](COP(=O)(O)OP(=O)(O)OP(=O)(O)O)[C@@H](O)[C@H]1O'],
-  ['sulfoxide', 'C[S@@](=O)CC[C@H](N)C(=O)O'],
-  ['sulfoximine', 'C[S@@](=N)(=O)c1ccccc1'],
-  ['phosphine', 'C[P@](c1ccccc1)c1ccc(OC)cc1'],
-  ['quaternary nitrogen', 'CC[N@@+](C)(CC=C)c1ccccc1'],
-  ['zwitterion', '[NH3+][C@@H](Cc1ccccc1)C([O-])=O'],
-  ['allene', 'CC(Cl)=[C@]=C(C)Br'],
-  ['butatriene', 'C/C=C=C=C/C'],
-  ['diyne', 'CCC#CC#CCC'],
-  ['oxime', 'C/C(=N\\O)c1ccccc1'],
-  ['hydrazone and diene', 'C/C=C/C=C\\C=N\\N'],
-  ['azide', '[N-]=[N+]=Nc1ccccc1'],
-  ['crowded alcohol', 'CC(C)(C)C(C(C)(C)C)(C(C)(C)C)O'],
-  ['crowded arene', 'CC(C)(C)c1ccccc1C(C)(C)C'],
-  ['trans-decalin', 'C1CC[C@H]2CCCC[C@@H]2C1'],
-  ['cis-decalin', 'C1CC[C@@H]2CCCC[C@@H]2C1'],
-  ['cyclic siloxane', 'C[Si]1(C)O[Si](C)(C)O[Si](C)(C)O[Si](C)(C)O1'],
-  ['pentavalent phosphorus', 'ClP(Cl)(Cl)(Cl)Cl'],
-  ['hexavalent sulfur', 'FS(F)(F)(F)(F)F'],
-  ['tropane', 'CN1[C@@H]2CC[C@H]1[C@H]([C@H](C2)OC(=O)c1ccccc1)C(=O)OC'],
-  ['quinuclidine', 'COc1ccc2nccc([C@@H](O)[C@@H]3C[C@@H]4CCN3C[C@@H]4C=C)c2c1'],
-  ['open centres in fused rings', 'C1CCC2C(C1)CCC1C2CCC2CCCC12'],
-  ['hydrogen', '[H][H]'],
-  ['one atom', '[Cl-]'],
-];
+/** Molecules that are hard to build, each for a reason of its own, which its name gives. */
+const HARD = readFileSync(new URL('../../fixtures/hard.smi', import.meta.url), 'utf8')
+  .trimEnd()
+  .split('\n')
+  .map((line) => line.split('\t'))
+  .map(([smiles, name]) => [name, smiles] as const);
 
 /** Stated configurations that the coordinates do not have. */
 function lostStereo(molecule: Molecule, x: Coordinates): number {

@@ -7,6 +7,7 @@
  * J. M. Blaney, J. S. Dixon, Rev. Comput. Chem. 5, 299 (1994).
  */
 import { TordialError } from '../errors.js';
+import { separateFragments } from '../fragments.js';
 import { torsion } from '../internal-coordinates.js';
 import { bondBetween, type Coordinates, type Molecule } from '../molecule.js';
 import { type Random, seededRandom } from '../random.js';
@@ -16,11 +17,11 @@ import { bondLengths } from './bond-lengths.js';
 import { bondDistances, distanceBounds, type IdealGeometry } from './bounds.js';
 import { distanceError } from './distance-error.js';
 import { structureFault } from './faults.js';
-import { connectedFragments, sideBySide } from './fragments.js';
 import { signedVolume, signedVolumes } from './handedness.js';
 import { descend } from './lbfgs.js';
 import { embedDistances, randomCoordinates } from './metric-matrix.js';
 import { atomShapes } from './shapes.js';
+import { sideBySide } from './side-by-side.js';
 import { strain } from './strain.js';
 import { smoothTriangles } from './triangle-smoothing.js';
 import { turning } from './turning.js';
@@ -42,7 +43,7 @@ export function embed(molecule: Molecule, options: EmbedOptions = {}): Coordinat
 
 /** `count` structures from one stream of random numbers, the first as `embed` gives it; they need not differ. Throws as `embed` does. */
 export function embedMany(molecule: Molecule, count: number, { seed = 1, attempts = 60 }: EmbedOptions = {}): Coordinates[] {
-  const fragments = connectedFragments(molecule).map(({ atoms, molecule: part }) => ({ atoms, next: embedder(part) }));
+  const fragments = separateFragments(molecule).map(({ atoms, molecule: part }) => ({ atoms, next: embedder(part) }));
   const random = seededRandom(seed);
   return Array.from({ length: count }, () =>
     sideBySide(
