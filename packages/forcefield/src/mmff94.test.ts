@@ -164,7 +164,9 @@ describe('the energy function', () => {
     }
   });
 
-  it('refuses a gradient of another length and a dielectric constant that is none', () => {
+  it('refuses a gradient of another length and options that are none', () => {
+    expect(() => mmff94(molecule, { variant: 'MMFF94x' as 'MMFF94' })).toThrow('no variant MMFF94x');
+    expect(() => mmff94(molecule, { dielectric: { model: 'linear' as 'distance', constant: 1 } })).toThrow('no dielectric model linear');
     expect(() => mmff94(molecule).evaluate(x, new Float64Array(2))).toThrow('gradient');
     for (const constant of [0, -1, Number.NaN, Number.POSITIVE_INFINITY])
       expect(() => mmff94(molecule, { dielectric: { model: 'constant', constant } })).toThrow('must be a positive number');

@@ -52,13 +52,14 @@ export interface Mmff94 {
 /**
  * Types the atoms, assigns charges and parameters, and returns the energy function.
  *
- * Throws `mmff94/atom-type` for an atom that MMFF94 does not cover, naming it and the reason, and `mmff94/dielectric` for a dielectric
- * constant that is not a positive number.
+ * Throws `mmff94/atom-type` for an atom that MMFF94 does not cover, naming it and the reason, `mmff94/parameter` for an interaction that
+ * has neither constants nor a rule, and `mmff94/variant` or `mmff94/dielectric` for options that are none.
  */
 export function mmff94(molecule: Molecule, options: Mmff94Options = {}): Mmff94 {
   const { variant = 'MMFF94s', dielectric = { model: 'constant', constant: 1 }, vectors = true } = options;
-  if (!(dielectric.constant > 0 && Number.isFinite(dielectric.constant)))
-    throw new TordialError('mmff94/dielectric', `the dielectric constant must be a positive number, not ${dielectric.constant}`);
+  if (variant !== 'MMFF94' && variant !== 'MMFF94s')
+    throw new TordialError('mmff94/variant', `there is no variant ${variant}; take MMFF94 or MMFF94s`);
+  checkDielectric(dielectric);
 
   const { atomCount } = molecule;
   const parameters = assignParameters(molecule, variant);
@@ -95,6 +96,13 @@ export function mmff94(molecule: Molecule, options: Mmff94Options = {}): Mmff94 
   }
 
   return { atomCount, variant, dielectric, parameters, evaluate, terms };
+}
+
+function checkDielectric({ model, constant }: Dielectric): void {
+  if (model !== 'constant' && model !== 'distance')
+    throw new TordialError('mmff94/dielectric', `there is no dielectric model ${model}; take constant or distance`);
+  if (!(constant > 0 && Number.isFinite(constant)))
+    throw new TordialError('mmff94/dielectric', `the dielectric constant must be a positive number, not ${constant}`);
 }
 
 function wrongLength(what: string, length: number, atomCount: number): TordialError {

@@ -1,6 +1,6 @@
 import { readFileSync } from 'node:fs';
 import { createMolecule } from '@tordial/geometry';
-import { describe, expect, it } from 'vitest';
+import { afterEach, describe, expect, it, vi } from 'vitest';
 import { uniform } from '../terms/gradient-check.fixture.js';
 import { addNonBonded, type NonBondedRows, nonBondedRows } from '../terms/non-bonded.js';
 import { addNonBondedVectors } from './vector-rows.js';
@@ -54,6 +54,34 @@ describe('the vector form of the non-bonded loop', () => {
     const gradient = new Float64Array(18);
     expect(Number.isFinite(addNonBondedVectors(rows, new Float64Array(18), gradient))).toBe(true);
     expect(gradient.every((value) => value === 0)).toBe(true);
+  });
+
+  describe('without WebAssembly', () => {
+    afterEach(() => {
+      vi.unstubAllGlobals();
+      vi.resetModules();
+    });
+
+    const forbidden = {
+      Memory: class {},
+      Module: class {
+        constructor() {
+          throw new Error('forbidden by the security policy of the page');
+        }
+      },
+    };
+    it.each([
+      ['where there is none', undefined],
+      ['where it is forbidden', forbidden],
+    ])('leaves the work to the plain loop %s', async (_where, api) => {
+      vi.stubGlobal('WebAssembly', api);
+      vi.resetModules();
+      const fresh = await import('./vector-rows.js');
+      const { rows, x } = chain(12, 'constant', 6);
+      const gradient = new Float64Array(x.length);
+      expect(fresh.addNonBondedVectors(rows, x, gradient)).toBeUndefined();
+      expect(gradient.every((value) => value === 0)).toBe(true);
+    });
   });
 
   it('is compiled from the source beside it', async () => {

@@ -15,7 +15,7 @@ const BUFFER = 0.05;
 /** Weight of a pair three bonds apart. */
 export const ONE_FOUR_SCALE = 0.75;
 
-/** Dielectric model and constant D; D >= 1 and without unit in both, the distance-dependent one is D times r in angstrom. */
+/** Dielectric model and constant D, a positive number; in the distance-dependent model the dielectric is D times the distance in angstrom. */
 export interface Dielectric {
   readonly model: 'constant' | 'distance';
   readonly constant: number;
