@@ -205,6 +205,9 @@ describe('no number where none is justified', () => {
     for (const value of [process.barrier, process.forward, process.racemisationHalfLife, process.stabilityClass, process.oki])
       expect(value).toBeNull();
     expect(cautions.map((note) => note.code)).toContain('caution/crossing');
+    const refined = analyseProfile(crossed, { saddles: [21, 23] });
+    expect(refined.rows[0].processes[0].barrier).toBe(21);
+    expect(refined.cautions.map((note) => note.code)).not.toContain('caution/crossing');
     expect(rows[0].populations.byEnergy).toEqual([0.5, 0.5]);
   });
 

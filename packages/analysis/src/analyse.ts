@@ -30,6 +30,8 @@ export interface AnalysisOptions {
   readonly temperatures?: readonly number[];
   /** Assumed error of a barrier, kcal/mol; by the source of the torsion terms when left out. */
   readonly barrierError?: number;
+  /** Heights of refined saddles above the lowest well, kcal/mol, in the order of the barriers; where not null they replace the envelope's. */
+  readonly saddles?: readonly (number | null)[];
   /** Where free energies are known, populations by them are added and rates are taken from them instead of electronic energies. */
   readonly freeEnergies?: FreeEnergies;
   /** Transmission coefficient of each barrier at a temperature (Wigner); 1 when left out. */
@@ -88,7 +90,7 @@ export interface ProfileAnalysis {
  * close, does not cover its turn or did not converge, or for couplings that the axis has not. Over a crossing of branches no rate is given.
  */
 export function analyseProfile(document: ProfileDocument, options: AnalysisOptions = {}): ProfileAnalysis {
-  const { temperatures = [298.15], barrierError, freeEnergies, transmission } = options;
+  const { temperatures = [298.15], barrierError, saddles, freeEnergies, transmission } = options;
   if (temperatures.length === 0) throw new TordialError('analysis/temperature', 'no temperature: give at least one, in kelvin');
   temperatures.forEach(requireTemperature);
   const curve = soundCurve(document);
@@ -105,10 +107,9 @@ export function analyseProfile(document: ProfileDocument, options: AnalysisOptio
     return {
       wells: heights,
       barriers: barriers.map((barrier, i) => {
-        if (barrier.kind === 'crossing') return null;
-        if (!free) return barrier.energy;
+        const known = saddles?.[i] ?? (barrier.kind === 'crossing' ? null : barrier.energy);
+        const height = free ? free.barriers[i] : known;
         // a low barrier can vanish in free energy: there is no rate over it then
-        const height = free.barriers[i];
         return height !== null && height >= Math.max(heights[i], heights[(i + 1) % heights.length]) ? height : null;
       }),
       transmission: transmission?.(temperature),
@@ -166,7 +167,9 @@ export function analyseProfile(document: ProfileDocument, options: AnalysisOptio
     };
   });
 
-  const crossings = barriers.filter((barrier) => barrier.kind === 'crossing').map((barrier) => barrier.angle);
+  const crossings = barriers.flatMap((barrier, i) =>
+    barrier.kind === 'crossing' && (saddles?.[i] ?? null) === null ? [barrier.angle] : [],
+  );
   const inverting = invertingNitrogens(molecule, document.rotor.axis, geometries);
   const hydrogenBond = hydrogenBondCaution(molecule, geometries);
   return {

@@ -85,7 +85,10 @@ export function analysedProcess(
     kind,
     from,
     to,
-    label: `${nameOf(from, wells, changesHand)} ${racemisation ? '<->' : '->'} ${nameOf(to, wells, changesHand)}`,
+    label:
+      kind === 'topomerisation'
+        ? topomerisationLabel(from, to, wells)
+        : `${nameOf(from, wells, changesHand)} ${racemisation ? '<->' : '->'} ${nameOf(to, wells, changesHand)}`,
     barrier,
     barrierBack,
     routes: routes.length,
@@ -109,6 +112,10 @@ function classWithError(barrier: number, error: number): AnalysedProcess['stabil
     low: stabilityClass(Math.max(0, barrier - error)).class,
     high: stabilityClass(Math.max(0, barrier + error)).class,
   };
+}
+
+function topomerisationLabel(from: readonly number[], to: readonly number[], wells: readonly Rotamer[]): string {
+  return `${rotamerLabel(wells[from[0]])} between ${from.length + to.length} equal positions`;
 }
 
 /** Wells of one side of a process in words, each name once; an exchange means both hands of a mirror pair. */

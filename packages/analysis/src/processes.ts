@@ -54,20 +54,22 @@ export function observableProcesses(
   handedAxis = false,
 ): Process[] {
   const processes: Process[] = [];
-  const species = [...new Set(wells.map((well) => well.species))].sort((a, b) => a - b);
-  const members = (s: number): number[] => wells.flatMap((well, i) => (well.species === s ? [i] : []));
-  for (const s of species)
-    for (const t of species) {
-      if (t <= s) continue;
-      const routes = routesBetween(network, members(s), members(t)).filter((route) => route.wells.length === 2);
-      if (routes.length > 0) processes.push({ kind: 'exchange', from: members(s), to: members(t), routes });
-    }
   const mirrored = handsOf(network, wells, temperature);
   const hands = mirrored ?? (handedAxis ? sidesOfPlane(wells) : null);
   if (hands) {
     const [from, to] = [1, -1].map((hand) => hands.flatMap((value, i) => (value === hand ? [i] : [])));
     processes.push({ kind: mirrored ? 'racemisation' : 'diastereomerisation', from, to, routes: routesBetween(network, from, to) });
   }
+  const species = [...new Set(wells.map((well) => well.species))].sort((a, b) => a - b);
+  const members = (s: number): number[] => wells.flatMap((well, i) => (well.species === s ? [i] : []));
+  for (const s of species)
+    for (const t of species) {
+      if (t <= s) continue;
+      // where each side of an axis is one rotamer, their exchange is the change of hand and stands there already
+      if (!mirrored && hands && members(s).length + members(t).length === 2 && hands[members(s)[0]] * hands[members(t)[0]] < 0) continue;
+      const routes = routesBetween(network, members(s), members(t)).filter((route) => route.wells.length === 2);
+      if (routes.length > 0) processes.push({ kind: 'exchange', from: members(s), to: members(t), routes });
+    }
   for (const s of species) {
     const first = members(s)[0];
     const copies = wells[first].identical;

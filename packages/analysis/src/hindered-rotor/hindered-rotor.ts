@@ -73,10 +73,11 @@ export function hinderedRotor({ potential, constant, symmetryNumber }: HinderedR
       quantum: Math.sqrt(2 * seriesValue(B, angle) * seriesValue(V, angle, 2)),
     }));
 
-  // beyond 30 kT a level adds less than 1e-13; low temperatures still want the lowest torsional states
+  // what lies beyond 18 kT adds less than 1e-7, and an error of 1e-4 cm-1 up there even less, while the lowest levels come out far better; at low temperatures the lowest torsional states are wanted all the same
   const hottest = Math.max(...temperatures, 1);
-  const upTo = Math.max(30 * BOLTZMANN_WAVENUMBER * hottest, 4 * Math.max(0, ...wells.map((well) => well.energy + well.quantum)));
-  const solved = torsionalLevels(V, B, { upTo });
+  const softest = Math.max(0, ...wells.filter((well) => well.energy < 1e-6).map((well) => well.quantum));
+  const upTo = Math.max(softest / 2 + 18 * BOLTZMANN_WAVENUMBER * hottest, 3 * softest);
+  const solved = torsionalLevels(V, B, { upTo, tolerance: 1e-4 });
   const levels = solved.energies.map((energy) => energy - bottom);
   const states = multiplets(solved, V, B).map((state) => ({ ...state, energy: state.energy - bottom }));
   const lowest = states.find((state) => state.quantumNumber === 0);
@@ -93,7 +94,7 @@ export function hinderedRotor({ potential, constant, symmetryNumber }: HinderedR
     basis: solved.basis,
     rows: temperatures.map((temperature) => ({
       temperature,
-      quantum: quantumThermodynamics(levels, symmetryNumber, temperature),
+      quantum: quantumThermodynamics(levels, symmetryNumber, temperature, upTo),
       classical: classicalThermodynamics(V, bottom, B, symmetryNumber, temperature),
       harmonic: wells.length > 0 ? harmonicThermodynamics(wells, symmetryNumber, temperature) : null,
       pitzerGwinn: wells.length > 0 ? pitzerGwinnThermodynamics(V, bottom, B, wells, symmetryNumber, temperature) : null,

@@ -3,7 +3,7 @@
  *
  *   [ -d/dphi B(phi) d/dphi + V(phi) ] psi = E psi,   psi(phi + 2 pi) = psi(phi),   B = hbar^2 / 2I
  *
- * in the basis 1, cos m phi, sin m phi. With V and B as Fourier series every matrix element is a sum of at most two coefficients. Functions
+ * in the basis 1, cos m phi, sin m phi, whose size follows from convergence. With V and B as Fourier series every matrix element is a sum of at most two coefficients. Functions
  * that no element joins (odd and even, or residues of m in an n-fold potential) fall into blocks of their own, which also keeps
  * degenerate levels exactly so. A cosine potential makes it Mathieu's equation.
  *
@@ -27,7 +27,7 @@ export interface TorsionalLevels {
 export interface LevelOptions {
   /** Levels up to this energy are wanted converged, cm-1 above the potential's lowest point; 2000 when left out. */
   readonly upTo?: number;
-  /** Largest change of a wanted level on enlarging the basis, cm-1; 1e-9 when left out. */
+  /** Largest shift that functions beyond the basis may bring to a wanted level, cm-1; 1e-9 when left out. */
   readonly tolerance?: number;
   /** Largest M tried; 1500 when left out. */
   readonly largestBasis?: number;
@@ -35,7 +35,7 @@ export interface LevelOptions {
 
 /**
  * Levels of the potential (cm-1) with the rotational constant B (cm-1), each a Fourier series in the torsion angle. The basis grows until
- * no wanted level moves. Throws `rotor/constant` where B is not positive everywhere, `rotor/basis` when the largest basis is not enough.
+ * functions beyond it would move no wanted level. Throws `rotor/constant` where B is not positive everywhere, `rotor/basis` when the largest basis is not enough.
  */
 export function torsionalLevels(potential: PeriodicSeries, constant: PeriodicSeries, options: LevelOptions = {}): TorsionalLevels {
   const { upTo = 2000, tolerance = 1e-9, largestBasis = 1500 } = options;
@@ -47,15 +47,18 @@ export function torsionalLevels(potential: PeriodicSeries, constant: PeriodicSer
   const bottom = lowestValue(V);
   const limit = bottom + upTo;
   // a wave of energy E above the bottom has at most sqrt(E/B) nodes a turn; what tunnels into the walls decays within a few more
-  let basis = Math.ceil(1.2 * Math.sqrt(upTo / smallest)) + 2 * (V.cosine.length + B.cosine.length) + 12;
-  let levels = solve(V, B, Math.min(basis, largestBasis));
-  while (basis < largestBasis) {
+  const reach = V.cosine.length + B.cosine.length;
+  let basis = Math.min(largestBasis, Math.ceil(1.1 * Math.sqrt(upTo / smallest)) + reach + 10);
+  for (;;) {
+    const levels = solve(V, B, basis);
+    if (converged(levels, V, B, limit, tolerance)) return upToLimit(levels, limit);
+    if (basis === largestBasis)
+      throw new TordialError(
+        'rotor/basis',
+        `levels up to ${upTo} cm-1 are not converged with ${largestBasis} harmonics: ask for fewer levels`,
+      );
     basis = Math.min(largestBasis, Math.ceil(1.25 * basis));
-    const larger = solve(V, B, basis);
-    if (converged(levels, larger, limit, tolerance)) return upToLimit(levels, limit);
-    levels = larger;
   }
-  throw new TordialError('rotor/basis', `levels up to ${upTo} cm-1 are not converged with ${largestBasis} harmonics: ask for fewer levels`);
 }
 
 function lowestValue(series: PeriodicSeries): number {
@@ -63,11 +66,35 @@ function lowestValue(series: PeriodicSeries): number {
   return Math.min(...extremaOfSeries(series).map((extremum) => extremum.value));
 }
 
-function converged(levels: TorsionalLevels, larger: TorsionalLevels, limit: number, tolerance: number): boolean {
-  for (let i = 0; i < larger.energies.length && larger.energies[i] <= limit; i++) {
-    // beside the wanted change, the rounding of a matrix whose largest element is that of the last level
-    const rounding = 1e-13 * Math.abs(larger.energies[larger.energies.length - 1]);
-    if (i >= levels.energies.length || Math.abs(levels.energies[i] - larger.energies[i]) > Math.max(tolerance, rounding)) return false;
+/**
+ * Whether functions beyond the basis would move no wanted level by more than the tolerance: in second order they lower it by
+ * sum_m |<m|H|psi>|^2 / (E_m - E), m beyond the basis, where only the last few coefficients of psi reach, and E_m is at least
+ * that of a free rotor.
+ */
+function converged(
+  { energies, functions, basis }: TorsionalLevels,
+  V: PeriodicSeries,
+  B: PeriodicSeries,
+  limit: number,
+  tolerance: number,
+): boolean {
+  const reach = Math.max(V.cosine.length, B.cosine.length) - 1;
+  const beyond = lowestValue(B) * (basis + 1) ** 2 + lowestValue(V);
+  if (!(beyond > limit)) return false;
+  const from = Math.max(1, basis - reach + 1);
+  for (let level = 0; level < energies.length && energies[level] <= limit; level++) {
+    const c = functions[level];
+    let shift = 0;
+    for (let m = basis + 1; m <= basis + reach; m++) {
+      let cosine = 0;
+      let sine = 0;
+      for (let n = from; n <= basis; n++) {
+        cosine += c[n] * (cosCos(V, m, n) + m * n * sinSin(B, m, n)) + c[basis + n] * (cosSin(V, m, n) - m * n * cosSin(B, n, m));
+        sine += c[basis + n] * (sinSin(V, m, n) + m * n * cosCos(B, m, n)) + c[n] * (cosSin(V, n, m) - m * n * cosSin(B, m, n));
+      }
+      shift += cosine * cosine + sine * sine;
+    }
+    if (shift > tolerance * (beyond - energies[level])) return false;
   }
   return true;
 }

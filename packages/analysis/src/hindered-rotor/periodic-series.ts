@@ -55,10 +55,10 @@ export function seriesOfSamples(values: ArrayLike<number>, start = 0, harmonics 
   return { cosine, sine };
 }
 
-/** The series of a periodic function (period 2 pi, radians) through `samples` equidistant values of it, up to a quarter as many harmonics. */
-export function seriesOfFunction(f: (phi: number) => number, samples = 512): PeriodicSeries {
+/** The series of a periodic function (period 2 pi, radians) from `samples` equidistant values of it, up to `harmonics`, a quarter as many. */
+export function seriesOfFunction(f: (phi: number) => number, samples = 512, harmonics = samples / 4): PeriodicSeries {
   const values = Float64Array.from({ length: samples }, (_, j) => f((2 * Math.PI * j) / samples));
-  return seriesOfSamples(values, 0, samples / 4);
+  return seriesOfSamples(values, 0, harmonics);
 }
 
 /** Harmonics below `share` of the largest coefficient, the mean included, set to zero and the tail cut off, so that exact symmetries show. */

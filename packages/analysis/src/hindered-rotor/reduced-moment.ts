@@ -181,7 +181,8 @@ export interface PathPoint {
  * dx/dphi at point i of a closed path of geometries (angles ascending over one turn).
  *
  * A neighbour is turned back rigidly by the angle between the two and superposed (weighted by mass); what is then left is relaxation, small and
- * smooth, and is differentiated centrally, or to one side at a break. The rigid turn itself is differentiated exactly.
+ * smooth, and is differentiated centrally, or to one side at a break. The rigid turn itself is differentiated exactly. Atoms of equal `kinds`
+ * (symmetry classes) that the neighbour has exchanged, as a mirror image does with the hydrogens of a methyl, are put back first.
  */
 export function pathTangent(
   path: readonly PathPoint[],
@@ -189,6 +190,7 @@ export function pathTangent(
   masses: ArrayLike<number>,
   axis: readonly [number, number],
   side: ArrayLike<number>,
+  kinds?: ArrayLike<number>,
 ): Float64Array {
   const count = path.length;
   const here = path[i].coordinates;
@@ -199,7 +201,9 @@ export function pathTangent(
     const step = wrapRadians(neighbour.angle - path[i].angle);
     const back = neighbour.coordinates.slice();
     turnAbout(back, axis[0], axis[1], side, -step);
-    return { step, coordinates: superpose(back, here, { weights: masses }).coordinates };
+    const moved = superpose(back, here, { weights: masses }).coordinates;
+    const relabelled = kinds && inPlace(moved, here, kinds);
+    return { step, coordinates: relabelled ? superpose(relabelled, here, { weights: masses }).coordinates : moved };
   };
   const backward = count > 1 && !before.breakAfter ? relaxed(before) : null;
   const forward = count > 1 && !path[i].breakAfter ? relaxed(after) : null;
@@ -214,6 +218,33 @@ export function pathTangent(
     } else tangent[k] += down ?? up ?? 0;
   }
   return tangent;
+}
+
+/** `moving` with atoms of equal kind exchanged so that each stands where `reference` has it; null where nearest atoms give no clear answer. */
+function inPlace(moving: Coordinates, reference: Coordinates, kinds: ArrayLike<number>): Coordinates | null {
+  const count = kinds.length;
+  const result = new Float64Array(3 * count);
+  const taken = new Uint8Array(count);
+  for (let i = 0; i < count; i++) {
+    let nearest = i;
+    let least = Number.POSITIVE_INFINITY;
+    for (let j = 0; j < count; j++) {
+      if (kinds[j] !== kinds[i]) continue;
+      const apart = Math.hypot(
+        moving[3 * j] - reference[3 * i],
+        moving[3 * j + 1] - reference[3 * i + 1],
+        moving[3 * j + 2] - reference[3 * i + 2],
+      );
+      if (apart < least) {
+        least = apart;
+        nearest = j;
+      }
+    }
+    if (taken[nearest]) return null;
+    taken[nearest] = 1;
+    result.set(moving.subarray(3 * nearest, 3 * nearest + 3), 3 * i);
+  }
+  return result;
 }
 
 /** Rotational constant (cm-1) of a reduced moment (amu angstrom^2): B = h / (8 pi^2 c I). */

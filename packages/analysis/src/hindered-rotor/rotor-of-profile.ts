@@ -2,11 +2,11 @@
 import { type Note, radians, TordialError } from '@tordial/geometry';
 import { energyAt, type ProfileDocument } from '@tordial/scan';
 import { WAVENUMBER_PER_KCAL } from '../constants.js';
-import { massesOfDocument } from '../document-molecule.js';
+import { massesOfDocument, moleculeOfDocument } from '../document-molecule.js';
 import { soundCurve } from '../profile-checks.js';
 import { rotamers } from '../rotamers.js';
 import type { HinderedRotor } from './hindered-rotor.js';
-import { seriesOfFunction, seriesOfSamples, withoutNoise } from './periodic-series.js';
+import { type PeriodicSeries, seriesOfFunction, seriesOfSamples, withoutNoise } from './periodic-series.js';
 import {
   eastRadomMoment,
   kineticMoment,
@@ -50,6 +50,7 @@ export interface ProfileRotor extends HinderedRotor {
  */
 export function rotorOfProfile(document: ProfileDocument, momentKind: MomentKind = 'eastRadom'): ProfileRotor {
   const curve = soundCurve(document);
+  const { points } = document;
   const moments = momentsOfProfile(document);
   const { wells } = rotamers(document);
   const lowest = wells.reduce((best, well) => (well.energy < best.energy ? well : best));
@@ -57,34 +58,59 @@ export function rotorOfProfile(document: ProfileDocument, momentKind: MomentKind
   if (moments.some(({ angle }, n) => Math.abs(angle - moments[0].angle - n * step) > 1e-6))
     throw new TordialError('rotor/angles', 'the points are not evenly spaced round the turn: scan with one step');
   const notes: Note[] = [];
-  if (document.points.some((point) => point.breakAfter))
+  if (points.some((point) => point.breakAfter))
     notes.push({
       code: 'rotor/branches',
       message:
         'the envelope passes between branches: other parts of the molecule rearrange there, and one rotor with one potential is a poor picture of it',
     });
+  const symmetryNumber = lowest.identical.length + 1;
+  const places = [lowest, ...lowest.identical.map((i) => wells[i])].map((well) => well.angle);
+  const symmetric = (series: PeriodicSeries): PeriodicSeries => (evenlySpaced(places) ? everyNth(series, symmetryNumber) : series);
   return {
-    // the pieces of the curve meet with a jump in the third derivative, whose harmonics are endless and mean nothing
-    potential: withoutNoise(
-      seriesOfFunction((phi) => energyAt(curve, (phi * 180) / Math.PI) * WAVENUMBER_PER_KCAL, 1024),
-      1e-6,
+    // as many harmonics as points: what the curve has beyond comes from its kinks and from where its pieces meet, and means nothing
+    potential: symmetric(
+      withoutNoise(
+        seriesOfFunction((phi) => energyAt(curve, (phi * 180) / Math.PI) * WAVENUMBER_PER_KCAL, 1024, points.length),
+        1e-6,
+      ),
     ),
-    constant: seriesOfSamples(
-      moments.map((moment) => rotationalConstant(moment[momentKind])),
-      radians(moments[0].angle),
-      // a third of the harmonics that the points allow: the rest is noise of the relaxation
-      Math.floor(moments.length / 6),
+    // a third of the harmonics that the points allow: the rest is noise of the relaxation
+    constant: symmetric(
+      seriesOfSamples(
+        moments.map((moment) => rotationalConstant(moment[momentKind])),
+        radians(moments[0].angle),
+        Math.floor(points.length / 6),
+      ),
     ),
-    symmetryNumber: lowest.identical.length + 1,
+    symmetryNumber,
     moments,
     momentKind,
     notes,
   };
 }
 
+/** Degrees within which identical wells count as evenly spaced: the atom that is driven leads its equals a little. */
+const UNEVEN = 5;
+
+function evenlySpaced(angles: readonly number[]): boolean {
+  const spacing = 360 / angles.length;
+  return angles.every((angle) => {
+    const steps = (angle - angles[0]) / spacing;
+    return Math.abs(steps - Math.round(steps)) * spacing < UNEVEN;
+  });
+}
+
+/** The part of a series with period 2 pi / n: identical positions make a turn n-fold, however the driven atom was chosen. */
+function everyNth({ cosine, sine }: PeriodicSeries, n: number): PeriodicSeries {
+  const keep = (value: number, k: number): number => (k % n === 0 ? value : 0);
+  return { cosine: cosine.map(keep), sine: sine.map(keep) };
+}
+
 /** The reduced moments at every point of a profile. */
 export function momentsOfProfile({ molecule, rotor, points, settings }: ProfileDocument): ReducedMoments[] {
   const masses = massesOfDocument(molecule);
+  const kinds = moleculeOfDocument(molecule).symmetryClasses;
   const { axis, sides } = rotor;
   const path: PathPoint[] = points.map(({ angle, coordinates, breakAfter }) => ({
     angle: radians(angle),
@@ -98,7 +124,7 @@ export function momentsOfProfile({ molecule, rotor, points, settings }: ProfileD
       pitzerGwinn: symmetricTop(coordinates, masses, axis, sides),
       eastRadom: eastRadomMoment(coordinates, masses, sides),
       rigid,
-      path: settings.kind === 'rigid' ? rigid : kineticMoment(coordinates, masses, pathTangent(path, i, masses, axis, sides[1])),
+      path: settings.kind === 'rigid' ? rigid : kineticMoment(coordinates, masses, pathTangent(path, i, masses, axis, sides[1], kinds)),
     };
   });
 }

@@ -35,13 +35,18 @@ interface Sums {
 }
 
 /**
- * From quantum levels: Q = (1/sigma) sum exp(-E/kT). `levels` in cm-1 above the bottom of the potential; `symmetryNumber` counts the identical
- * positions on one turn. Throws `rotor/levels` when the highest level given still counts at T.
+ * From quantum levels: Q = (1/sigma) sum exp(-E/kT). `levels` in cm-1 above the bottom of the potential, all that lie below `completeTo` (the last
+ * one when left out); `symmetryNumber` counts the identical positions on one turn. Throws `rotor/levels` when those left out still count at T.
  */
-export function quantumThermodynamics(levels: ArrayLike<number>, symmetryNumber: number, temperature: number): RotorThermodynamics {
+export function quantumThermodynamics(
+  levels: ArrayLike<number>,
+  symmetryNumber: number,
+  temperature: number,
+  completeTo = levels[levels.length - 1],
+): RotorThermodynamics {
   requireTemperature(temperature);
   const kT = BOLTZMANN_WAVENUMBER * temperature;
-  if (levels.length === 0 || levels[levels.length - 1] - levels[0] < 14 * kT)
+  if (levels.length === 0 || completeTo - levels[0] < 14 * kT)
     throw new TordialError('rotor/levels', `levels up to ${14 * kT} cm-1 above the lowest are needed at ${temperature} K: ask for more`);
   const sums = boltzmannSums(levels, (energy) => ({ log: -energy / kT, energy: energy / kT }));
   return functionsOf(withSymmetry(sums, symmetryNumber), levels[0], temperature);
