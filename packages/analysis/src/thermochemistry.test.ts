@@ -230,6 +230,19 @@ describe('reduced moments', () => {
       expect(kineticMoment(path[i].coordinates, masses, pathTangent(path, i, masses, [0, 1], sides[1]))).toBeCloseTo(expected, 7);
   });
 
+  it('along a path of mirror images, whose methyl hydrogens have changed places, are the same once these are put back', () => {
+    const path = Array.from({ length: 24 }, (_, n) => {
+      const x = methanol(Math.abs(-180 + 15 * n));
+      return { angle: radians(-180 + 15 * n), coordinates: n < 12 ? x.map((value, k) => (k % 3 === 1 ? -value : value)) : x };
+    });
+    const kinds = [0, 1, 2, 2, 2, 3];
+    const expected = pitzerGwinnMoment(methanol(), masses, [0, 1], sides[0]);
+    const at = (i: number, labels?: number[]): number =>
+      kineticMoment(path[i].coordinates, masses, pathTangent(path, i, masses, [0, 1], sides[1], labels));
+    for (const i of [0, 1, 11, 12, 23]) expect(at(i, kinds)).toBeCloseTo(expected, 7);
+    expect(at(12)).toBeGreaterThan(2 * expected);
+  });
+
   it('along a path that also stretches gain the stretching: m (dr/dphi)^2 of the reduced mass', () => {
     // the C-O distance breathes as r = 1.425 + 0.05 cos 3 phi: largest slope 0.15 angstrom a radian at phi = 30 degrees
     const at = (degree: number): Float64Array => {

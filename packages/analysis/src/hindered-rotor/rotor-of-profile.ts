@@ -42,13 +42,16 @@ export interface ProfileRotor extends HinderedRotor {
 }
 
 /**
- * The hindered rotor of a profile: the potential from its Hermite curve, B along the turn from the moments of its geometries (`eastRadom` when left
- * out), and the internal symmetry number from the wells that are identical. That number and the external one of the same well are complements:
- * what turns the molecule as a whole is in the latter.
+ * The hindered rotor of a profile: the potential from its Hermite curve, B along the turn from the moments of its geometries, and the internal symmetry
+ * number from the wells that are identical; both series are made as symmetric as that number says. That number and the external one of the same well
+ * are complements: what turns the molecule as a whole is in the latter.
+ *
+ * `momentKind` is `rigid` when left out: exact for a bond that turns while all else stands still. I(2,3) turns the sides about the line through their
+ * centres of mass instead, and about a bond far from that line it can be half as large. `path` counts what relaxes along, with its noise.
  *
  * Throws as `soundCurve` does, `rotor/angles` when the points are not evenly spaced, `rotor/moment` when a moment vanishes.
  */
-export function rotorOfProfile(document: ProfileDocument, momentKind: MomentKind = 'eastRadom'): ProfileRotor {
+export function rotorOfProfile(document: ProfileDocument, momentKind: MomentKind = 'rigid'): ProfileRotor {
   const curve = soundCurve(document);
   const { points } = document;
   const moments = momentsOfProfile(document);
@@ -94,11 +97,10 @@ export function rotorOfProfile(document: ProfileDocument, momentKind: MomentKind
 const UNEVEN = 5;
 
 function evenlySpaced(angles: readonly number[]): boolean {
-  const spacing = 360 / angles.length;
-  return angles.every((angle) => {
-    const steps = (angle - angles[0]) / spacing;
-    return Math.abs(steps - Math.round(steps)) * spacing < UNEVEN;
-  });
+  const count = angles.length;
+  const steps = angles.map((angle) => ((angle - angles[0]) * count) / 360);
+  const places = new Set(steps.map((step) => ((Math.round(step) % count) + count) % count));
+  return places.size === count && steps.every((step) => (Math.abs(step - Math.round(step)) * 360) / count < UNEVEN);
 }
 
 /** The part of a series with period 2 pi / n: identical positions make a turn n-fold, however the driven atom was chosen. */
