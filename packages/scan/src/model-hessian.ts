@@ -42,10 +42,10 @@ const STRAIGHT = 0.17;
 const STEEP = 36;
 
 /**
- * How far (angstrom) a coordinate may move before the model is made anew. A stretch is a thousand times as stiff as a turn: a few degrees of
- * misalignment already make soft motions look stiff.
+ * How far (angstrom) the end of a bond may move against its start before the model is made anew. A stretch is a thousand times as stiff as a
+ * turn: a few degrees of misalignment already make soft motions look stiff. What moves along as a whole does not count.
  */
-const STALE = 0.05;
+const STALE = 0.03;
 /** Pairs this much (angstrom) too far apart to touch get room in the matrix as well, so that its pattern need not change at each step. */
 const ROOM = 0.4;
 
@@ -65,7 +65,8 @@ export function modelHessian(molecule: Molecule, driven: Torsion | null = null):
   const couplings = couplingsOf(model);
   const shift = model.fragments > 1 ? SHIFT_BETWEEN_FRAGMENTS : SHIFT;
   const work = new Float64Array(3 * atomCount);
-  const made = new Float64Array(3 * atomCount).fill(Number.NaN);
+  const made = new Float64Array(3 * atomCount);
+  let ready = false;
   const rho = new Float64Array(bonds.length / 2);
   let room = new Set<number>();
   let matrix = blockMatrix(blockPattern(atomCount, couplings));
@@ -102,6 +103,15 @@ export function modelHessian(molecule: Molecule, driven: Torsion | null = null):
     factorise(matrix, 1e-3 * shift);
   }
 
+  function isStale(x: Coordinates): boolean {
+    for (let n = 0; n < bonds.length; n += 2) {
+      const i = 3 * bonds[n],
+        j = 3 * bonds[n + 1];
+      for (let k = 0; k < 3; k++) if (Math.abs(x[i + k] - x[j + k] - made[i + k] + made[j + k]) > STALE) return true;
+    }
+    return false;
+  }
+
   function hasRoom(contacts: readonly number[]): boolean {
     for (let n = 0; n < contacts.length; n += 2) if (!room.has(contacts[n] * atomCount + contacts[n + 1])) return false;
     return true;
@@ -114,12 +124,10 @@ export function modelHessian(molecule: Molecule, driven: Torsion | null = null):
   return {
     solve: (v, out) => solveFactorised(matrix, v, out, work),
     follow: (x) => {
-      for (let k = 0; k < x.length; k++)
-        if (!(Math.abs(x[k] - made[k]) <= STALE)) {
-          make(x);
-          return true;
-        }
-      return false;
+      if (ready && !isStale(x)) return false;
+      make(x);
+      ready = true;
+      return true;
     },
   };
 }
