@@ -6,6 +6,7 @@ export * from './constants.js';
 export * from './couplings/haasnoot-altona.js';
 export * from './couplings/vicinal-couplings.js';
 export * from './document-molecule.js';
+export * from './duration.js';
 export * from './energy-unit.js';
 export * from './eyring.js';
 export * from './free-energies.js';
