@@ -149,9 +149,10 @@ function tetrahedralKind(molecule: Molecule, i: number, stated: boolean): 'none'
 }
 
 /** A nitrogen that does not invert freely: in a three-membered ring, or at the head of a bicycle whose rings share more than one bond. */
-function isHeldNitrogen({ rings }: Molecule, i: number): boolean {
-  const own = rings.filter((ring) => ring.includes(i));
+function isHeldNitrogen(molecule: Molecule, i: number): boolean {
+  const own = molecule.rings.filter((ring) => ring.includes(i));
   if (own.some((ring) => ring.length === 3)) return true;
+  if (!neighboursOf(molecule, i).every((j) => smallestRing(molecule, i, j) < Number.POSITIVE_INFINITY)) return false;
   return own.some((ring, n) => own.slice(0, n).some((other) => ring.filter((atom) => other.includes(atom)).length > 2));
 }
 
@@ -284,31 +285,22 @@ function openRingCentres(
   colours: Int32Array,
 ): StereoElement[] {
   const { rings } = molecule;
+  const inRing = (i: number, j: number) => j !== LONE_PAIR && smallestRing(molecule, i, j) < Number.POSITIVE_INFINITY;
+  /** The two equal ligands that lie in rings, if there are no others. */
   const pairOf = (element: StereoElement): number[] | null => {
-    if (element.kind !== 'tetrahedral' || element.onlyIfStated || kept.has(element) || exchangesLeaves(molecule, element)) return null;
+    if (element.kind !== 'tetrahedral' || element.onlyIfStated || exchangesLeaves(molecule, element)) return null;
     const pair = tied(element, colours);
-    const centre = element.atoms[0];
-    return pair.length === 2 && rings.some((ring) => ring.includes(centre) && ring.includes(pair[0]) && ring.includes(pair[1]))
-      ? pair
-      : null;
+    return pair.length === 2 && pair.every((ligand) => inRing(element.atoms[0], ligand)) ? pair : null;
   };
-  const dependent = candidates.filter(
-    (element) => element.kind === 'tetrahedral' && (pairOf(element) !== null || (kept.has(element) && tied(element, colours).length === 2)),
-  );
+  const dependent = candidates.filter((element) => pairOf(element) !== null);
   return dependent.filter((element) => {
     const pair = pairOf(element);
-    if (!pair) return false;
+    if (!pair || kept.has(element)) return false;
     const [centre] = element.atoms;
     const split = colours.map((c) => 2 * c);
     split[pair[0]]++;
-    const finer = refine(molecule, split, []).colours;
-    const ringBonds = element.ligands.filter(
-      (ligand) =>
-        ligand >= 0 &&
-        rings.some(
-          (ring) => ring.includes(centre) && ring.includes(ligand) && smallestRing(molecule, centre, ligand) < Number.POSITIVE_INFINITY,
-        ),
-    ).length;
+    const finer = refine(molecule, split).colours;
+    const ringBonds = element.ligands.filter((ligand) => inRing(centre, ligand)).length;
     return dependent.some(
       (other) =>
         other !== element &&
