@@ -11,7 +11,6 @@ import { drive, driveAsync } from './drive.js';
 import { checkBent, type DrivenRotor, drivenRotor, intoRotorFrame, rigidTorque, rotorAngle, turnTo } from './driven-rotor.js';
 import { checkSizes, MEMORY, type Preconditioner } from './minimise.js';
 import { modelHessian } from './model-hessian.js';
-import { neighbouringRotors, turnedNeighbours } from './neighbouring-rotors.js';
 import { invertedNitrogens } from './nitrogen-inversion.js';
 import type { Abortable, AsyncPotential, Calculation, Potential } from './potential.js';
 import { predictedStart } from './predicted-start.js';
@@ -20,6 +19,7 @@ import { refinedExtrema, type StationaryPoint } from './refined-extrema.js';
 import { relaxationAt } from './relax-at.js';
 import type { Torsion } from './rotors/defining-torsion.js';
 import { forget, type SecantMemory, secantMemory } from './secant-memory.js';
+import { otherRotors, turnedRotors } from './turned-rotors.js';
 
 export interface ScanProgress {
   /** Steps done, and those in sight: `total` can grow or shrink as branches are found or turn out to be known. */
@@ -372,23 +372,30 @@ function* searchEnvelope(search: Search): Calculation<void> {
     yield* sweep(search, first, 1);
     yield* sweep(search, first, -1);
   }
-  const neighbours = neighbouringRotors(search.scan.molecule, search.scan.rotor);
+  const { molecule, rotor } = search.scan;
+  const rotors = otherRotors(molecule, rotor);
+  const next = rotors.filter(({ isNext }) => isNext);
   const seeded = new Set<HeldMinimum>();
   for (;;) {
     yield* close(search);
-    const fresh = lowestOnEach(search).filter((minimum) => !seeded.has(minimum));
+    const envelope = lowestOnEach(search);
+    const fresh = envelope.filter((minimum) => !seeded.has(minimum));
     if (fresh.length === 0) return;
     for (const minimum of fresh) {
       seeded.add(minimum);
       if (minimum.twin && minimum.twin !== minimum && seeded.has(minimum.twin)) continue;
-      const { molecule, rotor } = search.scan;
-      for (const start of [
-        ...invertedNitrogens(molecule, rotor, minimum.coordinates),
-        ...turnedNeighbours(neighbours, minimum.coordinates),
-      ])
+      const turning = isWell(envelope, minimum.place) ? rotors : next;
+      for (const start of [...invertedNitrogens(molecule, rotor, minimum.coordinates), ...turnedRotors(turning, minimum.coordinates)])
         yield* find(search, minimum.place, start);
     }
   }
+}
+
+/** Whether no neighbour of a point of the envelope lies lower. */
+function isWell(envelope: readonly HeldMinimum[], place: number): boolean {
+  const count = envelope.length;
+  const { energy } = envelope[place];
+  return energy <= envelope[(place + 1) % count].energy && energy <= envelope[(place - 1 + count) % count].energy;
 }
 
 /** Follows every branch near the envelope both ways, lowest first, until each minimum there leads somewhere known. */
