@@ -104,7 +104,21 @@ describe('analysis of an anti/gauche profile', () => {
       'caution/class',
       'caution/barrier-error',
       'caution/electronic',
+      'caution/rigid',
     ]);
+    const anilide = {
+      ...document,
+      molecule: { ...document.molecule, fragments: 2 },
+      settings: { ...document.settings, kind: 'relaxed' as const },
+      rotor: {
+        ...document.rotor,
+        kind: 'anilide',
+        parameters: [{ atoms: [2, 0, 1, 5] as const, types: [0, 37, 10, 0] as const, class: 0, v: [0, 6, 0], source: 'wildcard' as const }],
+      },
+    };
+    const { cautions, barrierError } = analyseProfile(anilide);
+    expect(cautions.map((note) => note.code).slice(4)).toEqual(['caution/fragments', 'caution/anilide']);
+    expect(barrierError.error).toBe(3);
     const scale = ({ relativeEnergy, energy, ...rest }: (typeof document.points)[number]) => ({
       ...rest,
       relativeEnergy: relativeEnergy * 4.184,
@@ -218,6 +232,12 @@ describe('no number where none is justified', () => {
     [
       'unconverged point',
       { ...document, points: document.points.map((p, n) => (n === 3 ? { ...p, converged: false } : p)) },
+      {},
+      'profile/not-converged',
+    ],
+    [
+      'unconverged barrier',
+      { ...document, stationaryPoints: document.stationaryPoints.map((p) => ({ ...p, converged: p.kind === 'well' })) },
       {},
       'profile/not-converged',
     ],

@@ -3,13 +3,16 @@ import { type Note, radians, TordialError } from '@tordial/geometry';
 import { atomShape, energyAt, type ProfileDocument } from '@tordial/scan';
 import { type AnalysedProcess, analysedProcess, type CoalescingSignals } from './analysed-process.js';
 import {
+  ANILIDE_CAUTION,
   barrierErrorCaution,
   CLASS_CAUTION,
   crossingCaution,
   ELECTRONIC_CAUTION,
   ESTIMATE_CAUTION,
+  FRAGMENTS_CAUTION,
   hydrogenBondCaution,
   inversionCaution,
+  RIGID_CAUTION,
 } from './cautions.js';
 import { averagedCouplings, type VicinalCoupling, vicinalCouplings } from './couplings/vicinal-couplings.js';
 import { moleculeOfDocument } from './document-molecule.js';
@@ -187,6 +190,11 @@ export function analyseProfile(document: ProfileDocument, options: AnalysisOptio
       CLASS_CAUTION,
       barrierErrorCaution(error),
       ...(freeEnergies ? [] : [ELECTRONIC_CAUTION]),
+      ...(document.settings.kind === 'rigid' ? [RIGID_CAUTION] : []),
+      ...(document.molecule.fragments > 1 ? [FRAGMENTS_CAUTION] : []),
+      ...(document.rotor.kind === 'anilide' && document.rotor.parameters.some((term) => term.source === 'wildcard')
+        ? [ANILIDE_CAUTION]
+        : []),
       ...(crossings.length > 0 ? [crossingCaution(crossings)] : []),
       ...(inverting.length > 0 ? [inversionCaution(inverting)] : []),
       ...(hydrogenBond ? [hydrogenBond] : []),

@@ -31,6 +31,26 @@ export const ELECTRONIC_CAUTION: Note = {
     'Energies are electronic: differences of zero-point energy and of entropy between wells and saddles are not in the populations and rates.',
 };
 
+/** Of a rigid scan. */
+export const RIGID_CAUTION: Note = {
+  code: 'caution/rigid',
+  message: 'The scan is rigid: nothing gave way, so barriers are too high and rates too low, often by far. Scan with relaxation for rates.',
+};
+
+/** Of an input of several molecules. */
+export const FRAGMENTS_CAUTION: Note = {
+  code: 'caution/fragments',
+  message:
+    'The input holds several separate fragments: their mutual energy changes along the profile, and a rate of rotation loses its meaning.',
+};
+
+/** Of the bond between nitrogen and aryl in an anilide whose torsion terms are wildcards. */
+export const ANILIDE_CAUTION: Note = {
+  code: 'caution/anilide',
+  message:
+    'MMFF94 turns the N-aryl bond of an anilide by a wildcard term that overstates its barrier several-fold: take no rate from it; refit the torsion or use a better potential.',
+};
+
 /** Where two branches cross. */
 export function crossingCaution(angles: readonly number[]): Note {
   return {

@@ -34,6 +34,12 @@ export function soundCurve(document: ProfileDocument): ProfileCurve {
       'profile/not-converged',
       `${open.length} of ${points.length} points did not converge (${listed(open)}): scan again with more evaluations or a looser tolerance`,
     );
+  const loose = document.stationaryPoints.filter((point) => point.kind !== 'crossing' && !point.converged);
+  if (loose.length > 0)
+    throw new TordialError(
+      'profile/not-converged',
+      `the ${loose[0].kind} at ${loose[0].angle} degrees did not converge: scan again with a finer step or more evaluations`,
+    );
   requireFullTurn(points, document.settings.step);
   const curve = curveOfPoints(document);
   requireClosed(curve);
