@@ -7,7 +7,7 @@ import { fragmentsOf } from './fragments.js';
 import { type Molecule, neighboursOf } from './molecule.js';
 import { ringSystems } from './rings.js';
 import { elementsOf, LONE_PAIR, type StereoElement } from './stereo-elements.js';
-import { missingHydrogens } from './valence.js';
+import { missingHydrogens, normalValences } from './valence.js';
 
 /** Elements that SMILES writes without brackets, and those it can write in lower case. */
 const ORGANIC = new Set([5, 6, 7, 8, 9, 15, 16, 17, 35, 53]);
@@ -233,7 +233,10 @@ function writeFragment(molecule: Molecule, atoms: readonly number[], { rank, hid
     let valence = 0;
     for (let n = molecule.neighbours.start[i]; n < molecule.neighbours.start[i + 1]; n++)
       if (!hidden[molecule.neighbours.atom[n]]) valence += molecule.bonds.order[molecule.neighbours.bond[n]];
-    const bare = charge === 0 && isotope === 0 && mark === '' && ORGANIC.has(z) && missingHydrogens(z, 0, valence) === hydrogens;
+    // a reader gives a lower-case atom its double bond where its other bonds are no normal valence
+    const needsDouble = !lower[i] || (z !== 5 && !(normalValences(z, 0) ?? []).includes(valence - 1));
+    const bare =
+      charge === 0 && isotope === 0 && mark === '' && ORGANIC.has(z) && needsDouble && missingHydrogens(z, 0, valence) === hydrogens;
     if (bare) return symbol;
     const counted = hydrogens === 0 ? '' : hydrogens === 1 ? 'H' : `H${hydrogens}`;
     const signed = charge === 0 ? '' : charge === 1 ? '+' : charge === -1 ? '-' : charge > 0 ? `+${charge}` : String(charge);
