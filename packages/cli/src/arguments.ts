@@ -53,3 +53,11 @@ export function dielectric(text: string): { model: 'constant' | 'distance'; cons
     throw new InvalidArgumentError('constant:1 (the default), constant:4, distance:1 and the like are meant.');
   return { model, constant: positiveNumber(constant) };
 }
+
+/** Degrees between grid angles: they must close on a full turn. */
+export function gridStep(text: string): number {
+  const step = positiveNumber(text);
+  const count = Math.round(360 / step);
+  if (count < 3 || Math.abs(count * step - 360) > 1e-9) throw new InvalidArgumentError('a divisor of 360 is meant, such as 5, 10 or 15.');
+  return step;
+}

@@ -2,7 +2,7 @@
 import { TordialError } from '@tordial/geometry/errors';
 
 /** Codes that tell of a wrong request rather than of a record that cannot be done. */
-const USAGE = /^(usage|file|output|torsion)\/|^scan\/(ring|linear|step|torsion)/;
+const USAGE = /^(usage|file|output|torsion)\/|^scan\/(grid|linear)/;
 
 /** 2 for a wrong request, 1 for a record that could not be done. */
 export function exitCodeOf(error: unknown): 1 | 2 {
@@ -13,9 +13,12 @@ export function exitCodeOf(error: unknown): 1 | 2 {
 export function describeFailure(error: unknown): string {
   if (!(error instanceof TordialError)) return `internal error: ${error instanceof Error ? (error.stack ?? error.message) : String(error)}`;
   const { file, record, line } = error.place;
-  const where = [file, record === undefined ? undefined : `record ${record}`, line === undefined ? undefined : `line ${line}`].filter(
-    (part) => part !== undefined,
-  );
+  const named = file !== undefined && error.message.includes(file);
+  const where = [
+    named ? undefined : file,
+    record === undefined ? undefined : `record ${record}`,
+    line === undefined ? undefined : `line ${line}`,
+  ].filter((part) => part !== undefined);
   return `${where.length > 0 ? `${where.join(', ')}: ` : ''}${error.message} [${error.code}]`;
 }
 

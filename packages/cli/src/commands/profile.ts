@@ -1,5 +1,5 @@
 import { type Command, Option } from 'commander';
-import { atomQuadruple, axisPair, finiteNumber, nonNegativeInteger, positiveNumber } from '../arguments.js';
+import { atomQuadruple, axisPair, finiteNumber, gridStep, nonNegativeInteger, positiveNumber } from '../arguments.js';
 import { addCommonOptions, type CommonFlags, example, type Finish } from './common.js';
 
 export interface ProfileFlags extends CommonFlags {
@@ -25,7 +25,7 @@ export function describeProfile(program: Command, finish: Finish): void {
     .addOption(new Option('--rotor <B-C>', 'the bond that turns; its torsion is chosen').argParser(axisPair).conflicts(['torsion', 'all']))
     .addOption(new Option('--all', 'every rotor, one of each equivalent set').conflicts(['torsion', 'rotor']))
     .option('--rigid', 'turn one side as it stands and relax nothing')
-    .addOption(new Option('--step <degrees>', 'distance of the grid angles, a divisor of 360').argParser(positiveNumber).default(10))
+    .addOption(new Option('--step <degrees>', 'distance of the grid angles, a divisor of 360').argParser(gridStep).default(10))
     .addOption(new Option('--start-angle <degrees>', 'an angle that lies on the grid').argParser(finiteNumber).default(-180))
     .addOption(new Option('--conformers <n>', 'starting conformers to build').argParser(nonNegativeInteger).default(8))
     .addOption(

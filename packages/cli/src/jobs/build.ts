@@ -14,7 +14,6 @@ import {
 import { conformers } from '@tordial/scan';
 import type { BuildFlags } from '../commands/build.js';
 import { eachRecord, tell } from './each-record.js';
-import { recordLabel } from './input.js';
 import { prepareFile, writeWhole } from './output.js';
 import { potentialOf, unitFactor } from './potential.js';
 
@@ -33,9 +32,9 @@ export async function buildStructures(argument: string, flags: BuildFlags): Prom
   prepareFile(flags.output);
 
   const entries: SdfEntry[] = [];
-  const exitCode = await eachRecord(argument, (record, index) => {
+  const exitCode = await eachRecord(argument, (record, { label }) => {
     const { structures, notes } = structuresOf(record.molecule, flags);
-    tell([...record.notes, ...notes], recordLabel(record, index));
+    tell([...record.notes, ...notes], label);
     for (const { coordinates, properties } of structures)
       entries.push({ molecule: record.molecule, coordinates, properties: new Map([...record.properties, ...properties]) });
   });

@@ -1,15 +1,26 @@
 /** Works through the records of an input: one that fails is reported and costs only itself. */
+import { basename } from 'node:path';
 import { type MolecularRecord, type Note, TordialError } from '@tordial/geometry';
 import { exitCodeOf, report } from '../failures.js';
 import { readRecords } from './input.js';
 
+/** Where a record stands among the others. */
+export interface RecordPosition {
+  /** From 0. */
+  readonly index: number;
+  /** Whether the input holds no other. */
+  readonly alone: boolean;
+  /** What messages call it: its own name, or what the user would recognise it by. */
+  readonly label: string;
+}
+
 /**
- * Calls `work` for each record that could be read (`alone` when the input holds no other) and `failed` for each that could not be read or done. Resolves to the exit code: 0, 1
+ * Calls `work` for each record that could be read and `failed` for each that could not be read or done. Resolves to the exit code: 0, 1
  * when a record failed, 2 when the request fits none of the records. An error that is no TordialError is a bug and ends everything.
  */
 export async function eachRecord(
   argument: string,
-  work: (record: MolecularRecord, index: number, alone: boolean) => Promise<void> | void,
+  work: (record: MolecularRecord, position: RecordPosition) => Promise<void> | void,
   failed: (error: TordialError, index: number, name: string) => void = () => undefined,
 ): Promise<number> {
   let index = 0;
@@ -22,7 +33,8 @@ export async function eachRecord(
     const following = await records.next();
     try {
       if (record instanceof TordialError) throw record;
-      await work(record, index, index === 0 && following.done === true);
+      const alone = index === 0 && following.done === true;
+      await work(record, { index, alone, label: labelOf(record, argument, index, alone) });
     } catch (error) {
       if (!(error instanceof TordialError)) throw error;
       const placed = new TordialError(error.code, error.message, { ...record.place, ...error.place }, { cause: error });
@@ -37,6 +49,12 @@ export async function eachRecord(
   if (index === 0) throw new TordialError('file/empty', 'the input holds no record; give a SMILES, or a file with at least one molecule');
   if (misfits === index) return 2;
   return failures > 0 ? 1 : 0;
+}
+
+function labelOf({ molecule, place }: MolecularRecord, argument: string, index: number, alone: boolean): string {
+  if (molecule.name !== '') return molecule.name;
+  const input = place.file ? basename(place.file) : argument === '-' ? 'input' : argument;
+  return alone ? input : `${input} record ${place.record ?? index + 1}`;
 }
 
 /** Tells notes on standard error. */

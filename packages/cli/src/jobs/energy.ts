@@ -4,7 +4,6 @@ import { type Coordinates, embed, type Note, openStereo } from '@tordial/geometr
 import { relax } from '@tordial/scan';
 import type { EnergyFlags } from '../commands/energy.js';
 import { eachRecord, tell } from './each-record.js';
-import { recordLabel } from './input.js';
 import { potentialOf, unitFactor } from './potential.js';
 import { table } from './table.js';
 
@@ -28,7 +27,7 @@ export async function listEnergies(argument: string, flags: EnergyFlags): Promis
   const factor = unitFactor(flags.unit);
   const exitCode = await eachRecord(
     argument,
-    (record, index) => {
+    (record, { index, label }) => {
       const { molecule } = record;
       const potential = potentialOf(molecule, flags);
       const notes = [...record.notes];
@@ -53,7 +52,6 @@ export async function listEnergies(argument: string, flags: EnergyFlags): Promis
       const terms = potential.terms(x);
       const scaled = Object.fromEntries(TERMS.map((term) => [term, rounded(terms[term] * factor)])) as unknown as EnergyTerms;
       const energy = rounded(TERMS.reduce((sum, term) => sum + terms[term], 0) * factor);
-      const label = recordLabel(record, index);
       tell(notes, label);
       if (flags.json) {
         const line: EnergyLine = { name: molecule.name, index, atoms: molecule.atomCount, energy, terms: scaled, unit: flags.unit };

@@ -1,6 +1,5 @@
 /** What MOLECULE on the command line stands for, as a stream of records; one that cannot be read comes as its error, and the rest goes on. */
 import { createReadStream, existsSync, readFileSync, statSync } from 'node:fs';
-import { basename } from 'node:path';
 import type { Readable } from 'node:stream';
 import { createGunzip } from 'node:zlib';
 import { type MolecularRecord, moleculeFromSmiles, readXyz, sdfRecords, smilesRecords, TordialError } from '@tordial/geometry';
@@ -92,12 +91,4 @@ async function* chunksOf(stream: Readable, file?: string): AsyncGenerator<string
 export function readFrames(path: string): ReturnType<typeof readXyz> {
   if (!existsSync(path)) throw new TordialError('file/missing', `there is no file ${path}`, { file: path });
   return readXyz(readFileSync(path, 'utf8'));
-}
-
-/** A name for a record in messages and folders: its own, or where it stands. */
-export function recordLabel(record: MolecularRecord, index: number): string {
-  return (
-    record.molecule.name ||
-    (record.place.file ? `${basename(record.place.file)} record ${record.place.record ?? index + 1}` : `record ${index + 1}`)
-  );
 }

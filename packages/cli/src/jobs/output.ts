@@ -6,7 +6,7 @@ import { TordialError } from '@tordial/geometry/errors';
 /** Makes sure that files can be written to `folder`, before any long work. Throws `output/folder`. */
 export function prepareFolder(folder: string): void {
   try {
-    mkdirSync(folder, { recursive: true });
+    makeFolder(folder);
     accessSync(folder, constants.W_OK);
   } catch (cause) {
     throw new TordialError(
@@ -16,6 +16,14 @@ export function prepareFolder(folder: string): void {
       { cause },
     );
   }
+}
+
+/** Folder by folder: Node's recursive call never returns where a parent refuses new entries without saying so, as /proc does. */
+function makeFolder(folder: string): void {
+  if (statSync(folder, { throwIfNoEntry: false })?.isDirectory()) return;
+  const parent = dirname(folder);
+  if (parent !== folder) makeFolder(parent);
+  mkdirSync(folder);
 }
 
 /** Makes sure that `path` can be written, before any long work. Throws `output/folder` or `output/file`. */

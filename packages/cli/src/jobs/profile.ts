@@ -5,7 +5,7 @@ import { checkTorsion, findRotors, type ProfileDocument, torsionOfAxis } from '@
 import type { ProfileFlags } from '../commands/profile.js';
 import { torsionProfile } from '../torsion-profile.js';
 import { eachRecord, tell } from './each-record.js';
-import { readFrames, recordLabel } from './input.js';
+import { readFrames } from './input.js';
 import { prepareFolder, writeFiles } from './output.js';
 import { variantOf } from './potential.js';
 import { profileFiles } from './profile-files.js';
@@ -26,11 +26,10 @@ export async function scanProfiles(argument: string, flags: ProfileFlags): Promi
 
   // each profile gets a folder of its own as soon as there is more than one
   const folders = new Set<string>();
-  return eachRecord(argument, async (record, index, alone) => {
+  return eachRecord(argument, async (record, { index, alone, label }) => {
     const torsions = torsionsOf(record.molecule, flags);
     for (const torsion of torsions) {
-      const label = `${recordLabel(record, index)} ${torsion[1]}-${torsion[2]}`;
-      const document = await scan(record, torsion, flags, label);
+      const document = await scan(record, torsion, flags, `${label} ${torsion[1]}-${torsion[2]}`);
       tell(document.notes, label);
       if (flags.json) process.stdout.write(`${JSON.stringify(document)}\n`);
       if (!flags.output) continue;

@@ -3,14 +3,13 @@ import { canonicalSmiles, openStereo } from '@tordial/geometry';
 import { findRotors } from '@tordial/scan';
 import type { RotorsFlags } from '../commands/rotors.js';
 import { eachRecord, tell } from './each-record.js';
-import { recordLabel } from './input.js';
 import { table } from './table.js';
 
 export function listRotors(argument: string, { json = false }: RotorsFlags): Promise<number> {
-  return eachRecord(argument, (record, index) => {
+  return eachRecord(argument, (record, { index, label }) => {
     const { molecule } = record;
     const rotors = findRotors(molecule);
-    tell([...record.notes, ...openStereo(molecule)], recordLabel(record, index));
+    tell([...record.notes, ...openStereo(molecule)], label);
     if (json) {
       const line = {
         name: molecule.name,
