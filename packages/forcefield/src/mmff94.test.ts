@@ -146,6 +146,15 @@ describe('the energy function', () => {
     expect(Math.abs(pair.evaluate(beside(3)) - 2 * single)).toBeGreaterThan(0.1);
   });
 
+  it('stays finite as far as coordinates may reach', () => {
+    const far = x.map((value, n) => (n % 2 ? 9e8 : -9e8) + value);
+    const gradient = new Float64Array(x.length);
+    for (const vectors of [true, false]) {
+      expect(Number.isFinite(mmff94(molecule, { vectors }).evaluate(far, gradient))).toBe(true);
+      expect(gradient.every(Number.isFinite)).toBe(true);
+    }
+  });
+
   it('is 0 for a single atom', () => {
     const ion = mmff94(createMolecule({ atomicNumbers: [11], formalCharges: [1], bonds: [] }));
     expect(ion.evaluate(Float64Array.of(1, 2, 3), new Float64Array(3))).toBe(0);
@@ -155,7 +164,7 @@ describe('the energy function', () => {
     ['too few coordinates', new Float64Array(3), 'give three an atom'],
     ['a coordinate that is no number', x.with(4, Number.NaN), 'the y coordinate of atom 1 is NaN'],
     ['an infinite coordinate', x.with(6, Number.POSITIVE_INFINITY), 'the x coordinate of atom 2 is Infinity'],
-    ['atoms beyond reach', x.with(0, 1e100), 'too far apart'],
+    ['atoms beyond reach', x.with(0, 1e100), 'the x coordinate of atom 0 is 1e+100'],
   ])('refuses %s', (_what, coordinates, message) => {
     const potential = mmff94(molecule);
     for (const call of [() => potential.evaluate(coordinates), () => potential.terms(coordinates)]) {

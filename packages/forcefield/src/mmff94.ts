@@ -42,7 +42,7 @@ export interface Mmff94 {
   readonly parameters: Mmff94Parameters;
   /**
    * Energy in kcal/mol of the coordinates (angstrom, 3 an atom); overwrites `gradient`, when given, with dE/dx (kcal/mol/angstrom, 3 an atom).
-   * Throws `mmff94/coordinates` for arrays of another length and for coordinates that are no finite numbers.
+   * Throws `mmff94/coordinates` for arrays of another length and for coordinates that are no numbers or beyond 1e9 angstrom.
    */
   evaluate(x: Coordinates, gradient?: Float64Array): number;
   /** The energy term by term. Throws as `evaluate`. */
@@ -78,12 +78,12 @@ export function mmff94(molecule: Molecule, options: Mmff94Options = {}): Mmff94 
       addOutOfPlane(outOfPlane, x, gradient) +
       addTorsions(torsion, x, gradient);
     const nonBonded = (vectors ? addNonBondedVectors(rows, x, gradient) : undefined) ?? addNonBonded(rows, x, gradient);
-    return checkEnergy(bonded + nonBonded);
+    return bonded + nonBonded;
   }
 
   function terms(x: Coordinates): EnergyTerms {
     checkCoordinates(x, atomCount);
-    const energies = {
+    return {
       bondStretching: addBondStretching(bondStretching, x, unread),
       angleBending: addAngleBending(angleBending, x, unread),
       stretchBend: addStretchBend(stretchBend, x, unread),
@@ -91,8 +91,6 @@ export function mmff94(molecule: Molecule, options: Mmff94Options = {}): Mmff94 
       torsion: addTorsions(torsion, x, unread),
       ...nonBondedEnergies(rows, x),
     };
-    for (const energy of Object.values(energies)) checkEnergy(energy);
-    return energies;
   }
 
   return { atomCount, variant, dielectric, parameters, evaluate, terms };
@@ -109,19 +107,18 @@ function wrongLength(what: string, length: number, atomCount: number): TordialEr
   return new TordialError('mmff94/coordinates', `${length} ${what} values for ${atomCount} atoms; give three an atom`);
 }
 
+/** Farther than any system reaches, and near enough that no power of a distance in the terms overflows, angstrom. */
+const FARTHEST = 1e9;
+
 function checkCoordinates(x: Coordinates, atomCount: number): void {
   if (x.length !== 3 * atomCount) throw wrongLength('coordinate', x.length, atomCount);
   for (let n = 0; n < x.length; n++) {
-    if (Number.isFinite(x[n])) continue;
+    if (Math.abs(x[n]) <= FARTHEST) continue;
     const atom = Math.floor(n / 3);
-    throw new TordialError('mmff94/coordinates', `the ${'xyz'[n % 3]} coordinate of atom ${atom} is ${x[n]}; give finite numbers`, {
-      atom,
-    });
+    throw new TordialError(
+      'mmff94/coordinates',
+      `the ${'xyz'[n % 3]} coordinate of atom ${atom} is ${x[n]}; give numbers up to ${FARTHEST}`,
+      { atom },
+    );
   }
-}
-
-/** Finite coordinates give a finite energy unless the atoms are so far apart that the seventh power of the distance overflows. */
-function checkEnergy(energy: number): number {
-  if (Number.isFinite(energy)) return energy;
-  throw new TordialError('mmff94/coordinates', 'the energy overflows; the atoms lie too far apart to be one system');
 }
