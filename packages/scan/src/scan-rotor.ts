@@ -365,6 +365,8 @@ function* singleSweep(search: Search): Calculation<void> {
 const MOST_ROUNDS = 4;
 /** Branches up to this far above the envelope (kcal/mol) are followed from both ends. */
 const WINDOW = 2;
+/** The rotors next to the axis are turned on at points this far apart, degrees: what that finds is followed to the points between. */
+const TURN_NEXT_EVERY = 30;
 
 function* searchEnvelope(search: Search): Calculation<void> {
   for (const start of search.scan.starts) {
@@ -375,6 +377,7 @@ function* searchEnvelope(search: Search): Calculation<void> {
   const { molecule, rotor } = search.scan;
   const rotors = otherRotors(molecule, rotor);
   const next = rotors.filter(({ isNext }) => isNext);
+  const stride = Math.max(1, Math.round(TURN_NEXT_EVERY / search.scan.step));
   const seeded = new Set<HeldMinimum>();
   for (;;) {
     yield* close(search);
@@ -384,7 +387,7 @@ function* searchEnvelope(search: Search): Calculation<void> {
     for (const minimum of fresh) {
       seeded.add(minimum);
       if (minimum.twin && minimum.twin !== minimum && seeded.has(minimum.twin)) continue;
-      const turning = isWell(envelope, minimum.place) ? rotors : next;
+      const turning = isWell(envelope, minimum.place) ? rotors : minimum.place % stride === 0 ? next : [];
       for (const start of [...invertedNitrogens(molecule, rotor, minimum.coordinates), ...turnedRotors(turning, minimum.coordinates)])
         yield* find(search, minimum.place, start);
     }
