@@ -28,15 +28,13 @@ export async function scanProfiles(argument: string, flags: ProfileFlags): Promi
   const folders = new Set<string>();
   return eachRecord(argument, async (record, { index, alone, label }) => {
     const torsions = torsionsOf(record.molecule, flags);
+    const home = alone ? [] : [folderName(record.molecule, index, folders)];
     for (const torsion of torsions) {
       const document = await scan(record, torsion, flags, `${label} ${torsion[1]}-${torsion[2]}`);
       tell(document.notes, label);
       if (flags.json) process.stdout.write(`${JSON.stringify(document)}\n`);
       if (!flags.output) continue;
-      const parts = [flags.output];
-      if (!alone) parts.push(folderName(record.molecule, index, folders));
-      if (flags.all) parts.push(`rotor-${torsion[1]}-${torsion[2]}`);
-      const folder = join(...parts);
+      const folder = join(flags.output, ...home, flags.all ? `rotor-${torsion[1]}-${torsion[2]}` : '');
       prepareFolder(folder);
       writeFiles(folder, profileFiles(record.molecule, document));
       process.stderr.write(`${profileSummary(document)}written to ${folder}\n`);
