@@ -3,8 +3,11 @@ import { TordialError } from './errors.js';
 import { placeAlternatingBonds } from './kekule.js';
 import { checkLimit, type Limits } from './limits.js';
 import type { MoleculeParts } from './molecule.js';
-import { checkValence, missingHydrogens } from './valence.js';
+import { checkValence, missingHydrogens, normalValences } from './valence.js';
 import type { WrittenAtom, WrittenBond } from './written-structure.js';
+
+const HETERO = new Set([7, 8, 16]);
+const HALOGENS = new Set([9, 17, 35, 53]);
 
 export interface Assembled {
   readonly parts: MoleculeParts;
@@ -30,12 +33,34 @@ export function assemble(atoms: readonly WrittenAtom[], bonds: readonly WrittenB
     valence[a] += order;
     valence[b] += order;
   }
+  // what a hypervalent N or halogen may be doubly bonded to: oxides, azides, diazo compounds
+  const oxidised = new Uint8Array(atoms.length);
+  const overdone = new Uint8Array(atoms.length);
+  for (const { a, b, order } of bonds)
+    for (const [i, j] of order > 1
+      ? [
+          [a, b],
+          [b, a],
+        ]
+      : []) {
+      if (HETERO.has(atoms[j].atomicNumber)) oxidised[i] = 1;
+      else overdone[i] = 1;
+    }
   const addedHydrogens = new Int32Array(atoms.length);
   const firstHydrogen = new Int32Array(atoms.length);
   let next = atoms.length;
   atoms.forEach((atom, i) => {
     addedHydrogens[i] = atom.hydrogens >= 0 ? atom.hydrogens : missingHydrogens(atom.atomicNumber, atom.charge, valence[i]);
     checkValence(atom, valence[i] + addedHydrogens[i], i);
+    const [normal] = normalValences(atom.atomicNumber, atom.charge) ?? [valence[i]];
+    const isNitrogen = atom.atomicNumber === 7;
+    const doubtful = isNitrogen ? !oxidised[i] : HALOGENS.has(atom.atomicNumber) && atom.charge === 0 && overdone[i];
+    if (valence[i] > normal && doubtful)
+      throw new TordialError(
+        'molecule/valence',
+        `${atom.label}: ${isNitrogen ? 'nitrogen with five bonds needs a double bond to O, S or N' : 'a halogen can be doubly bonded to O, S or N only'}; a charge may be missing`,
+        { atom: i },
+      );
     firstHydrogen[i] = next;
     next += addedHydrogens[i];
   });

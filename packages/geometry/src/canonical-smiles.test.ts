@@ -110,6 +110,8 @@ describe('canonical SMILES', () => {
       ['C1=CC=C2C=CC=CC2=C1', 'C1=CC2=CC=CC=C2C=C1'],
       ['C1=CNC=C1', 'c1cc[nH]c1'],
       ['C1=CC=CC=CC=C1', 'C=1C=CC=CC=CC=1'],
+      ['c1ccc2c(c1)c1ccccc21', 'C1=CC=C2C(=C1)C1=CC=CC=C12'],
+      ['C1=CC=C2C=CC=C2C=C1', 'C1=CC2=CC=CC2=CC=C1'],
     ])
       expect(canonical(one)).toBe(canonical(other));
   });
@@ -123,6 +125,8 @@ describe('canonical SMILES', () => {
       ['CC=[C@]=CC', 'CC=[C@@]=CC', 'CC=C=CC'],
       ['C[C@H](F)[C@H](O)[C@@H](F)C', 'C[C@@H](F)[C@H](O)[C@H](F)C', 'C[C@H](F)[C@H](O)[C@H](F)C', 'C[C@H](F)[C@@H](O)[C@H](F)C'],
       ['Oc1ccccn1', 'O=c1cccc[nH]1'],
+      ['CC1=C(O)C=C1', 'CC1=CC=C1O'],
+      ['CC1=C(O)C=CC=CC=C1', 'CC1=CC=CC=CC=C1O'],
       ['CO', '[13CH3]O', 'C[18OH]', 'CO[2H]'],
     ];
     for (const group of groups) expect(new Set(group.map(canonical)).size, group[0]).toBe(group.length);

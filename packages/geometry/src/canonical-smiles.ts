@@ -1,7 +1,7 @@
 /** One SMILES for one structure, whatever the order of its atoms and the way its alternating bonds are written. */
 import { makeDefinite, makeDiscrete } from './colouring.js';
 import { cumulatedChains } from './cumulenes.js';
-import { doubleBondMatching, doubleCanBeSingle, singleCanBeDouble } from './delocalised-bonds.js';
+import { delocalisedBonds } from './delocalised-bonds.js';
 import { elementSymbol } from './elements.js';
 import { fragmentsOf } from './fragments.js';
 import { type Molecule, neighboursOf } from './molecule.js';
@@ -20,7 +20,7 @@ const LOWER_CASE = new Set([5, 6, 7, 8, 15, 16, 33, 34, 52]);
  */
 export function canonicalSmiles(molecule: Molecule): string {
   const elements = elementsOf(molecule).filter((element) => element.sign !== 0);
-  const delocalised = delocalisedBonds(molecule, elements);
+  const delocalised = lowerCaseBonds(molecule, elements);
   const rank = canonicalRanks(molecule, elements, delocalised);
   const open = openEnds(molecule);
   const hidden = hiddenHydrogens(molecule, elements, open);
@@ -71,28 +71,16 @@ function hiddenHydrogens(molecule: Molecule, elements: readonly StereoElement[],
   });
 }
 
-/** Marks the ring bonds that alternate between atoms which SMILES can write in lower case; a specified double bond keeps its whole system as written. */
-function delocalisedBonds(molecule: Molecule, elements: readonly StereoElement[]): Uint8Array {
-  const { bonds, rings, atomicNumbers } = molecule;
-  const marks = new Uint8Array(bonds.count);
-  const inRing = new Set<string>();
-  for (const ring of rings)
-    ring.forEach((a, n) => {
-      const b = ring[(n + 1) % ring.length];
-      inRing.add(a < b ? `${a} ${b}` : `${b} ${a}`);
-    });
-  const matching = doubleBondMatching(molecule);
-  for (let n = 0; n < bonds.count; n++) {
-    const [a, b] = [bonds.a[n], bonds.b[n]];
-    if (!inRing.has(`${a} ${b}`) || !LOWER_CASE.has(atomicNumbers[a]) || !LOWER_CASE.has(atomicNumbers[b])) continue;
-    marks[n] = (bonds.order[n] === 2 ? doubleCanBeSingle : singleCanBeDouble)(matching, a, b) ? 1 : 0;
-  }
+/** Bonds to leave to lower case; a specified double bond keeps its whole system as written. */
+function lowerCaseBonds(molecule: Molecule, elements: readonly StereoElement[]): Uint8Array {
+  const { neighbours, atomicNumbers } = molecule;
+  const marks = delocalisedBonds(molecule, (atom) => LOWER_CASE.has(atomicNumbers[atom]));
   const specified = elements.filter(({ kind }) => kind === 'doubleBond').flatMap(({ atoms }) => atoms);
   for (const i of specified)
-    for (let n = molecule.neighbours.start[i]; n < molecule.neighbours.start[i + 1]; n++)
-      if (marks[molecule.neighbours.bond[n]]) {
-        marks[molecule.neighbours.bond[n]] = 0;
-        specified.push(molecule.neighbours.atom[n]);
+    for (let n = neighbours.start[i]; n < neighbours.start[i + 1]; n++)
+      if (marks[neighbours.bond[n]]) {
+        marks[neighbours.bond[n]] = 0;
+        specified.push(neighbours.atom[n]);
       }
   return marks;
 }

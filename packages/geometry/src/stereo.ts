@@ -8,7 +8,7 @@
 
 import { makeDefinite, refine } from './colouring.js';
 import { cumulatedChains } from './cumulenes.js';
-import { doubleBondMatching, doubleCanBeSingle } from './delocalised-bonds.js';
+import { alternatingCycle, doubleBondMatching } from './delocalised-bonds.js';
 import { elementSymbol } from './elements.js';
 import type { Note } from './errors.js';
 import { bondBetween, type Molecule, neighboursOf, type StereoTable } from './molecule.js';
@@ -183,7 +183,7 @@ function smallestRing({ rings }: Molecule, a: number, b: number): number {
 /** Whether another way of writing the alternating bonds makes a ring's double bond single (porphyrins, annulenes). */
 function canAlternate(molecule: Molecule, a: number, b: number): boolean {
   if (smallestRing(molecule, a, b) === Number.POSITIVE_INFINITY) return false;
-  return doubleCanBeSingle(doubleBondMatching(molecule), a, b);
+  return alternatingCycle(doubleBondMatching(molecule), a, b) > 0;
 }
 
 /** Whether the ligands of an element differ in the given colouring. Oxo, hydroxy and oxide on P, S and As exchange protons and count as one. */
