@@ -98,6 +98,18 @@ describe.concurrent('tordial energy', () => {
       expect(line.unit).toBe('kcal/mol');
     }
   });
+  it('keeps the largest organic fragment when asked to, and says so', async () => {
+    const [whole, part] = await Promise.all(
+      [[], ['--largest-fragment']].map((flags) => tordial(['energy', '[Na+].CC(=O)[O-]', '--json', ...flags])),
+    );
+    expect(JSON.parse(whole.stdout).atoms).toBe(8);
+    expect(JSON.parse(part.stdout)).toMatchObject({ atoms: 7, notes: [{ code: 'molecule/fragments' }, { code: 'energy/built' }] });
+  });
+  it('refuses a record above the limit of atoms, which is a setting', async () => {
+    const { exitCode, stderr } = await tordial(['energy', 'CCCC', '--max-atoms', '10']);
+    expect(exitCode).toBe(1);
+    expect(stderr).toMatch(/14 atoms.*limit of 10/);
+  });
   it('converts the unit', async () => {
     const [kcal, kj] = await Promise.all(['kcal/mol', 'kJ/mol'].map((unit) => tordial(['energy', 'CCO', '--json', '--unit', unit])));
     expect(JSON.parse(kj.stdout).energy / JSON.parse(kcal.stdout).energy).toBeCloseTo(4.184, 4);

@@ -1,8 +1,22 @@
 import { type Command, Option } from 'commander';
-import { dielectric, nonNegativeInteger } from '../arguments.js';
+import { dielectric, nonNegativeInteger, positiveInteger } from '../arguments.js';
 
 /** Tells the entry which exit code the work ended with. */
 export type Finish = (exitCode: number) => void;
+
+/** Options that say how records are taken, shared by every command that reads molecules. */
+export interface InputFlags {
+  largestFragment?: boolean;
+  maxAtoms: number;
+}
+
+export function addInputOptions(command: Command): Command {
+  return command
+    .option('--largest-fragment', 'keep only the largest organic fragment of each record')
+    .addOption(
+      new Option('--max-atoms <n>', 'largest record that is taken, atoms with hydrogens').argParser(positiveInteger).default(1000),
+    );
+}
 
 /** Options that choose the potential, shared by every command that computes an energy. */
 export interface PotentialFlags {
@@ -10,7 +24,7 @@ export interface PotentialFlags {
   dielectric?: { model: 'constant' | 'distance'; constant: number };
 }
 
-export interface CommonFlags extends PotentialFlags {
+export interface CommonFlags extends PotentialFlags, InputFlags {
   seed: number;
   unit: 'kcal/mol' | 'kJ/mol';
   json?: boolean;
@@ -27,7 +41,7 @@ export function addPotentialOptions(command: Command): Command {
 }
 
 export function addCommonOptions(command: Command): Command {
-  return addPotentialOptions(command)
+  return addInputOptions(addPotentialOptions(command))
     .addOption(new Option('--seed <n>', 'seed of everything random').argParser(nonNegativeInteger).default(1))
     .addOption(new Option('--unit <unit>', 'unit of energies').choices(['kcal/mol', 'kJ/mol']).default('kcal/mol'))
     .option('--json', 'print the result as JSON on standard output, all else on standard error');

@@ -6,6 +6,7 @@ export interface ProfileFlags extends CommonFlags {
   torsion?: [number, number, number, number];
   rotor?: [number, number];
   all?: boolean;
+  full?: boolean;
   rigid?: boolean;
   step: number;
   startAngle: number;
@@ -24,6 +25,7 @@ export function describeProfile(program: Command, finish: Finish): void {
     )
     .addOption(new Option('--rotor <B-C>', 'the bond that turns; its torsion is chosen').argParser(axisPair).conflicts(['torsion', 'all']))
     .addOption(new Option('--all', 'every rotor, one of each equivalent set').conflicts(['torsion', 'rotor']))
+    .option('--full', 'cover the full turn (the default)')
     .option('--rigid', 'turn one side as it stands and relax nothing')
     .addOption(new Option('--step <degrees>', 'distance of the grid angles, a divisor of 360').argParser(gridStep).default(10))
     .addOption(new Option('--start-angle <degrees>', 'an angle that lies on the grid').argParser(finiteNumber).default(-180))

@@ -1,13 +1,12 @@
 import type { Command } from 'commander';
-import { example, type Finish } from './common.js';
+import { addInputOptions, example, type Finish, type InputFlags } from './common.js';
 
-export interface RotorsFlags {
+export interface RotorsFlags extends InputFlags {
   json?: boolean;
 }
 
 export function describeRotors(program: Command, finish: Finish): void {
-  program
-    .command('rotors')
+  addInputOptions(program.command('rotors'))
     .argument('<molecule>', 'SMILES, file or -')
     .description('list the bonds that turn: axis, defining torsion, kind, symmetry numbers, period')
     .option('--json', 'one JSON line a record on standard output')

@@ -32,7 +32,7 @@ export async function buildStructures(argument: string, flags: BuildFlags): Prom
   prepareFile(flags.output);
 
   const entries: SdfEntry[] = [];
-  const exitCode = await eachRecord(argument, (record, { label }) => {
+  const exitCode = await eachRecord(argument, flags, (record, { label }) => {
     const { structures, notes } = structuresOf(record.molecule, flags);
     tell([...record.notes, ...notes], label);
     for (const { coordinates, properties } of structures)

@@ -1,6 +1,7 @@
 /** Works through the records of an input: one that fails is reported and costs only itself. */
 import { basename } from 'node:path';
-import { type MolecularRecord, type Note, TordialError } from '@tordial/geometry';
+import { largestFragment, type MolecularRecord, type Note, TordialError } from '@tordial/geometry';
+import type { InputFlags } from '../commands/common.js';
 import { exitCodeOf, report } from '../failures.js';
 import { readRecords } from './input.js';
 
@@ -20,13 +21,14 @@ export interface RecordPosition {
  */
 export async function eachRecord(
   argument: string,
+  { largestFragment: reduce = false, maxAtoms }: InputFlags,
   work: (record: MolecularRecord, position: RecordPosition) => Promise<void> | void,
   failed: (error: TordialError, index: number, name: string) => void = () => undefined,
 ): Promise<number> {
   let index = 0;
   let failures = 0;
   let misfits = 0;
-  const records = readRecords(argument);
+  const records = readRecords(argument, { atoms: maxAtoms });
   let current = await records.next();
   while (!current.done) {
     const record = current.value;
@@ -34,7 +36,7 @@ export async function eachRecord(
     try {
       if (record instanceof TordialError) throw record;
       const alone = index === 0 && following.done === true;
-      await work(record, { index, alone, label: labelOf(record, argument, index, alone) });
+      await work(reduce ? reduced(record) : record, { index, alone, label: labelOf(record, argument, index, alone) });
     } catch (error) {
       if (!(error instanceof TordialError)) throw error;
       const placed = new TordialError(error.code, error.message, { ...record.place, ...error.place }, { cause: error });
@@ -49,6 +51,21 @@ export async function eachRecord(
   if (index === 0) throw new TordialError('file/empty', 'the input holds no record; give a SMILES, or a file with at least one molecule');
   if (misfits === index) return 2;
   return failures > 0 ? 1 : 0;
+}
+
+/** The record without its smaller fragments, and a note that says what went. */
+function reduced(record: MolecularRecord): MolecularRecord {
+  const { molecule, atoms } = largestFragment(record.molecule);
+  const lost = record.molecule.atomCount - molecule.atomCount;
+  if (lost === 0) return record;
+  const note = {
+    code: 'molecule/fragments',
+    message: `the largest organic fragment was kept and the rest (${lost} ${lost === 1 ? 'atom' : 'atoms'}) left out; atom indices count within the fragment`,
+  };
+  const { coordinates } = record;
+  const kept =
+    coordinates && Float64Array.from({ length: 3 * atoms.length }, (_, n) => coordinates[3 * atoms[Math.floor(n / 3)] + (n % 3)]);
+  return { ...record, molecule, coordinates: kept, notes: [...record.notes, note] };
 }
 
 function labelOf({ molecule, place }: MolecularRecord, argument: string, index: number, alone: boolean): string {

@@ -27,6 +27,7 @@ export async function listEnergies(argument: string, flags: EnergyFlags): Promis
   const factor = unitFactor(flags.unit);
   const exitCode = await eachRecord(
     argument,
+    flags,
     (record, { index, label }) => {
       const { molecule } = record;
       const potential = potentialOf(molecule, flags);

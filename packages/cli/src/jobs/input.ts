@@ -2,7 +2,7 @@
 import { createReadStream, existsSync, readFileSync, statSync } from 'node:fs';
 import type { Readable } from 'node:stream';
 import { createGunzip } from 'node:zlib';
-import { type MolecularRecord, moleculeFromSmiles, readXyz, sdfRecords, smilesRecords, TordialError } from '@tordial/geometry';
+import { type Limits, type MolecularRecord, moleculeFromSmiles, readXyz, sdfRecords, smilesRecords, TordialError } from '@tordial/geometry';
 
 /** A record, or what is wrong with it. */
 export type InputRecord = MolecularRecord | TordialError;
@@ -10,14 +10,14 @@ export type InputRecord = MolecularRecord | TordialError;
 const FORMAT = /\.(smi|smiles|mol|sdf|sd|xyz)(\.gz)?$/i;
 
 /** Records of a SMILES, a file or standard input. Throws `file/missing` and `file/format` before the first record. */
-export async function* readRecords(argument: string): AsyncGenerator<InputRecord> {
-  if (argument === '-') return yield* fromText(chunksOf(process.stdin), undefined);
+export async function* readRecords(argument: string, limits: Partial<Limits>): AsyncGenerator<InputRecord> {
+  if (argument === '-') return yield* fromText(chunksOf(process.stdin), undefined, limits);
   if (existsSync(argument) && statSync(argument).isFile()) {
     const format = FORMAT.exec(argument)?.[1].toLowerCase();
     const stream = createReadStream(argument);
     const unpacked = argument.endsWith('.gz') ? stream.pipe(createGunzip()) : stream;
     stream.on('error', (error) => unpacked.destroy(error));
-    for await (const record of fromText(chunksOf(unpacked, argument), format)) {
+    for await (const record of fromText(chunksOf(unpacked, argument), format, limits)) {
       if (record instanceof TordialError) yield new TordialError(record.code, record.message, { file: argument, ...record.place });
       else yield { ...record, place: { file: argument, ...record.place } };
     }
@@ -25,39 +25,39 @@ export async function* readRecords(argument: string): AsyncGenerator<InputRecord
   }
   if (FORMAT.test(argument))
     throw new TordialError('file/missing', `there is no file ${argument}; check the path, or give a SMILES`, { file: argument });
-  yield smilesRecord(argument);
+  yield smilesRecord(argument, limits);
 }
 
-function smilesRecord(smiles: string): InputRecord {
+function smilesRecord(smiles: string, limits: Partial<Limits>): InputRecord {
   try {
-    return { molecule: moleculeFromSmiles(smiles), coordinates: null, properties: new Map(), notes: [], place: {} };
+    return { molecule: moleculeFromSmiles(smiles, limits), coordinates: null, properties: new Map(), notes: [], place: {} };
   } catch (error) {
     if (error instanceof TordialError) return error;
     throw error;
   }
 }
 
-async function* fromText(chunks: AsyncIterable<string>, format: string | undefined): AsyncGenerator<InputRecord> {
+async function* fromText(chunks: AsyncIterable<string>, format: string | undefined, limits: Partial<Limits>): AsyncGenerator<InputRecord> {
   switch (format) {
     case 'smi':
     case 'smiles':
-      return yield* smilesRecords(chunks);
+      return yield* smilesRecords(chunks, limits);
     case 'mol':
     case 'sdf':
     case 'sd':
-      return yield* sdfRecords(chunks);
+      return yield* sdfRecords(chunks, limits);
     case 'xyz':
       throw new TordialError(
         'file/format',
         'an XYZ file says nothing of bonds; give the molecule as SMILES or molfile and the XYZ file with --geometry',
       );
     default:
-      return yield* guessed(chunks);
+      return yield* guessed(chunks, limits);
   }
 }
 
 /** Text of unknown kind: a molfile has a counts line or ends in `$$$$`; everything else is read as a list of SMILES. */
-async function* guessed(chunks: AsyncIterable<string>): AsyncGenerator<InputRecord> {
+async function* guessed(chunks: AsyncIterable<string>, limits: Partial<Limits>): AsyncGenerator<InputRecord> {
   const iterator = chunks[Symbol.asyncIterator]();
   let head = '';
   while (head.split('\n').length < 6) {
@@ -70,7 +70,7 @@ async function* guessed(chunks: AsyncIterable<string>): AsyncGenerator<InputReco
     yield* { [Symbol.asyncIterator]: () => iterator };
   })();
   const isMolfile = /V[23]000\s*$/.test(head.split(/\r?\n/)[3] ?? '');
-  yield* isMolfile ? sdfRecords(whole) : smilesRecords(whole);
+  yield* isMolfile ? sdfRecords(whole, limits) : smilesRecords(whole, limits);
 }
 
 async function* chunksOf(stream: Readable, file?: string): AsyncGenerator<string> {

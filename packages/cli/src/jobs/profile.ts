@@ -26,7 +26,7 @@ export async function scanProfiles(argument: string, flags: ProfileFlags): Promi
 
   // each profile gets a folder of its own as soon as there is more than one
   const folders = new Set<string>();
-  return eachRecord(argument, async (record, { index, alone, label }) => {
+  return eachRecord(argument, flags, async (record, { index, alone, label }) => {
     const torsions = torsionsOf(record.molecule, flags);
     const home = alone ? [] : [folderName(record.molecule, index, folders)];
     for (const torsion of torsions) {

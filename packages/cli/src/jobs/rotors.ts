@@ -5,12 +5,12 @@ import type { RotorsFlags } from '../commands/rotors.js';
 import { eachRecord, tell } from './each-record.js';
 import { table } from './table.js';
 
-export function listRotors(argument: string, { json = false }: RotorsFlags): Promise<number> {
-  return eachRecord(argument, (record, { index, label }) => {
+export function listRotors(argument: string, flags: RotorsFlags): Promise<number> {
+  return eachRecord(argument, flags, (record, { index, label }) => {
     const { molecule } = record;
     const rotors = findRotors(molecule);
     tell([...record.notes, ...openStereo(molecule)], label);
-    if (json) {
+    if (flags.json) {
       const line = {
         name: molecule.name,
         index,
