@@ -1,3 +1,4 @@
+import type { ProfileStationaryPoint } from '@tordial/scan';
 import { describe, expect, it } from 'vitest';
 import { analyseProfile } from './analyse.js';
 import { eyringRate } from './eyring.js';
@@ -41,8 +42,45 @@ describe('rotamers', () => {
     }
   });
 
+  it('count a position once where two branches cross in its bottom, also at 180', () => {
+    // each staggered position of the methyl seen on two branches, 4 degrees apart, as next to a group that can lie either way
+    const document = profileDocument(METHANOL, seriesOfBarriers([0, 0, -1.07]));
+    const stationaryPoints = document.stationaryPoints.flatMap((point): ProfileStationaryPoint[] => {
+      if (point.kind === 'barrier') return [{ ...point, kind: 'crossing' as const }];
+      const at = (shift: number, lift: number, kind: 'well' | 'crossing') => ({
+        ...point,
+        kind,
+        angle: point.angle + shift >= -180 ? point.angle + shift : point.angle + shift + 360,
+        energy: point.energy + lift,
+        coordinates: geometryAt(METHANOL, point.angle + shift),
+      });
+      return [at(-2, 0, 'well'), at(0, 0.01, 'crossing'), at(2, 0, 'well')];
+    });
+    const { wells, barriers } = rotamers({ ...document, stationaryPoints });
+    expect(wells.map((well) => [Math.round(well.angle), well.name, well.stationaryPoints.length])).toEqual([
+      [-180, 'ap', 2],
+      [-60, '-sc', 2],
+      [60, '+sc', 2],
+    ]);
+    expect(wells.map((well) => well.identical.length)).toEqual([2, 2, 2]);
+    expect(barriers.map(({ wells: [from, to], angle }) => [from, to, Math.round(angle)])).toEqual([
+      [0, 1, -120],
+      [1, 2, 0],
+      [2, 0, 120],
+    ]);
+  });
+
+  it('stand apart by the highest point of the curve where a document has no maximum between two wells', () => {
+    const document = profileDocument(PEROXIDE, HELICAL);
+    const stationaryPoints = document.stationaryPoints.filter((point) => point.kind === 'well' || Math.abs(point.angle) > 1);
+    const { barriers } = rotamers({ ...document, stationaryPoints });
+    const found = barriers.find((barrier) => barrier.stationaryPoint === null);
+    expect(found).toMatchObject({ kind: 'crossing', angle: expect.closeTo(0, 0) });
+    expect(found?.energy).toBeCloseTo(Math.max(...rotamers(document).barriers.map((barrier) => barrier.energy)), 2);
+  });
+
   it('of a flat profile are none', () => {
-    expect(() => rotamers(profileDocument(METHANOL, seriesOfBarriers([])))).toThrow(/must alternate/);
+    expect(() => rotamers(profileDocument(METHANOL, seriesOfBarriers([])))).toThrow(/flat or incomplete/);
   });
 });
 

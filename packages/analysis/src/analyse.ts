@@ -25,7 +25,7 @@ import { type BarrierBetween, type Rotamer, rotamerLabel, rotamers } from './rot
 import { requireTemperature } from './temperature.js';
 import { assumedBarrierError, type BarrierError } from './uncertainty.js';
 
-/** Free energies of the wells and barriers of a profile at one temperature, in their order round the turn, kcal/mol on one scale. */
+/** Free energies of the wells and barriers of a profile at one temperature, in the order of `rotamers(document)`, kcal/mol on one scale. */
 export type FreeEnergies = (temperature: number) => { readonly wells: readonly number[]; readonly barriers: readonly (number | null)[] };
 
 export interface AnalysisOptions {
@@ -33,11 +33,11 @@ export interface AnalysisOptions {
   readonly temperatures?: readonly number[];
   /** Assumed error of a barrier, kcal/mol; by the source of the torsion terms when left out. */
   readonly barrierError?: number;
-  /** Heights of refined saddles above the lowest well, kcal/mol, in the order of the barriers; where not null they replace the envelope's. */
+  /** Heights of refined saddles above the lowest well, kcal/mol, in the order of `rotamers(document).barriers`; null keeps the envelope's. */
   readonly saddles?: readonly (number | null)[];
   /** Where free energies are known, populations by them are added and rates are taken from them instead of electronic energies. */
   readonly freeEnergies?: FreeEnergies;
-  /** Transmission coefficient of each barrier at a temperature (Wigner); 1 when left out. */
+  /** Transmission coefficient of each barrier at a temperature (Wigner), in the same order; 1 when left out. */
   readonly transmission?: (temperature: number) => readonly number[];
   /** Shift difference (ppm) of two signals and spectrometer frequency (MHz): the coalescence temperature of each process is added. */
   readonly coalescence?: CoalescingSignals;
@@ -120,10 +120,7 @@ export function analyseProfile(document: ProfileDocument, options: AnalysisOptio
   };
 
   const geometries = document.points.map((point) => Float64Array.from(point.coordinates));
-  const wellGeometries = document.stationaryPoints
-    .filter((point) => point.kind === 'well')
-    .sort((a, b) => a.angle - b.angle)
-    .map((point) => Float64Array.from(point.coordinates));
+  const wellGeometries = wells.map((well) => Float64Array.from(document.stationaryPoints[well.stationaryPoints[0]].coordinates));
   const widths = curve.points.map(({ angle }, n) => {
     const previous = curve.points[n > 0 ? n - 1 : curve.points.length - 1].angle - (n > 0 ? 0 : 360);
     const next = n + 1 < curve.points.length ? curve.points[n + 1].angle : curve.points[0].angle + 360;

@@ -154,8 +154,10 @@ function coalescenceOf(
     };
     return { value: find(0), low: find(-error), high: find(error) };
   } catch (problem) {
-    if (problem instanceof TordialError) return { code: problem.code, message: problem.message };
-    throw problem;
+    if (!(problem instanceof TordialError)) throw problem;
+    return problem.code === 'analysis/barrier'
+      ? { code: 'coalescence/none', message: 'no coalescence: the barrier is too low to slow the exchange to this rate' }
+      : { code: problem.code, message: problem.message };
   }
 }
 
