@@ -25,6 +25,10 @@ const hard = file('hard.smi')
   .map((line) => line.split(/\s/)[0]);
 const SECONDS = 1000;
 
+// `node benchmarks/robustness.mjs` repeats these tests with more mutants and other seeds
+const FACTOR = Number(process.env.TORDIAL_MUTANTS ?? 1);
+const SEED = Number(process.env.TORDIAL_SEED ?? 20261201);
+
 /** Milliseconds that a reading took; anything but a molecule or a TordialError with a code is passed on. */
 function timed(read: () => unknown): number {
   const start = performance.now();
@@ -71,7 +75,7 @@ describe('robustness', () => {
           timed(() => moleculeFromSmiles(text).atomCount > 0 && accepted++),
         );
       }),
-      { numRuns: 20_000, seed: 20261201 },
+      { numRuns: 20_000 * FACTOR, seed: SEED },
     );
     expect(slowest).toBeLessThan(5 * SECONDS);
     // a good part of the mutants is still a structure, else the test would only see the grammar
@@ -90,7 +94,7 @@ describe('robustness', () => {
         const canonical = canonicalSmiles(molecule);
         expect(canonicalSmiles(moleculeFromSmiles(canonical)), text).toBe(canonical);
       }),
-      { numRuns: 1500, seed: 20261202 },
+      { numRuns: 1500 * FACTOR, seed: SEED + 1 },
     );
   });
 
@@ -108,7 +112,7 @@ describe('robustness', () => {
           timed(() => readMolfile(text).molecule.atomCount > 0 && accepted++),
         );
       }),
-      { numRuns: 5000, seed: 20261203 },
+      { numRuns: 5000 * FACTOR, seed: SEED + 2 },
     );
     expect(slowest).toBeLessThan(5 * SECONDS);
     expect(accepted).toBeGreaterThan(500);
@@ -121,7 +125,7 @@ describe('robustness', () => {
         for (const result of [...readSdf(text), ...readSmilesList(text)])
           if (!(result instanceof TordialError)) expect(result.molecule.atomCount).toBeGreaterThan(0);
       }),
-      { numRuns: 2000, seed: 20261204 },
+      { numRuns: 2000 * FACTOR, seed: SEED + 3 },
     );
   });
 
