@@ -382,6 +382,39 @@ describe('a handed axis beside a stereocentre', () => {
   });
 });
 
+describe('hands', () => {
+  it('are none where the mirror image is also the same molecule relabelled, as of a methyl beside a handed group', () => {
+    // three equal positions, of which two were seen with one hand of the group and one with both
+    const all = [0, 1, 2];
+    const wells = all.map((i) => ({
+      angle: -60 + 120 * i,
+      identical: all.filter((j) => j !== i),
+      mirrorImages: i === 1 ? all : [1],
+      species: 0,
+    }));
+    const kinds = observableProcesses({ wells: [0, 0, 0], barriers: [2, 2, 2] }, wells, T).map(({ kind }) => kind);
+    expect(kinds).toEqual(['topomerisation']);
+  });
+
+  it('of several wells each are those that the slowest racemising mode keeps together (the two-fold biaryl)', () => {
+    // -135 and 45 are one hand, -45 and 135 the other; each turns into the other over 0.5 and over 20
+    const wells = [-135, -45, 45, 135].map((angle, i) => ({
+      angle,
+      identical: [(i + 2) % 4],
+      mirrorImages: [(i + 1) % 4, (i + 3) % 4],
+      species: 0,
+    }));
+    const network = { wells: [0, 0, 0, 0], barriers: [14, 20, 14, 20] };
+    const process = observableProcesses(network, wells, T).find(({ kind }) => kind === 'racemisation');
+    if (!process) throw new Error('the biaryl racemises');
+    expect([process.from, process.to]).toEqual([
+      [0, 2],
+      [1, 3],
+    ]);
+    expect((processRates(process, network, T)?.forward ?? 0) / (eyringRate(14, T) + eyringRate(20, T))).toBeCloseTo(1, 9);
+  });
+});
+
 describe('free energies', () => {
   const water = { energy: 0, coordinates: Float64Array.of(0, 0, 0, 0.76, 0, 0.59, -0.76, 0, 0.59), frequencies: [1595, 3657, 3756] };
 

@@ -137,30 +137,24 @@ function coalescenceOf(
   try {
     const find = (shift: number): number => {
       let T = temperature;
-      let k = rates.forward;
-      let share = rates;
-      // the apparent barrier hardly changes with temperature, so a few rounds settle it
-      for (let round = 0; round < 50; round++) {
-        const target = coalescenceRate(difference, { populations: [share.backward, share.forward], coupling: 0 });
-        const next = temperatureOfRate(target, barrierOfRate(k, T) + (round === 0 ? shift : 0));
+      let found: ProcessRates | null = rates;
+      // the apparent barrier hardly changes with temperature, so a few rounds settle it; a common shift of all barriers simply adds to it
+      for (let round = 0; round < 50 && found; round++) {
+        const target = coalescenceRate(difference, { populations: [found.backward, found.forward], coupling: 0 });
+        const next = temperatureOfRate(target, barrierOfRate(found.forward, T) + shift);
         if (Math.abs(next - T) < 1e-9 * T) return next;
         T = next;
-        const again = processRates(process, shifted(networkAt(T), shift), T);
-        if (!again) break;
-        share = again;
-        k = again.forward;
+        found = processRates(process, networkAt(T), T);
       }
       return T;
     };
-    return { value: find(0), low: find(-error), high: find(error) };
+    // a barrier that the error swallows whole coalesces at no temperature
+    const low = barrierOfRate(rates.forward, temperature) > error ? find(-error) : 0;
+    return { value: find(0), low, high: find(error) };
   } catch (problem) {
     if (!(problem instanceof TordialError)) throw problem;
     return problem.code === 'analysis/barrier'
       ? { code: 'coalescence/none', message: 'no coalescence: the barrier is too low to slow the exchange to this rate' }
       : { code: problem.code, message: problem.message };
   }
-}
-
-function shifted(network: WellNetwork, shift: number): WellNetwork {
-  return { ...network, barriers: network.barriers.map((barrier) => (barrier === null ? null : barrier + shift)) };
 }

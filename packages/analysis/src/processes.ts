@@ -147,9 +147,15 @@ function sidesOfPlane(wells: readonly RelatedWell[]): number[] | null {
   return sides.includes(1) && sides.includes(-1) && !same ? sides : null;
 }
 
-/** +1 and -1 for the wells of either hand, 0 for wells that are their own mirror image; null where no well has a mirror image on the turn. */
+/**
+ * +1 and -1 for the wells of either hand, 0 for wells without; null where the turn has no hands. A well whose mirror image is also the same
+ * molecule relabelled has none: what is handed there is another part of the molecule, which this rotor does not turn over.
+ */
 function handsOf(network: WellNetwork, wells: readonly RelatedWell[], temperature: number): number[] | null {
-  const handed = (i: number): boolean => wells[i].mirrorImages.length > 0 && !wells[i].mirrorImages.includes(i);
+  const handed = (i: number): boolean => {
+    const same = [i, ...wells[i].identical];
+    return wells[i].mirrorImages.length > 0 && !same.some((j) => wells[j].mirrorImages.some((k) => same.includes(k)));
+  };
   if (!wells.some((_, i) => handed(i))) return null;
   const slow = network.barriers.includes(null) ? null : slowestOddMode(network, wells, temperature);
   const hands = wells.map(() => 0);
