@@ -1,6 +1,6 @@
 /** Everything that follows from one profile at the temperatures asked for, as plain data: what the table under the figure prints. */
-import { type Note, radians, TordialError } from '@tordial/geometry';
-import { atomShape, energyAt, type ProfileDocument } from '@tordial/scan';
+import { degrees, type Molecule, type Note, radians, TordialError } from '@tordial/geometry';
+import { atomShape, energyAt, type ProfileCurve, type ProfileDocument } from '@tordial/scan';
 import { type AnalysedProcess, analysedProcess, type CoalescingSignals } from './analysed-process.js';
 import {
   ANILIDE_CAUTION,
@@ -93,18 +93,60 @@ export interface ProfileAnalysis {
  * close, does not cover its turn or did not converge, or for couplings that the axis has not. Over a crossing of branches no rate is given.
  */
 export function analyseProfile(document: ProfileDocument, options: AnalysisOptions = {}): ProfileAnalysis {
-  const { temperatures = [298.15], barrierError, saddles, freeEnergies, transmission } = options;
+  const { temperatures = [298.15], barrierError, freeEnergies } = options;
   if (temperatures.length === 0) throw new TordialError('analysis/temperature', 'no temperature: give at least one, in kelvin');
   temperatures.forEach(requireTemperature);
   const curve = soundCurve(document);
-  const { wells, barriers } = rotamers(document);
+  const turn = rotamers(document);
+  const { wells, barriers } = turn;
   const molecule = moleculeOfDocument(document.molecule);
+  const error = assumedBarrierError(document.rotor.parameters, barrierError);
   // '@' in a canonical SMILES is a stereocentre or an axis that the molecule keeps
   const handedAxis = document.molecule.smiles.includes('@') && document.rotor.axis.every((i) => atomShape(molecule, i) === 'planar');
-  const error = assumedBarrierError(document.rotor.parameters, barrierError);
-  const order = barriers.map((_, i) => i).sort((a, b) => barriers[a].angle - barriers[b].angle);
+  const networkAt = networkOf(turn, options);
+  const couplingsAt = options.couplings ? profileCouplings(document, molecule, curve) : null;
 
-  const networkAt = (temperature: number): WellNetwork => {
+  return {
+    rotamers: wells.map((well) => ({ ...well, label: rotamerLabel(well) })),
+    barriers: barriers.map((barrier) => ({
+      ...barrier,
+      forward: barrier.energy - wells[barrier.wells[0]].energy,
+      backward: barrier.energy - wells[barrier.wells[1]].energy,
+    })),
+    barrierError: error,
+    rotamerCouplings: options.couplings
+      ? wells.map(({ stationaryPoints: [lowest] }) =>
+          vicinalCouplings(molecule, document.rotor.axis, Float64Array.from(document.stationaryPoints[lowest].coordinates)),
+        )
+      : null,
+    rows: temperatures.map((temperature) => {
+      const network = networkAt(temperature);
+      const energies = wells.map((well) => well.energy);
+      return {
+        temperature,
+        populations: {
+          byEnergy: [...boltzmannPopulations(energies, temperature)],
+          byProfile: populationsOfBasins(turn, curve, temperature),
+          byFreeEnergy: freeEnergies ? [...boltzmannPopulations(network.wells, temperature)] : null,
+        },
+        processes: observableProcesses(network, wells, temperature, handedAxis).map((process) =>
+          analysedProcess(process, networkAt, wells, temperature, error.error, options.coalescence),
+        ),
+        couplings: couplingsAt?.(temperature) ?? null,
+      };
+    }),
+    cautions: cautionsOf(document, molecule, turn, error, options),
+  };
+}
+
+type Turn = ReturnType<typeof rotamers>;
+
+/** The network of wells and barriers at a temperature: refined saddles before the envelope's barriers, free energies before electronic ones. */
+function networkOf(
+  { wells, barriers }: Turn,
+  { saddles, freeEnergies, transmission }: AnalysisOptions,
+): (temperature: number) => WellNetwork {
+  return (temperature) => {
     const free = freeEnergies?.(temperature);
     const heights = free ? free.wells : wells.map((well) => well.energy);
     return {
@@ -118,83 +160,63 @@ export function analyseProfile(document: ProfileDocument, options: AnalysisOptio
       transmission: transmission?.(temperature),
     };
   };
+}
 
-  const geometries = document.points.map((point) => Float64Array.from(point.coordinates));
-  const wellGeometries = wells.map((well) => Float64Array.from(document.stationaryPoints[well.stationaryPoints[0]].coordinates));
-  const widths = curve.points.map(({ angle }, n) => {
-    const previous = curve.points[n > 0 ? n - 1 : curve.points.length - 1].angle - (n > 0 ? 0 : 360);
-    const next = n + 1 < curve.points.length ? curve.points[n + 1].angle : curve.points[0].angle + 360;
-    return angle - previous + (next - angle);
-  });
-
-  const rows = temperatures.map((temperature): AnalysisRow => {
-    const network = networkAt(temperature);
-    const basins = basinPopulations(
-      (phi) => energyAt(curve, (phi * 180) / Math.PI),
-      order.map((i) => radians(barriers[i].angle)),
-      temperature,
-    );
-    // basin n begins at the n-th barrier by angle and holds the well after that barrier
-    const byProfile = wells.map(() => 0);
-    order.forEach((barrier, n) => {
-      byProfile[barriers[barrier].wells[1]] += basins[n];
-    });
-    return {
-      temperature,
-      populations: {
-        byEnergy: [
-          ...boltzmannPopulations(
-            wells.map((well) => well.energy),
-            temperature,
-          ),
-        ],
-        byProfile,
-        byFreeEnergy: freeEnergies ? [...boltzmannPopulations(network.wells, temperature)] : null,
-      },
-      processes: observableProcesses(network, wells, temperature, handedAxis).map((process) =>
-        analysedProcess(process, networkAt, wells, temperature, error.error, options.coalescence),
-      ),
-      couplings: options.couplings
-        ? averagedCouplings(
-            molecule,
-            document.rotor.axis,
-            geometries,
-            curve.points.map((point) => point.energy),
-            temperature,
-            widths,
-          )
-        : null,
-    };
-  });
-
-  const crossings = barriers.flatMap((barrier, i) =>
-    barrier.kind === 'crossing' && (saddles?.[i] ?? null) === null ? [barrier.angle] : [],
+function populationsOfBasins({ wells, barriers }: Turn, curve: ProfileCurve, temperature: number): number[] {
+  const ordered = [...barriers].sort((a, b) => a.angle - b.angle);
+  const basins = basinPopulations(
+    (phi) => energyAt(curve, degrees(phi)),
+    ordered.map((barrier) => radians(barrier.angle)),
+    temperature,
   );
-  const inverting = invertingNitrogens(molecule, document.rotor.axis, geometries);
-  const hydrogenBond = hydrogenBondCaution(molecule, geometries);
-  return {
-    rotamers: wells.map((well) => ({ ...well, label: rotamerLabel(well) })),
-    barriers: barriers.map((barrier) => ({
-      ...barrier,
-      forward: barrier.energy - wells[barrier.wells[0]].energy,
-      backward: barrier.energy - wells[barrier.wells[1]].energy,
-    })),
-    barrierError: error,
-    rotamerCouplings: options.couplings ? wellGeometries.map((x) => vicinalCouplings(molecule, document.rotor.axis, x)) : null,
-    rows,
-    cautions: [
-      ESTIMATE_CAUTION,
-      CLASS_CAUTION,
-      barrierErrorCaution(error),
-      ...(freeEnergies ? [] : [ELECTRONIC_CAUTION]),
-      ...(document.settings.kind === 'rigid' ? [RIGID_CAUTION] : []),
-      ...(document.molecule.fragments > 1 ? [FRAGMENTS_CAUTION] : []),
-      ...(document.rotor.kind === 'anilide' && document.rotor.parameters.some((term) => term.source === 'wildcard')
-        ? [ANILIDE_CAUTION]
-        : []),
-      ...(crossings.length > 0 ? [crossingCaution(crossings)] : []),
-      ...(inverting.length > 0 ? [inversionCaution(inverting)] : []),
-      ...(hydrogenBond ? [hydrogenBond] : []),
-    ],
-  };
+  const populations = wells.map(() => 0);
+  // a basin reaches from one barrier to the next and holds the well between
+  ordered.forEach((barrier, n) => {
+    populations[barrier.wells[1]] = basins[n];
+  });
+  return populations;
+}
+
+/** Couplings averaged over the points of the profile, each standing for half of the intervals beside it. */
+function profileCouplings(
+  document: ProfileDocument,
+  molecule: Molecule,
+  { points }: ProfileCurve,
+): (temperature: number) => VicinalCoupling[] {
+  const geometries = document.points.map((point) => Float64Array.from(point.coordinates));
+  const energies = points.map((point) => point.energy);
+  const last = points.length - 1;
+  const widths = points.map((_, n) => {
+    const previous = n > 0 ? points[n - 1].angle : points[last].angle - 360;
+    const next = n < last ? points[n + 1].angle : points[0].angle + 360;
+    return (next - previous) / 2;
+  });
+  return (temperature) => averagedCouplings(molecule, document.rotor.axis, geometries, energies, temperature, widths);
+}
+
+function cautionsOf(
+  document: ProfileDocument,
+  molecule: Molecule,
+  { barriers }: Turn,
+  error: BarrierError,
+  { saddles, freeEnergies }: AnalysisOptions,
+): Note[] {
+  const { rotor, settings, points } = document;
+  const geometries = points.map((point) => Float64Array.from(point.coordinates));
+  const crossings = barriers.filter(({ kind }, i) => kind === 'crossing' && (saddles?.[i] ?? null) === null).map(({ angle }) => angle);
+  const inverting = invertingNitrogens(molecule, rotor.axis, geometries);
+  const wildcard = rotor.parameters.some((term) => term.source === 'wildcard');
+  const cautions: (Note | null)[] = [
+    ESTIMATE_CAUTION,
+    CLASS_CAUTION,
+    barrierErrorCaution(error),
+    freeEnergies ? null : ELECTRONIC_CAUTION,
+    settings.kind === 'rigid' ? RIGID_CAUTION : null,
+    document.molecule.fragments > 1 ? FRAGMENTS_CAUTION : null,
+    rotor.kind === 'anilide' && wildcard ? ANILIDE_CAUTION : null,
+    crossings.length > 0 ? crossingCaution(crossings) : null,
+    inverting.length > 0 ? inversionCaution(inverting) : null,
+    hydrogenBondCaution(molecule, geometries),
+  ];
+  return cautions.filter((caution) => caution !== null);
 }

@@ -52,13 +52,14 @@ export function curveOfPoints({ points, unit }: ProfilePoints): ProfileCurve {
   const zero = points.length > 0 ? points[0].energy - points[0].relativeEnergy : 0;
   const branch = (end: BranchEnd | null): BranchEnd | null => end && { energy: (end.energy - zero) * factor, torque: end.torque * factor };
   return profileCurve(
-    points.map(({ angle, relativeEnergy, torque, breakAfter, beyond, before }) => ({
+    points.map(({ angle, relativeEnergy, torque, breakAfter, beyond, before, torqueAfter }) => ({
       angle,
       energy: relativeEnergy * factor,
       torque: torque * factor,
       breakAfter,
       beyond: branch(beyond),
       before: branch(before),
+      torqueAfter: torqueAfter === undefined ? undefined : torqueAfter * factor,
     })),
   );
 }
