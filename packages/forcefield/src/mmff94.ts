@@ -6,6 +6,7 @@
 import { type Coordinates, type Molecule, TordialError } from '@tordial/geometry';
 import { addNonBondedVectors } from './kernel/vector-rows.js';
 import { assignParameters, type Mmff94Parameters, type Mmff94Variant } from './parameters/assign-parameters.js';
+import { type TorsionSeries, type TorsionsWithSeries, withTorsionSeries } from './parameters/torsion-series-parameters.js';
 import { addAngleBending } from './terms/angle-bending.js';
 import { addBondStretching } from './terms/bond-stretching.js';
 import type { Dielectric } from './terms/electrostatic.js';
@@ -13,12 +14,15 @@ import { addNonBonded, nonBondedEnergies, nonBondedRows } from './terms/non-bond
 import { addOutOfPlane } from './terms/out-of-plane.js';
 import { addStretchBend } from './terms/stretch-bend.js';
 import { addTorsions } from './terms/torsion.js';
+import { addTorsionSeries } from './terms/torsion-series.js';
 
 export interface Mmff94Options {
   /** MMFF94s, the default, keeps delocalised trivalent nitrogen planar, as time-averaged structures have it. */
   readonly variant?: Mmff94Variant;
   /** Constant with D = 1 by default. */
   readonly dielectric?: Dielectric;
+  /** Torsion series in place of MMFF94's own torsion terms, such as the `series` of a `tordial/fit/1` document for this molecule. */
+  readonly torsionOverrides?: readonly TorsionSeries[];
   /** False for the plain loop over pairs where the WebAssembly one would be taken; they agree to rounding. */
   readonly vectors?: boolean;
 }
@@ -38,8 +42,11 @@ export interface EnergyTerms {
 export interface Mmff94 {
   readonly atomCount: number;
   readonly variant: Mmff94Variant;
+  /** What to call it in a result: the variant, and ' + series' where torsion series of the caller stand in it. */
+  readonly label: string;
+  readonly torsionOverrides: readonly TorsionSeries[];
   readonly dielectric: Dielectric;
-  readonly parameters: Mmff94Parameters;
+  readonly parameters: Mmff94Parameters & TorsionsWithSeries;
   /**
    * Energy in kcal/mol of the coordinates (angstrom, 3 an atom); overwrites `gradient`, when given, with dE/dx (kcal/mol/angstrom, 3 an atom).
    * Throws `mmff94/coordinates` for arrays of another length and for coordinates that are no numbers or beyond 1e9 angstrom.
@@ -53,17 +60,18 @@ export interface Mmff94 {
  * Types the atoms, assigns charges and parameters, and returns the energy function.
  *
  * Throws `mmff94/atom-type` for an atom that MMFF94 does not cover, naming it and the reason, `mmff94/parameter` for an interaction that
- * has neither constants nor a rule, and `mmff94/variant` or `mmff94/dielectric` for options that are none.
+ * has neither constants nor a rule, `mmff94/variant` or `mmff94/dielectric` for options that are none, and `mmff94/torsion-series` for overrides that do not fit the molecule.
  */
 export function mmff94(molecule: Molecule, options: Mmff94Options = {}): Mmff94 {
-  const { variant = 'MMFF94s', dielectric = { model: 'constant', constant: 1 }, vectors = true } = options;
+  const { variant = 'MMFF94s', dielectric = { model: 'constant', constant: 1 }, torsionOverrides = [], vectors = true } = options;
   if (variant !== 'MMFF94' && variant !== 'MMFF94s')
     throw new TordialError('mmff94/variant', `there is no variant ${variant}; take MMFF94 or MMFF94s`);
   checkDielectric(dielectric);
 
   const { atomCount } = molecule;
-  const parameters = assignParameters(molecule, variant);
-  const { bondStretching, angleBending, stretchBend, outOfPlane, torsion } = parameters;
+  const assigned = assignParameters(molecule, variant);
+  const parameters = { ...assigned, ...withTorsionSeries(assigned.torsion, torsionOverrides) };
+  const { bondStretching, angleBending, stretchBend, outOfPlane, torsion, torsionSeries } = parameters;
   const rows = nonBondedRows(molecule, parameters.vanDerWaals, parameters.partialCharges, dielectric);
   const unread = new Float64Array(3 * atomCount);
 
@@ -76,7 +84,8 @@ export function mmff94(molecule: Molecule, options: Mmff94Options = {}): Mmff94 
       addAngleBending(angleBending, x, gradient) +
       addStretchBend(stretchBend, x, gradient) +
       addOutOfPlane(outOfPlane, x, gradient) +
-      addTorsions(torsion, x, gradient);
+      addTorsions(torsion, x, gradient) +
+      addTorsionSeries(torsionSeries, x, gradient);
     const nonBonded = (vectors ? addNonBondedVectors(rows, x, gradient) : undefined) ?? addNonBonded(rows, x, gradient);
     return bonded + nonBonded;
   }
@@ -88,12 +97,13 @@ export function mmff94(molecule: Molecule, options: Mmff94Options = {}): Mmff94 
       angleBending: addAngleBending(angleBending, x, unread),
       stretchBend: addStretchBend(stretchBend, x, unread),
       outOfPlane: addOutOfPlane(outOfPlane, x, unread),
-      torsion: addTorsions(torsion, x, unread),
+      torsion: addTorsions(torsion, x, unread) + addTorsionSeries(torsionSeries, x, unread),
       ...nonBondedEnergies(rows, x),
     };
   }
 
-  return { atomCount, variant, dielectric, parameters, evaluate, terms };
+  const label = torsionOverrides.length > 0 ? `${variant} + series` : variant;
+  return { atomCount, variant, label, torsionOverrides, dielectric, parameters, evaluate, terms };
 }
 
 function checkDielectric({ model, constant }: Dielectric): void {
