@@ -43,6 +43,7 @@ export const profileSchema = z.object({
         types: torsion,
         class: z.int(),
         v: z.array(z.number()).describe('V1, V2, V3 ..., kcal/mol'),
+        phases: z.array(z.number()).optional().describe('degree, where they are not 0, 180, 0, 180 ...'),
         source: z.enum(['specific', 'wildcard', 'empirical rule', 'series']),
       }),
     ),
@@ -63,6 +64,10 @@ export const profileSchema = z.object({
         breakAfter: z.boolean().describe('the next point lies on another branch'),
         beyond: branchEnd.describe("this point's branch at the next angle"),
         before: branchEnd.describe("this point's branch at the previous angle"),
+        torqueAfter: z
+          .number()
+          .optional()
+          .describe('slope of the branch that leads on, where two branches of one energy meet at this very angle'),
         coordinates: z.array(z.number()).describe('angstrom, x0 y0 z0 x1 ...'),
       }),
     )

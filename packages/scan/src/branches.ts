@@ -129,13 +129,22 @@ export function joined(from: HeldMinimum, direction: Direction, to: HeldMinimum)
   return next(from, direction) === to && next(to, -direction as Direction) === from;
 }
 
-/** The lowest minimum at a place; of equal ones that which continues the branch of `neighbour`, the lowest minimum one step behind. */
+/** The lowest minimum at a place; of equal ones that which continues the branch of `neighbour`, the lowest one step behind, or comes closest to it. */
 export function lowest(map: Branches, place: number, neighbour?: HeldMinimum): HeldMinimum | undefined {
   let best: HeldMinimum | undefined;
   for (const minimum of map.at[place]) {
-    if (!best || minimum.energy < best.energy - 1e-9) best = minimum;
-    else if (neighbour && minimum.energy < best.energy + SAME_ENERGY && joined(neighbour, 1, minimum) && !joined(neighbour, 1, best))
-      best = minimum;
+    if (!best || minimum.energy < best.energy - SAME_ENERGY) best = minimum;
+    else if (minimum.energy < best.energy + SAME_ENERGY && neighbour) {
+      const gain = heightOver(neighbour, best) - heightOver(neighbour, minimum);
+      if (gain > 0 || (gain === 0 && minimum.energy < best.energy)) best = minimum;
+    } else if (minimum.energy < best.energy) best = minimum;
   }
   return best;
+}
+
+/** How far the branch of a minimum lies above the lowest minimum one step behind. */
+function heightOver(neighbour: HeldMinimum, minimum: HeldMinimum): number {
+  if (joined(neighbour, 1, minimum)) return 0;
+  const { behind } = minimum;
+  return behind && joined(minimum, -1, behind) ? Math.max(0, behind.energy - neighbour.energy) : Number.POSITIVE_INFINITY;
 }

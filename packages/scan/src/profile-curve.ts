@@ -23,6 +23,8 @@ export interface CurvePoint {
   /** Across a break: this point's branch at the next point's angle, and at the previous one's, where known. */
   readonly beyond: BranchEnd | null;
   readonly before: BranchEnd | null;
+  /** Slope of the branch that leads on to the next point, where two branches of one energy meet at this very angle; the torque when left out. */
+  readonly torqueAfter?: number;
 }
 
 /** One smooth stretch of the curve: E = c0 + c1 t + c2 t^2 + c3 t^3 with t from 0 to 1 between two points, of which it covers `from` to `to`. */
@@ -86,7 +88,7 @@ function hermite(left: BranchEnd, right: BranchEnd, width: number): CurvePiece['
 
 function piecesAfter(points: readonly CurvePoint[], n: number): CurvePiece[] {
   const count = points.length;
-  const left = points[n];
+  const left = { ...points[n], torque: points[n].torqueAfter ?? points[n].torque };
   const right = points[(n + 1) % count];
   const width = widthAfter(points, n);
   if (!left.breakAfter) return [{ point: n, coefficients: hermite(left, right, width), from: 0, to: 1, side: 'both' }];
@@ -182,10 +184,12 @@ function extremaOf(points: readonly CurvePoint[], pieces: readonly CurvePiece[])
       const curvature = 2 * c2 + 6 * c3 * t;
       if (curvature !== 0) add(curvature > 0 ? 'well' : 'barrier', piece, t, curvature);
     }
+    // the branch changes within an interval, or at a point where two of one energy meet
     const following = pieces[(n + 1) % pieces.length];
-    if (piece.side !== 'left' || following.side !== 'right') return;
-    if (derivative(piece.coefficients, piece.to) > 0 && derivative(following.coefficients, piece.to) < 0)
-      add('crossing', piece, piece.to, 0);
+    const within = piece.side === 'left';
+    if (!within && points[following.point].torqueAfter === undefined) return;
+    const falls = within ? derivative(following.coefficients, piece.to) : derivative(following.coefficients, 0);
+    if (derivative(piece.coefficients, piece.to) > 0 && falls < 0) add('crossing', within ? piece : following, within ? piece.to : 0, 0);
   });
   return alternating(found.sort((p, q) => p.angle - q.angle));
 }

@@ -27,6 +27,8 @@ export interface DocumentTorsionTerm {
   readonly class: number;
   /** V1, V2, V3 (and beyond for a series), kcal/mol. */
   readonly v: readonly number[];
+  /** Phases of a series' terms, degrees, where they are not 0, 180, 0, 180 ... */
+  readonly phases?: readonly number[];
   readonly source: 'specific' | 'wildcard' | 'empirical rule' | 'series';
 }
 
@@ -58,6 +60,8 @@ export interface ProfilePoint {
   /** Across a break: this point's branch at the next point's angle and at the previous one's (energy, torque), where known. */
   readonly beyond: BranchEnd | null;
   readonly before: BranchEnd | null;
+  /** Slope of the branch that leads on, where two branches of one energy meet at this very angle; the torque when left out. */
+  readonly torqueAfter?: number;
   /** Angstrom, x0 y0 z0 x1 ... */
   readonly coordinates: readonly number[];
 }
@@ -155,6 +159,7 @@ export function profileDocument(profile: Profile, details: DocumentDetails): Pro
       breakAfter: point.breakAfter,
       beyond: branch(point.beyond),
       before: branch(point.before),
+      ...(point.torqueAfter === undefined ? {} : { torqueAfter: absolute(point.torqueAfter) }),
     })),
     stationaryPoints: stationaryPoints.map((point) => ({ kind: point.kind, ...common(point) })),
     settings: {

@@ -99,6 +99,7 @@ function* meeting(curve: ProfileCurve, extremum: CurveExtremum, points: readonly
   const { point, fraction } = extremum;
   const left = points[point];
   const right = points[(point + 1) % points.length];
+  if (fraction === 0 && curve.points[point].torqueAfter !== undefined) return stationary('crossing', left);
   const width = intervalOf(curve, point);
   let at = fraction * width;
   let fromLeft: Held = left;

@@ -441,13 +441,15 @@ function lowestOnEach({ scan, map }: Search): HeldMinimum[] {
 
 function scanPoint(search: Search, envelope: readonly HeldMinimum[], minimum: HeldMinimum, place: number): ScanPoint {
   const count = envelope.length;
-  const end = (neighbour: HeldMinimum, direction: Direction): BranchEnd | null => {
-    const other = next(minimum, direction);
-    if (!other || other === neighbour || !joined(minimum, direction, other)) return null;
-    return { energy: other.energy, torque: other.torque };
-  };
   const after = envelope[(place + 1) % count];
   const before = envelope[(place - 1 + count) % count];
+  const breakAfter = !joined(minimum, 1, after);
+  // at an angle that is its own opposite, a minimum and its mirror image share the energy: either may lead on
+  const { twin } = minimum;
+  const other = twin && twin !== minimum && twin.place === place && !joined(twin, 1, after) ? twin : null;
+  const ahead = breakAfter ? continuation(minimum, 1) : null;
+  const otherAhead = breakAfter && other ? continuation(other, 1) : null;
+  const leads = otherAhead && (!ahead || otherAhead.energy < ahead.energy - 1e-9) ? other : null;
   return {
     angle: search.scan.angles[place],
     energy: minimum.energy,
@@ -455,8 +457,15 @@ function scanPoint(search: Search, envelope: readonly HeldMinimum[], minimum: He
     converged: minimum.converged,
     residual: minimum.gradientMax,
     coordinates: minimum.coordinates,
-    breakAfter: !joined(minimum, 1, after),
-    beyond: joined(minimum, 1, after) ? null : end(after, 1),
-    before: joined(before, 1, minimum) ? null : end(before, -1),
+    breakAfter,
+    beyond: leads ? otherAhead : ahead,
+    before: joined(before, 1, minimum) ? null : continuation(minimum, -1),
+    ...(leads ? { torqueAfter: leads.torque } : {}),
   };
+}
+
+/** Where a minimum's branch is one step on, if it goes on. */
+function continuation(minimum: HeldMinimum, direction: Direction): BranchEnd | null {
+  const other = next(minimum, direction);
+  return other && joined(minimum, direction, other) ? { energy: other.energy, torque: other.torque } : null;
 }
