@@ -177,14 +177,15 @@ describe('molfiles', () => {
   });
 
   it('leave wavy and crossed bonds and contradicting wedges open', () => {
-    const drawn = (wedges: [number, number], more = '') =>
+    const record = (wedges: [number, number]) =>
       readMolfile(
         ['', '                    2D', '', '  4  3  0  0  0  0  0  0  0  0999 V2000']
           .concat('    0.0000    0.0000    0.0000 C   0  0', '    1.0000    0.5000    0.0000 F   0  0')
           .concat('   -1.0000    0.5000    0.0000 Cl  0  0', '    0.0000   -1.0000    0.0000 Br  0  0')
-          .concat(`  1  2  1${String(wedges[0]).padStart(3)}`, `  1  3  1${String(wedges[1]).padStart(3)}`, '  1  4  1  0', `M  END${more}`)
+          .concat(`  1  2  1${String(wedges[0]).padStart(3)}`, `  1  3  1${String(wedges[1]).padStart(3)}`, '  1  4  1  0', 'M  END')
           .join('\n'),
-      ).molecule.stereo.tetrahedral[0].sign;
+      );
+    const drawn = (wedges: [number, number]) => record(wedges).molecule.stereo.tetrahedral[0].sign;
     // seen from the viewer's side with F in front: Cl, Br counter-clockwise from F, hydrogen behind: F-Cl-Br counter-clockwise
     expect(drawn([1, 0])).toBe(1);
     expect(drawn([6, 0])).toBe(-1);
@@ -192,5 +193,7 @@ describe('molfiles', () => {
     expect(drawn([1, 6])).toBe(0);
     expect(drawn([4, 0])).toBe(0);
     expect(drawn([0, 0])).toBe(0);
+    expect(record([1, 6]).notes).toEqual([expect.objectContaining({ code: 'molfile/wedge', place: { atom: 0 } })]);
+    expect(record([1, 0]).notes).toEqual([]);
   });
 });

@@ -3,7 +3,7 @@ import { assemble } from './assemble.js';
 import type { ErrorPlace, Note } from './errors.js';
 import { placeHydrogens } from './hydrogen-positions.js';
 import { checkLimit, type Limits, withDefaults } from './limits.js';
-import { type Coordinates, createMolecule, type Molecule } from './molecule.js';
+import { type Coordinates, createMolecule, type Molecule, type StereoTable } from './molecule.js';
 import { type MolfileAtom, parseMolfile, type WrittenMolfile } from './molfile-syntax.js';
 import { completeStereo, possibleStereo } from './stereo.js';
 import { perceiveStereo } from './stereo-perception.js';
@@ -42,7 +42,8 @@ export function readRecord(lines: readonly string[], limits: Limits, place: Erro
   const properties = dataFields(lines.slice(written.lineCount));
   if (!isThreeDimensional(written)) {
     const stated = { ...molecule, stereo: drawnStereo(possibleStereo(molecule, true), written) };
-    return { molecule: { ...stated, stereo: completeStereo(stated) }, coordinates: null, properties, notes: [], place };
+    const stereo = completeStereo(stated);
+    return { molecule: { ...molecule, stereo }, coordinates: null, properties, notes: unreadWedges(stereo, written), place };
   }
   const notes: Note[] = [];
   const coordinates = new Float64Array(3 * molecule.atomCount);
@@ -58,6 +59,18 @@ export function readRecord(lines: readonly string[], limits: Limits, place: Erro
   const possible = { ...molecule, stereo: possibleStereo(molecule, false) };
   const stated = { ...molecule, stereo: perceiveStereo(possible, coordinates) };
   return { molecule: { ...stated, stereo: completeStereo(stated) }, coordinates, properties, notes, place };
+}
+
+/** Notes on stereocentres that have a wedge and are open all the same. */
+function unreadWedges({ tetrahedral }: StereoTable, { bonds }: WrittenMolfile): Note[] {
+  const lifted = new Set(bonds.filter(({ wedge }) => wedge === 'up' || wedge === 'down').map(({ a }) => a));
+  return tetrahedral
+    .filter(({ atom, sign }) => sign === 0 && lifted.has(atom))
+    .map(({ atom }) => ({
+      code: 'molfile/wedge',
+      message: `the wedges at atom ${atom} contradict one another or can be read both ways; the stereocentre counts as not specified`,
+      place: { atom },
+    }));
 }
 
 /** A depth beyond rounding shows three dimensions; a flat file has them only when its header says so and the atoms do not coincide. */
