@@ -75,15 +75,18 @@ export function rotorOfProfile(document: ProfileDocument, momentKind: MomentKind
     potential: symmetric(
       withoutNoise(
         seriesOfFunction((phi) => energyAt(curve, (phi * 180) / Math.PI) * WAVENUMBER_PER_KCAL, 1024, points.length),
-        1e-6,
+        ROUNDING,
       ),
     ),
     // a third of the harmonics that the points allow: the rest is noise of the relaxation
     constant: symmetric(
-      seriesOfSamples(
-        moments.map((moment) => rotationalConstant(moment[momentKind])),
-        radians(moments[0].angle),
-        Math.floor(points.length / 6),
+      withoutNoise(
+        seriesOfSamples(
+          moments.map((moment) => rotationalConstant(moment[momentKind])),
+          radians(moments[0].angle),
+          Math.floor(points.length / 6),
+        ),
+        ROUNDING,
       ),
     ),
     symmetryNumber,
@@ -92,6 +95,9 @@ export function rotorOfProfile(document: ProfileDocument, momentKind: MomentKind
     notes,
   };
 }
+
+/** Harmonics this small beside the largest come from the six decimals of a document, and would hide a symmetry. */
+const ROUNDING = 3e-6;
 
 /** Degrees within which identical wells count as evenly spaced: the atom that is driven leads its equals a little. */
 const UNEVEN = 5;
