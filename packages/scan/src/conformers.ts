@@ -1,8 +1,10 @@
 /**
- * Conformers: structures from distance geometry, relaxed on a potential, the same one only once.
+ * Conformers: structures from distance geometry and moved copies of the lowest of them, relaxed on a potential, each only once.
  *
- * More starts than conformers are embedded and relaxed roughly; the lowest different ones are then relaxed to the end. Two structures are
- * one conformer when their energies agree and symmetry-aware superposition lays their heavy atoms on each other; mirror images stay two.
+ * More starts than conformers are relaxed roughly; the lowest different ones are then relaxed to the end. Two structures are one conformer
+ * when their energies agree and symmetry-aware superposition lays their heavy atoms on each other; mirror images stay two.
+ *
+ * Half of the starts are turned copies of what is lowest so far, the least used first: G. Chang, W. C. Guida, W. C. Still, J. Am. Chem. Soc. 111, 4379 (1989).
  */
 import {
   type AutomorphismGroup,
@@ -14,6 +16,7 @@ import {
   openStereo,
   perceiveStereo,
   type StereoTable,
+  seededRandom,
   symmetricRmsd,
   TordialError,
 } from '@tordial/geometry';
@@ -21,11 +24,13 @@ import { drive } from './drive.js';
 import { checkSizes, minimise, type Preconditioner, type Relaxed } from './minimise.js';
 import { modelHessian } from './model-hessian.js';
 import type { Calculation, Potential } from './potential.js';
+import { findRotors } from './rotors/index.js';
+import { movableRotors, torsionMove } from './torsion-moves.js';
 
 export interface ConformerOptions {
   /** Conformers wanted at most; 20. */
   readonly count?: number;
-  /** Structures embedded and relaxed roughly to choose from; twice `count`. */
+  /** Structures relaxed roughly to choose from; three times `count`. */
   readonly starts?: number;
   /** Start of the random numbers: the same seed gives the same conformers. Default 1. */
   readonly seed?: number;
@@ -64,6 +69,10 @@ export interface ConformerSet {
 /** Energies of one conformer from two starts agree to this, kcal/mol, once they are relaxed; before that to ROUGHLY_EQUAL. */
 const EQUAL = 0.01;
 const ROUGHLY_EQUAL = 0.1;
+/** Share of the starts that are embedded; the others are moved copies of the lowest. */
+const EMBEDDED = 0.5;
+/** Structures this far above the lowest are moved on from, kcal/mol. */
+const NEAR = 5;
 /** Where the rough relaxation stops, kcal/mol/angstrom. */
 const ROUGH = 0.5;
 /** Automorphisms that a comparison tries at most; beyond that a copy may be kept as a second conformer. */
@@ -81,7 +90,7 @@ export function conformers(molecule: Molecule, potential: Potential, options: Co
 /** The search as a calculation, for any kind of potential. Throws as `conformers` does. */
 export function* conformerSearch(molecule: Molecule, options: ConformerOptions = {}): Calculation<ConformerSet> {
   const { count = 20, seed = 1, window = Number.POSITIVE_INFINITY, rmsd = 0.1, tolerance = 1e-3, openStereo: open = 'one' } = options;
-  const starts = options.starts ?? 2 * count;
+  const starts = options.starts ?? 3 * count;
   if (!(Number.isInteger(count) && count >= 1 && Number.isInteger(starts) && starts >= count))
     throw new TordialError('conformers/settings', `conformers need a count of at least 1 and no fewer starts, not ${count} and ${starts}`);
   if (!(window >= 0 && rmsd >= 0 && tolerance > 0))
@@ -94,10 +103,19 @@ export function* conformerSearch(molecule: Molecule, options: ConformerOptions =
   let evaluations = 0;
 
   const rough: Relaxed[] = [];
-  for (const start of embedMany(whole, starts, { seed })) {
-    const relaxed: Relaxed = yield* relaxation(model, start, Math.max(ROUGH, tolerance));
-    evaluations += relaxed.evaluations;
-    rough.push(relaxed);
+  const rotors = movableRotors(findRotors(molecule));
+  const embedded = rotors.length === 0 ? starts : Math.max(count, Math.ceil(starts * EMBEDDED));
+  const known: Known[] = [];
+  const random = seededRandom(seed + 1);
+  for (const start of embedMany(whole, embedded, { seed })) yield* add(start);
+  for (let n = embedded; n < starts; n++) {
+    // the least used of the lowest structures, so that none is exhausted while a better one waits
+    const lowest = Math.min(...known.map(({ relaxed }) => relaxed.energy));
+    const near = known.filter(({ relaxed }) => relaxed.energy - lowest <= NEAR);
+    const parent = near.reduce((p, q) => (q.used < p.used || (q.used === p.used && q.relaxed.energy < p.relaxed.energy) ? q : p));
+    parent.used++;
+    const moved = torsionMove(molecule, rotors, parent.relaxed.coordinates, random);
+    if (moved) yield* add(moved);
   }
   const chosen = different(whole, group, rough, rmsd, ROUGHLY_EQUAL).slice(0, count);
 
@@ -131,6 +149,19 @@ export function* conformerSearch(molecule: Molecule, options: ConformerOptions =
       message: `${stopped} of ${result.length} conformers did not reach the gradient asked for`,
     });
   return { conformers: result, notes, evaluations };
+
+  function* add(start: Coordinates): Calculation<void> {
+    const relaxed: Relaxed = yield* relaxation(model, start, Math.max(ROUGH, tolerance));
+    evaluations += relaxed.evaluations;
+    rough.push(relaxed);
+    if (!known.some(({ relaxed: { energy } }) => Math.abs(energy - relaxed.energy) < ROUGHLY_EQUAL)) known.push({ relaxed, used: 0 });
+  }
+}
+
+/** A structure to move on from, and how often that was done. */
+interface Known {
+  readonly relaxed: Relaxed;
+  used: number;
 }
 
 function* relaxation(model: Preconditioner, start: Coordinates, tolerance: number): Calculation<Relaxed> {

@@ -175,7 +175,9 @@ export function turning(molecule: Molecule, shapes: Shapes): Turning {
     const on = others(donor, acyl);
     const heavy = on.filter((i) => atomicNumbers[i] > 1);
     const beside = heavy.length === 1 ? heavy[0] : on.length === 1 ? on[0] : -1;
-    const fixed = beside >= 0 && bondRing[n] === 0;
+    // thioamides, hydrazides and hydroxamic acids take either form
+    const usual = atomicNumbers[acylOxygen(acyl)] === 8 && beside >= 0 && [1, 6].includes(atomicNumbers[beside]);
+    const fixed = usual && bondRing[n] === 0;
     if (atomicNumbers[donor] !== 7 && !fixed) return null;
     return { a: acyl, b: donor, atA: acylOxygen(acyl), atB: fixed ? beside : on[0], cis: fixed ? true : null };
   }
