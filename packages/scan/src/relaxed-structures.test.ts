@@ -25,7 +25,9 @@ const list = (name: string) =>
 
 /** No MMFF94 type for an atom, or no term that holds the axis of a cumulene: what relaxation cannot be asked for. */
 const NOT_HELD = new Set(['pentavalent phosphorus', 'hexavalent sulfur', 'hydrogen', 'allene', 'butatriene']);
-const BENT = new Set(['paracyclophane', 'helicene']);
+/** Arenes that their bridges or neighbours bend. */
+const BENT = new Set(['paracyclophane', 'helicene', 'crowded arene']);
+const ELEMENTS = new Set([1, 6, 7, 8, 9, 14, 15, 16, 17, 35, 53]);
 
 /** Largest torsion angle (degrees) inside six-membered rings of alternating bonds and furan-like five-membered ones. */
 function aromaticTwist(molecule: Molecule, x: Coordinates): number {
@@ -76,8 +78,7 @@ function check(name: string, smiles: string): void {
 describe('embedded structures after relaxation with MMFF94s', () => {
   it.each(list('hard').filter(([name]) => !NOT_HELD.has(name)))('%s is sound', check);
   // every fourth; the benchmark of embedding does all
-  it.each(list('nci').filter(([, smiles], n) => n % 4 === 0 && !/\.|\[(Cd|Hg|Sn|As|Se|Pt|Cu|Fe|Co|Na|K|B)/.test(smiles)))(
-    '%s is sound',
-    check,
-  );
+  const sample = list('nci').filter(([, smiles], n) => n % 4 === 0 && !smiles.includes('.'));
+  const covered = sample.filter(([, smiles]) => moleculeFromSmiles(smiles).atomicNumbers.every((z) => ELEMENTS.has(z)));
+  it.each(covered)('%s is sound', check);
 });
