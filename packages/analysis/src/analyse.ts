@@ -36,9 +36,9 @@ export interface AnalysisOptions {
   /** Heights of refined saddles above the lowest well, kcal/mol, in the order of `rotamers(document).barriers`; null keeps the envelope's. */
   readonly saddles?: readonly (number | null)[];
   /** Where free energies are known, populations by them are added and rates are taken from them instead of electronic energies. */
-  readonly freeEnergies?: FreeEnergies;
+  readonly freeEnergies?: FreeEnergies | null;
   /** Transmission coefficient of each barrier at a temperature (Wigner), in the same order; 1 when left out. */
-  readonly transmission?: (temperature: number) => readonly number[];
+  readonly transmission?: ((temperature: number) => readonly number[]) | null;
   /** Shift difference (ppm) of two signals and spectrometer frequency (MHz): the coalescence temperature of each process is added. */
   readonly coalescence?: CoalescingSignals;
   /** Add vicinal H-C-C-H couplings over the axis; an error where the axis has none. */

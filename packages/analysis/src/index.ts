@@ -26,6 +26,7 @@ export * from './point-group.js';
 export * from './populations.js';
 export * from './processes.js';
 export * from './profile-checks.js';
+export * from './proved-energies.js';
 export * from './rotamers.js';
 export * from './rrho.js';
 export * from './stability-class.js';

@@ -1,0 +1,70 @@
+import { describe, expect, it } from 'vitest';
+import { analyseProfile } from './analyse.js';
+import { seriesOfBarriers } from './hindered-rotor/periodic-series.js';
+import { rigidTangent } from './hindered-rotor/reduced-moment.js';
+import { PEROXIDE, profileDocument } from './profile.fixture.js';
+import { type ProvedStationaryPoint, provedEnergies } from './proved-energies.js';
+import { vibrations, zeroPointEnergy } from './vibrations.js';
+
+const document = profileDocument(PEROXIDE, seriesOfBarriers([-8, -24]));
+const MASSES = [15.999, 15.999, 1.008, 1.008];
+
+/** A Hessian (rotation of the whole molecule takes about half of the torsion out of it again) whose mass-weighted force constant is 700 for every motion but the torsion and `torsional` for that. */
+function hessianAt(x: Float64Array, torsional: number): Float64Array {
+  const tangent = rigidTangent(x, [0, 1], [1, 3]);
+  const weighted = tangent.map((value, n) => value * Math.sqrt(MASSES[Math.floor(n / 3)]));
+  const square = weighted.reduce((sum, value) => sum + value * value, 0);
+  const hessian = new Float64Array(144);
+  for (let i = 0; i < 12; i++)
+    for (let j = 0; j < 12; j++) {
+      const scale = Math.sqrt(MASSES[Math.floor(i / 3)] * MASSES[Math.floor(j / 3)]);
+      const along = (weighted[i] * weighted[j]) / square;
+      hessian[12 * i + j] = scale * (700 * ((i === j ? 1 : 0) - along) + torsional * along);
+    }
+  return hessian;
+}
+
+function proof(verdicts: readonly string[]): ProvedStationaryPoint[] {
+  return document.stationaryPoints.map((point, of) => {
+    const coordinates = Float64Array.from(point.coordinates);
+    const torsional = point.kind === 'well' ? 60 : -2000;
+    return { of, verdict: verdicts[of], energy: point.energy - 100, coordinates, hessian: hessianAt(coordinates, torsional) };
+  });
+}
+const kinds = document.stationaryPoints.map((point) => (point.kind === 'well' ? 'minimum' : 'saddle'));
+
+describe('energies of proved points', () => {
+  it('are the heights of the saddles, and free energies that lose the torsion at the saddle', () => {
+    const { saddles, freeEnergies, transmission, notes } = provedEnergies(document, proof(kinds));
+    expect(notes).toEqual([]);
+    const heights = analyseProfile(document).barriers.map((barrier) => barrier.energy);
+    saddles.forEach((height, i) => {
+      expect(height).toBeCloseTo(heights[i], 8);
+    });
+    if (!freeEnergies || !transmission) throw new Error('all wells are minima');
+    const { wells, barriers } = freeEnergies(298.15);
+    expect(wells[0]).toBeCloseTo(wells[1], 8);
+    // the well has one vibration more than the saddle: its zero point is most of the difference, rotation a little of it
+    const x = Float64Array.from(document.stationaryPoints.find((point) => point.kind === 'well')?.coordinates ?? []);
+    const [torsion] = vibrations(hessianAt(x, 60), x, MASSES).frequencies;
+    barriers.forEach((barrier, i) => {
+      expect(Math.abs((barrier ?? 0) - wells[0] - heights[i] + zeroPointEnergy([torsion]))).toBeLessThan(0.3);
+    });
+    for (const kappa of transmission(298.15)) expect(kappa).toBeGreaterThan(1);
+    const analysis = analyseProfile(document, { saddles, freeEnergies, transmission });
+    expect(analysis.rows[0].processes[0].barrier).toBeCloseTo(Math.min(...barriers.map((b) => b ?? 0)) - wells[0], 8);
+  });
+
+  it('are unknown where nothing was proved, and the notes say so', () => {
+    const barrier = document.stationaryPoints.findIndex((point) => point.kind === 'barrier');
+    const odd = provedEnergies(document, proof(kinds.map((kind, of) => (of === barrier ? 'other saddle' : kind))));
+    expect(odd.saddles.filter((height) => height === null)).toHaveLength(1);
+    expect(odd.notes.map((note) => note.code)).toEqual(['proof/saddle']);
+    expect(odd.notes[0].message).toMatch(/other saddle/);
+    const well = document.stationaryPoints.findIndex((point) => point.kind === 'well');
+    const lost = provedEnergies(document, proof(kinds.map((kind, of) => (of === well ? 'merged' : kind))));
+    expect(lost.freeEnergies).toBeNull();
+    expect(lost.notes.map((note) => note.code)).toEqual(['proof/well']);
+    expect(() => provedEnergies(document, [{ ...proof(kinds)[0], of: 99 }])).toThrow(/this very profile/);
+  });
+});

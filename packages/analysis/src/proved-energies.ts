@@ -1,0 +1,87 @@
+/** From stationary points that have been proved (wells relaxed without constraint, saddles refined, Hessians at both) to what an analysis takes. */
+import { type Coordinates, type Note, TordialError } from '@tordial/geometry';
+import type { ProfileDocument } from '@tordial/scan';
+import { massesOfDocument } from './document-molecule.js';
+import { freeEnergiesOf, type RefinedPoint } from './free-energies.js';
+import { rotamers } from './rotamers.js';
+import { vibrations } from './vibrations.js';
+
+/** What a proof says of one stationary point of a profile; scan's `ProvedPoint` is one. */
+export interface ProvedStationaryPoint {
+  /** Index among the document's `stationaryPoints`. */
+  readonly of: number;
+  /** `minimum` and `saddle` are what a well and a barrier should be; anything else is not used. */
+  readonly verdict: string;
+  /** kcal/mol. */
+  readonly energy: number;
+  /** 3 values an atom, angstrom. */
+  readonly coordinates: Coordinates;
+  /** Row-major, kcal/mol/angstrom^2. */
+  readonly hessian: ArrayLike<number>;
+}
+
+/** Energies of proved points in the order of `rotamers(document)`, to be handed to `analyseProfile`. */
+export interface ProvedEnergies {
+  /** Heights above the lowest well, kcal/mol; null where no saddle was proved. */
+  readonly saddles: readonly (number | null)[];
+  /** Null where a well was not proved to be a minimum. */
+  readonly freeEnergies: ((temperature: number) => { wells: number[]; barriers: (number | null)[] }) | null;
+  readonly transmission: ((temperature: number) => number[]) | null;
+  /** Which points could not be used. */
+  readonly notes: readonly Note[];
+}
+
+/**
+ * Saddle heights, free energies and transmission coefficients of a profile from its proved points. `masses` in amu, standard weights when left out. A
+ * barrier whose saddle joins other wells, has more than one negative mode or was not found stays unknown, so that no rate is taken over it.
+ * Throws `proof/points` for points that belong to another document, and as `vibrations` does.
+ */
+export function provedEnergies(
+  document: ProfileDocument,
+  proved: readonly ProvedStationaryPoint[],
+  masses: ArrayLike<number> = massesOfDocument(document.molecule),
+): ProvedEnergies {
+  const byPlace = new Map(proved.map((point) => [point.of, point]));
+  for (const place of byPlace.keys())
+    if (!document.stationaryPoints[place])
+      throw new TordialError(
+        'proof/points',
+        `there is no stationary point ${place} in the document: prove the points of this very profile`,
+      );
+  const { wells, barriers } = rotamers(document);
+  const notes: Note[] = [];
+  const refined = ({ energy, coordinates, hessian }: ProvedStationaryPoint): RefinedPoint => ({
+    energy,
+    coordinates,
+    frequencies: vibrations(hessian, coordinates, masses).frequencies,
+  });
+  const minima = wells.map(({ stationaryPoints, angle }) => {
+    const found = stationaryPoints.flatMap((place) => byPlace.get(place) ?? []).filter((point) => point.verdict === 'minimum');
+    if (found.length === 0)
+      notes.push({ code: 'proof/well', message: `the well at ${angle.toFixed(1)} degrees was not proved to be a minimum` });
+    return found.length > 0 ? found.reduce((low, point) => (point.energy < low.energy ? point : low)) : null;
+  });
+  const saddles = barriers.map(({ stationaryPoint, angle }) => {
+    const found = stationaryPoint === null ? undefined : byPlace.get(stationaryPoint);
+    if (found?.verdict === 'saddle') return found;
+    const verdict = found ? `: ${found.verdict}` : '';
+    notes.push({ code: 'proof/saddle', message: `no saddle between its two wells was proved at ${angle.toFixed(1)} degrees${verdict}` });
+    return null;
+  });
+  const lowest = Math.min(...minima.flatMap((point) => point?.energy ?? []));
+  const known = minima.filter((point) => point !== null);
+  const complete =
+    known.length === minima.length
+      ? freeEnergiesOf(
+          known.map(refined),
+          saddles.map((point) => point && refined(point)),
+          masses,
+        )
+      : null;
+  return {
+    saddles: saddles.map((point) => (point && Number.isFinite(lowest) ? point.energy - lowest : null)),
+    freeEnergies: complete?.freeEnergies ?? null,
+    transmission: complete?.transmission ?? null,
+    notes,
+  };
+}
