@@ -216,7 +216,7 @@ function cautionsOf(
     rotor.kind === 'anilide' && wildcard ? ANILIDE_CAUTION : null,
     crossings.length > 0 ? crossingCaution(crossings) : null,
     inverting.length > 0 ? inversionCaution(inverting) : null,
-    hydrogenBondCaution(molecule, geometries),
+    hydrogenBondCaution(molecule, geometries, settings['dielectric']),
   ];
   return cautions.filter((caution) => caution !== null);
 }

@@ -27,6 +27,13 @@ describe('cautions', () => {
     const open = closed.slice();
     open.set([-0.9, -0.3, 0], 15);
     expect(hydrogenBondCaution(molecule, [open, closed])?.code).toBe('caution/hydrogen-bond');
+    expect(hydrogenBondCaution(molecule, [closed])?.message).toMatch(/overbind.*distance-dependent dielectric/);
+    for (const dielectric of [
+      { model: 'distance', constant: 1 },
+      { model: 'constant', constant: 4 },
+    ])
+      expect(hydrogenBondCaution(molecule, [closed], dielectric)?.message).toMatch(/dielectric of this scan weakens it/);
+    expect(hydrogenBondCaution(molecule, [closed], { model: 'constant', constant: 1 })?.message).toMatch(/overbind/);
     expect(hydrogenBondCaution(molecule, [open])).toBeNull();
     // the same contact inside a C-H is none
     const carbon = createMolecule({ atomicNumbers: [6, 6, 6, 6, 8, 1], bonds: [[0, 1, 1], [1, 2, 1], [2, 3, 1], [3, 4, 1], [0, 5, 1]] }); // biome-ignore format: bonds

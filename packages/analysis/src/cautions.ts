@@ -73,14 +73,24 @@ const HYDROGEN_BOND_CAUTION: Note = {
     'The molecule closes an internal hydrogen bond on the way round. Gas-phase MMFF94 electrostatics overbind it, so wells that have it are too deep; repeat the scan with the distance-dependent dielectric, and trust neither in a protic solvent.',
 };
 
+const SCREENED_HYDROGEN_BOND_CAUTION: Note = {
+  code: 'caution/hydrogen-bond',
+  message:
+    'The molecule closes an internal hydrogen bond on the way round. The dielectric of this scan weakens it; how deep such wells are in a solvent remains uncertain, most of all in a protic one.',
+};
+
 /** Longest H...A distance (angstrom) and smallest D-H...A angle (radians) of a hydrogen bond, after G. A. Jeffrey, An Introduction to Hydrogen Bonding (1997). */
 const LONGEST = 2.3;
 const SMALLEST = (110 * Math.PI) / 180;
 
-/** The caution about internal hydrogen bonds when any of the geometries (3 values an atom, angstrom) has one; null otherwise. */
+/**
+ * The caution about internal hydrogen bonds when any of the geometries (3 values an atom, angstrom) has one; null otherwise. `dielectric` is what the
+ * scan's settings say of it: a distance-dependent or larger one weakens the bond, and the caution says that instead.
+ */
 export function hydrogenBondCaution(
   molecule: Pick<Molecule, 'atomCount' | 'atomicNumbers' | 'neighbours'>,
   geometries: readonly Coordinates[],
+  dielectric?: unknown,
 ): Note | null {
   const { atomicNumbers } = molecule;
   const pairs: [number, number, number][] = [];
@@ -94,7 +104,14 @@ export function hydrogenBondCaution(
       if ([7, 8, 9, 16].includes(atomicNumbers[a]) && a !== donor && !near.has(a)) pairs.push([donor, h, a]);
   }
   const closed = geometries.some((x) => pairs.some(([d, h, a]) => distance(x, h, a) < LONGEST && angle(x, d, h, a) > SMALLEST));
-  return closed ? HYDROGEN_BOND_CAUTION : null;
+  if (!closed) return null;
+  return screens(dielectric) ? SCREENED_HYDROGEN_BOND_CAUTION : HYDROGEN_BOND_CAUTION;
+}
+
+function screens(dielectric: unknown): boolean {
+  if (typeof dielectric !== 'object' || dielectric === null) return false;
+  const { model, constant } = dielectric as { model?: unknown; constant?: unknown };
+  return model === 'distance' || (typeof constant === 'number' && constant > 1);
 }
 
 function withinBonds(molecule: Pick<Molecule, 'neighbours'>, from: number, bonds: number): Set<number> {
