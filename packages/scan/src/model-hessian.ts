@@ -48,6 +48,8 @@ const STEEP = 36;
 const STALE = 0.03;
 /** Pairs this much (angstrom) too far apart to touch get room in the matrix as well, so that its pattern need not change at each step. */
 const ROOM = 0.4;
+/** So many times the contacts at hand may have room. */
+const IDLE = 3;
 
 /** Coordinates of one kind with the blocks of the matrix that they add to: for atoms p >= q of a row, twice the offset, plus 1 if q is its row. */
 interface Placed {
@@ -68,7 +70,7 @@ export function modelHessian(molecule: Molecule, driven: Torsion | null = null):
   const made = new Float64Array(3 * atomCount);
   let ready = false;
   const rho = new Float64Array(bonds.length / 2);
-  let room = new Set<number>();
+  const room = new Set<number>();
   let matrix = blockMatrix(blockPattern(atomCount, couplings));
   let placed = place(matrix.pattern);
 
@@ -85,12 +87,7 @@ export function modelHessian(molecule: Molecule, driven: Torsion | null = null):
   function make(x: Coordinates): void {
     made.set(x);
     const contacts = contactsAt(model.contactKinds, model.bonded, x);
-    if (!hasRoom(contacts)) {
-      const near = contactsAt(model.contactKinds, model.bonded, x, ROOM);
-      room = new Set(keysOf(near));
-      matrix = blockMatrix(blockPattern(atomCount, [...couplings, ...near]));
-      placed = place(matrix.pattern);
-    }
+    if (!hasRoom(contacts)) makeRoom(x);
     const { values, pattern } = matrix;
     values.fill(0);
     for (let d = 0; d < 9 * atomCount; d += 9) values[d] = values[d + 4] = values[d + 8] = shift;
@@ -117,8 +114,14 @@ export function modelHessian(molecule: Molecule, driven: Torsion | null = null):
     return true;
   }
 
-  function keysOf(pairs: readonly number[]): number[] {
-    return pairs.flatMap((i, n) => (n % 2 === 0 ? i * atomCount + pairs[n + 1] : []));
+  /** Contacts come and go along a scan: those met before keep their room, until most of it lies idle. */
+  function makeRoom(x: Coordinates): void {
+    const near = contactsAt(model.contactKinds, model.bonded, x, ROOM);
+    if (2 * room.size > IDLE * near.length) room.clear();
+    for (let n = 0; n < near.length; n += 2) room.add(near[n] * atomCount + near[n + 1]);
+    const pairs = [...room].flatMap((key) => [Math.floor(key / atomCount), key % atomCount]);
+    matrix = blockMatrix(blockPattern(atomCount, [...couplings, ...pairs]));
+    placed = place(matrix.pattern);
   }
 
   return {
