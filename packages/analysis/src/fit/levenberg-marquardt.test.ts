@@ -1,5 +1,5 @@
+import { readFileSync } from 'node:fs';
 import { describe, expect, it } from 'vitest';
-import fixture from '../../fixtures/nist-strd.json' with { type: 'json' };
 import { levenbergMarquardt } from './levenberg-marquardt.js';
 
 interface Problem {
@@ -12,7 +12,9 @@ interface Problem {
     readonly residualSumOfSquares: number;
   };
 }
-const problems: Readonly<Record<string, Problem>> = fixture.problems;
+const problems: Readonly<Record<string, Problem>> = JSON.parse(
+  readFileSync(new URL('../../fixtures/nist-strd.json', import.meta.url), 'utf8'),
+).problems;
 
 const turn = 2 * Math.PI;
 const MODELS: Readonly<Record<string, (b: Float64Array, x: number) => number>> = {

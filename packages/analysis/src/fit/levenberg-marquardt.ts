@@ -3,7 +3,7 @@
  *
  * Each step is one of ml-levenberg-marquardt, in parameters scaled so that every column of the Jacobian has length 1 (Marquardt's scaling);
  * it is kept when it lowers the sum and its damping is changed accordingly. The Jacobian is taken by five-point central differences. What
- * the damped steps leave over is taken out by Gauss-Newton steps through an orthogonal factorisation, and the result counts as
+ * the damped steps leave over is taken out by Gauss-Newton steps through a singular value decomposition, and the result counts as
  * found only when the residuals are orthogonal to the model's tangent plane (relative offset).
  *
  * Sources: K. Levenberg, Quart. Appl. Math. 2, 164 (1944); D. W. Marquardt, J. SIAM 11, 431 (1963); criterion of D. M. Bates and
@@ -12,7 +12,7 @@
  */
 import { TordialError } from '@tordial/geometry';
 import { levenbergMarquardt as libraryStep } from 'ml-levenberg-marquardt';
-import { Matrix, QrDecomposition, SingularValueDecomposition } from 'ml-matrix';
+import { Matrix, SingularValueDecomposition } from 'ml-matrix';
 
 export interface NonlinearProblem {
   /** Observed values y. */
@@ -162,7 +162,7 @@ export function levenbergMarquardt(problem: NonlinearProblem): NonlinearFit {
     return {
       parameters,
       covariance,
-      standardErrors: covariance && covariance.map((row, k) => Math.sqrt(row[k])),
+      standardErrors: covariance?.map((row, k) => Math.sqrt(row[k])) ?? null,
       residualSumOfSquares,
       degreesOfFreedom,
       iterations,
@@ -187,21 +187,19 @@ function jacobianAt(values: (parameters: Float64Array) => Float64Array, paramete
   return jacobian;
 }
 
-/** The relative offset of the residuals from orthogonality to the tangent plane, and the Gauss-Newton step (none where columns depend on each other). */
+/** The relative offset of the residuals from orthogonality to the tangent plane, and the Gauss-Newton step; no step where columns depend on each other. */
 function tangent(jacobian: Matrix, residuals: Float64Array): { offset: number; step: number[] | null } {
   const { rows: m, columns: p } = jacobian;
   const scale = columnLengths(jacobian);
-  const qr = new QrDecomposition(scaledColumns(jacobian, scale));
-  const q = qr.orthogonalMatrix;
-  const along = q.transpose().mmul(Matrix.columnVector(residuals)).to1DArray().slice(0, p);
+  const { leftSingularVectors: u, rightSingularVectors: v, diagonal } = new SingularValueDecomposition(scaledColumns(jacobian, scale));
+  const least = DETERMINED * Math.max(...diagonal);
+  // along directions in which the model does not move there is nothing to gain
+  const along = diagonal.map((value, k) => (value > least ? sumOfProducts(u.getColumn(k), residuals) : 0));
   const inPlane = sumOfSquares(along);
   const outside = Math.max(sumOfSquares(residuals) - inPlane, 0);
   const offset = Math.sqrt(inPlane / p) / Math.sqrt(outside / Math.max(m - p, 1));
-  const step = qr.isFullRank()
-    ? qr
-        .solve(Matrix.columnVector(residuals))
-        .to1DArray()
-        .map((value, k) => value / scale[k])
+  const step = diagonal.every((value) => value > least)
+    ? Array.from(scale, (length, k) => diagonal.reduce((sum, value, j) => sum + (v.get(k, j) * along[j]) / value, 0) / length)
     : null;
   return { offset: Number.isFinite(offset) ? offset : Number.POSITIVE_INFINITY, step };
 }
@@ -239,10 +237,14 @@ function difference(a: Float64Array, b: Float64Array): Float64Array {
   return a.map((value, i) => value - b[i]);
 }
 
-function sumOfSquares(values: ArrayLike<number>): number {
+function sumOfProducts(a: ArrayLike<number>, b: ArrayLike<number>): number {
   let sum = 0;
-  for (let i = 0; i < values.length; i++) sum += values[i] * values[i];
+  for (let i = 0; i < a.length; i++) sum += a[i] * b[i];
   return sum;
+}
+
+function sumOfSquares(values: ArrayLike<number>): number {
+  return sumOfProducts(values, values);
 }
 
 function notConverged(offset: number, iterations: number): TordialError {
