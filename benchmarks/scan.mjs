@@ -15,123 +15,141 @@ import { relax, relaxAt, scanRotor } from '@tordial/scan';
 
 const { molecules } = JSON.parse(readFileSync(new URL('../packages/scan/fixtures/scan-reference.json', import.meta.url), 'utf8'));
 const CONFORMERS = 8;
-const ROUNDS = 3;
+const POINTS = 36;
+const ROUNDS = { sweep: 15, full: 3 };
+/** kcal/mol: a point this much above the reference's is counted and explained. */
+const ABOVE = 0.01;
 
-/** Processor time of a call in milliseconds, the shortest of a few. */
-function measure(call) {
-  let best = Number.POSITIVE_INFINITY;
+/** Shortest processor time of a call in milliseconds. */
+function measure(rounds, call) {
+  let milliseconds = Number.POSITIVE_INFINITY;
   let result;
-  for (let round = 0; round < ROUNDS; round++) {
+  for (let round = 0; round < rounds; round++) {
     const begin = process.cpuUsage();
     result = call();
     const { user, system } = process.cpuUsage(begin);
-    best = Math.min(best, (user + system) / 1000);
+    milliseconds = Math.min(milliseconds, (user + system) / 1000);
   }
-  return { milliseconds: best, result };
+  return { milliseconds, result };
 }
 
-function reference(molecule, x, torsion, angles) {
+function reference(molecule, x, torsion, angles, turn) {
+  const { atomicNumbers, formalCharges, bonds } = molecule;
   const input = JSON.stringify({
-    elements: [...molecule.atomicNumbers],
-    charges: [...molecule.formalCharges],
-    bonds: Array.from({ length: molecule.bonds.count }, (_, n) => [molecule.bonds.a[n], molecule.bonds.b[n], molecule.bonds.order[n]]),
+    elements: [...atomicNumbers],
+    charges: [...formalCharges],
+    bonds: Array.from({ length: bonds.count }, (_, n) => [bonds.a[n], bonds.b[n], bonds.order[n]]),
     x: [...x],
     torsion,
     angles,
+    turn,
   });
   const script = fileURLToPath(new URL('scan/reference.py', import.meta.url));
   const { status, stdout, stderr, error } = spawnSync('/usr/bin/python3', [script], { input, encoding: 'utf8', maxBuffer: 1 << 26 });
   return status === 0 ? JSON.parse(stdout) : { missing: error?.message ?? stderr.trim().split('\n').at(-1) };
 }
 
-const median = (values) => values.toSorted((p, q) => p - q)[values.length >> 1];
-const geometricMean = (values) => Math.exp(values.reduce((sum, value) => sum + Math.log(value), 0) / values.length);
+/** Places of the points in the order of the sweep: from the start's angle upwards, once round. */
+function sweepOrder(points, start, torsion) {
+  const begins = degrees(torsionAngle(start, ...torsion));
+  const apart = points.map(({ angle }) => Math.abs(wrapDegrees(angle - begins)));
+  const first = apart.indexOf(Math.min(...apart));
+  return points.map((_, n) => (first + n) % points.length);
+}
 
-console.log(`${cpus()[0].model}, Node ${process.version}; processor time, ours the shortest of ${ROUNDS} rounds\n`);
-const columns = [
+const geometricMean = (values) => Math.exp(values.reduce((sum, value) => sum + Math.log(value), 0) / values.length);
+const row = (cells) => console.log(`| ${cells.join(' | ')} |`);
+
+console.log(
+  `${cpus()[0].model}, Node ${process.version}; processor time, ours the shortest of ${ROUNDS.sweep} sweeps and ${ROUNDS.full} full scans\n`,
+);
+row([
   'molecule',
   'atoms',
-  'ms/point',
-  'evaluations/point',
-  'reference ms/point',
+  'evaluations a point',
+  'ms a point',
+  'reference ms',
   'ratio',
-  'points above',
+  'pulled ms',
+  'ratio',
+  'above',
   'full ms',
-  'full/sweep',
+  'full / sweep',
   'full above',
-];
-console.log(`| ${columns.join(' | ')} |\n|${columns.map(() => '---').join('|')}|`);
+]);
+row(Array.from({ length: 12 }, () => '---'));
 
-const ratios = [];
-const evaluationsPerPoint = [];
-const above = [];
-let points = 0;
+const ratios = { turned: [], pulled: [] };
+const perPoint = [];
+const explained = [];
 let missing = null;
 for (const { smiles, torsion } of molecules) {
   const molecule = moleculeFromSmiles(smiles);
   const potential = mmff94(molecule);
   const starts = embedMany(molecule, CONFORMERS, { seed: 1 }).map((x) => relax(molecule, potential, x).coordinates);
-  const sweep = measure(() => scanRotor(molecule, potential, torsion, { starts: [starts[0]], search: 'sweep' }));
-  const full = measure(() => scanRotor(molecule, potential, torsion, { starts }));
+  const sweep = measure(ROUNDS.sweep, () => scanRotor(molecule, potential, torsion, { starts: [starts[0]], search: 'sweep' }));
+  const full = measure(ROUNDS.full, () => scanRotor(molecule, potential, torsion, { starts }));
+  const { points, evaluations } = sweep.result;
+  perPoint.push(evaluations / POINTS);
 
-  const profile = sweep.result;
-  // the reference goes the same way round from the same start
-  const begins = degrees(torsionAngle(starts[0], ...torsion));
-  const apart = profile.points.map(({ angle }) => Math.abs(wrapDegrees(angle - begins)));
-  const first = apart.indexOf(Math.min(...apart));
-  const order = profile.points.map((_, n) => (first + n) % profile.points.length);
-  const answer = missing
-    ? { missing }
-    : reference(
-        molecule,
-        starts[0],
-        torsion,
-        order.map((n) => profile.points[n].angle),
-      );
-  missing = answer.missing ?? null;
-
-  const row = [smiles, molecule.atomCount, (sweep.milliseconds / 36).toFixed(3), (profile.evaluations / 36).toFixed(1)];
-  evaluationsPerPoint.push(profile.evaluations / 36);
-  let fullWorse = '';
-  if (missing) row.push('', '', '');
+  const order = sweepOrder(points, starts[0], torsion);
+  const angles = order.map((n) => points[n].angle);
+  const turned = missing ? { missing } : reference(molecule, starts[0], torsion, angles, true);
+  missing = turned.missing ?? null;
+  const beside = [];
+  let fullAbove = '';
+  if (missing) beside.push('', '', '', '', '');
   else {
-    fullWorse = 0;
-    const ratio = (1000 * answer.seconds) / sweep.milliseconds;
-    ratios.push(ratio);
-    points += 36;
-    let worse = 0;
-    order.forEach((n, k) => {
-      const difference = profile.points[n].energy - answer.energies[k];
-      if (difference > 0.01) {
-        worse++;
-        // a converged minimum on another branch: the reference's geometry leads to its own energy when it is relaxed on
-        const { energy } = relaxAt(molecule, potential, torsion, profile.points[n].angle, Float64Array.from(answer.geometries[k]));
-        above.push({
-          smiles,
-          angle: profile.points[n].angle,
-          difference,
-          residual: profile.points[n].residual,
-          other: energy - answer.energies[k],
-        });
-      }
-      if (full.result.points[n].energy > answer.energies[k] + 0.01) fullWorse++;
-    });
-    row.push(((1000 * answer.seconds) / 36).toFixed(2), ratio.toFixed(0), worse);
+    const pulled = reference(molecule, starts[0], torsion, angles, false);
+    for (const [kind, { seconds }] of [
+      ['turned', turned],
+      ['pulled', pulled],
+    ]) {
+      const ratio = (1000 * seconds) / sweep.milliseconds;
+      ratios[kind].push(ratio);
+      beside.push(((1000 * seconds) / POINTS).toFixed(2), ratio.toFixed(1));
+    }
+    const above = order
+      .map((n, k) => ({ n, k, difference: points[n].energy - turned.energies[k] }))
+      .filter(({ difference }) => difference > ABOVE);
+    for (const { n, k, difference } of above) {
+      // the reference's geometry must lead to its own energy: then ours is a converged minimum on another branch
+      const { energy } = relaxAt(molecule, potential, torsion, points[n].angle, Float64Array.from(turned.geometries[k]));
+      explained.push(
+        `  ${smiles} at ${points[n].angle}: ${difference.toFixed(3)} above, converged to ${points[n].residual.toExponential(1)}; the reference's geometry relaxes to ${(energy - turned.energies[k]).toFixed(4)} from its own energy`,
+      );
+    }
+    beside.push(above.length);
+    fullAbove = order.filter((n, k) => full.result.points[n].energy > turned.energies[k] + ABOVE).length;
   }
-  row.push(full.milliseconds.toFixed(0), (full.milliseconds / sweep.milliseconds).toFixed(1), fullWorse);
-  console.log(`| ${row.join(' | ')} |`);
+  row([
+    smiles,
+    molecule.atomCount,
+    (evaluations / POINTS).toFixed(1),
+    (sweep.milliseconds / POINTS).toFixed(3),
+    ...beside,
+    full.milliseconds.toFixed(0),
+    (full.milliseconds / sweep.milliseconds).toFixed(1),
+    fullAbove,
+  ]);
 }
 
-const sorted = evaluationsPerPoint.toSorted((p, q) => p - q);
-console.log(`\nevaluations a point: median ${median(sorted).toFixed(1)}, from ${sorted[0].toFixed(1)} to ${sorted.at(-1).toFixed(1)}`);
+perPoint.sort((p, q) => p - q);
+console.log(
+  `\nevaluations a point: median ${perPoint[perPoint.length >> 1].toFixed(1)}, from ${perPoint[0].toFixed(1)} to ${perPoint.at(-1).toFixed(1)}`,
+);
 if (missing) console.log(`no python3-rdkit beside it: ${missing}`);
 else {
-  console.log(`time ratio: geometric mean ${geometricMean(ratios).toFixed(0)}, least ${Math.min(...ratios).toFixed(0)}`);
-  console.log(
-    `${points - above.length} of ${points} points (${((100 * (points - above.length)) / points).toFixed(1)} %) at or below the reference + 0.01 kcal/mol; the others:`,
-  );
-  for (const { smiles, angle, difference, residual, other } of above)
+  for (const [kind, what] of [
+    ['turned', 'its torsion turned first'],
+    ['pulled', 'its constraint alone pulling'],
+  ])
     console.log(
-      `  ${smiles} at ${angle}: ${difference.toFixed(3)} above, converged to ${residual.toExponential(1)}; the reference's own geometry relaxes to ${other.toFixed(4)} from its energy`,
+      `time ratio to the reference, ${what}: geometric mean ${geometricMean(ratios[kind]).toFixed(1)}, least ${Math.min(...ratios[kind]).toFixed(1)}`,
     );
+  const all = POINTS * molecules.length;
+  console.log(
+    `${all - explained.length} of ${all} points of the sweeps at or below the reference + ${ABOVE} kcal/mol${explained.length > 0 ? '; the others:' : ''}`,
+  );
+  for (const line of explained) console.log(line);
 }

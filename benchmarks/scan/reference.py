@@ -1,7 +1,9 @@
 """Relaxed MMFF94s torsion scan with python3-rdkit: a job as JSON on standard input, the answer as JSON on standard output.
 
-Each point starts from the one before with its torsion turned, is minimised with a torsion constraint (forceTol 1e-4, energyTol 1e-6) until
-the minimiser says that it has converged, and its energy is that without the constraint. `seconds` is processor time.
+Each point starts from the one before, is minimised with a torsion constraint (forceTol 1e-4, energyTol 1e-6) until the minimiser says that it
+has converged, and its energy is that without the constraint. With `turn`, its torsion is turned to the angle first; without, the constraint
+alone pulls it there. The force constant, 100 kcal/mol/degree^2, keeps angles within 0.001 degree; stiffer ones make the minimiser stop short
+of the minimum. `seconds` is processor time.
 """
 import json
 import sys
@@ -33,10 +35,11 @@ torsion = data["torsion"]
 begin = time.process_time()
 energies, geometries = [], []
 for angle in data["angles"]:
-    rdMolTransforms.SetDihedralDeg(conformer, *torsion, angle)
+    if data["turn"]:
+        rdMolTransforms.SetDihedralDeg(conformer, *torsion, angle)
     field = helpers.MMFFGetMoleculeForceField(molecule, properties)
     field.Initialize()
-    field.MMFFAddTorsionConstraint(*torsion, False, angle, angle, 1.0e4)
+    field.MMFFAddTorsionConstraint(*torsion, False, angle, angle, 100.0)
     for _ in range(50):
         if field.Minimize(maxIts=200, forceTol=1e-4, energyTol=1e-6) == 0:
             break
