@@ -8,7 +8,7 @@ import { existsSync, mkdirSync, readdirSync, readFileSync, statSync, writeFileSy
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 
-const PNPM = 'pnpm@12.23.0';
+export const PNPM = 'pnpm@12.23.0';
 
 export const root = fileURLToPath(new URL('..', import.meta.url));
 const stamps = join(root, '.tordial');
