@@ -127,9 +127,14 @@ describe('canonical SMILES', () => {
       ['Oc1ccccn1', 'O=c1cccc[nH]1'],
       ['CC1=C(O)C=C1', 'CC1=CC=C1O'],
       ['CC1=C(O)C=CC=CC=C1', 'CC1=CC=CC=CC=C1O'],
+      ['F/C=C1/CC[C@H](C)CC1', 'F/C=C1/CC[C@@H](C)CC1', 'FC=C1CCC(C)CC1'],
+      ['C[C@H]1C[C@@]2(C1)C[C@H](C)C2', 'C[C@H]1C[C@@]2(C1)C[C@@H](C)C2', 'CC1CC2(C1)CC(C)C2'],
+      ['C[C@H]1C[C@@H](C)C[C@@H](C)C1', 'C[C@@H]1C[C@@H](C)C[C@@H](C)C1', 'CC1CC(C)CC(C)C1'],
       ['CO', '[13CH3]O', 'C[18OH]', 'CO[2H]'],
     ];
     for (const group of groups) expect(new Set(group.map(canonical)).size, group[0]).toBe(group.length);
+    // cis,trans-1,3,5-trimethylcyclohexane, with either of its like groups named first
+    expect(canonical('C[C@@H]1C[C@@H](C)C[C@@H](C)C1')).toBe(canonical('C[C@@H]1C[C@H](C)C[C@@H](C)C1'));
     // the middle centre of a chain between two like ends of like configuration is none
     expect(canonical('C[C@H](F)[C@H](O)[C@@H](F)C')).toBe(canonical('C[C@H](F)[C@@H](O)[C@@H](F)C'));
   });

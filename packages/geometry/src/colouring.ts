@@ -5,7 +5,7 @@
  * Source: individualisation and refinement, B. D. McKay, Congressus Numerantium 30, 45 (1981).
  */
 import type { Molecule } from './molecule.js';
-import { type StereoElement, senseInColours, tied } from './stereo-elements.js';
+import { type StereoElement, senseInColours, systemOf, tied } from './stereo-elements.js';
 
 /** Colourings that one question may cost before it is left undecided. */
 const COLOURING_BUDGET = 200;
@@ -144,6 +144,7 @@ export function makeDefinite(
   start: ArrayLike<number>,
   elements: readonly StereoElement[],
   systems: ArrayLike<number>,
+  budget = COLOURING_BUDGET,
 ): Definite {
   let { colours } = refine(structure, start, elements);
   let text = describe(structure, start, colours, elements);
@@ -154,19 +155,20 @@ export function makeDefinite(
     const indefinite = elements.filter(isIndefinite);
     if (indefinite.length === 0) return { text, colours, decided };
     // elements outside rings become definite when the rings that their ligands hold do
-    const inRings = indefinite.filter(({ atoms }) => systems[atoms[0]] >= 0);
+    const inRings = indefinite.filter((element) => systemOf(element, systems) >= 0);
     const eligible = inRings.length > 0 ? inRings : indefinite;
     const lowest = Math.min(...eligible.map(({ atoms }) => colours[atoms[0]]));
     const groups = new Map<number, StereoElement[]>();
     for (const element of eligible) {
       if (colours[element.atoms[0]] !== lowest) continue;
-      const key = systems[element.atoms[0]] >= 0 ? systems[element.atoms[0]] : -1 - element.atoms[0];
+      const system = systemOf(element, systems);
+      const key = system >= 0 ? system : -1 - element.atoms[0];
       groups.set(key, [...(groups.get(key) ?? []), element]);
     }
     const chosen: number[][] = [];
     for (const [key, leaders] of groups) {
-      const own = elements.filter((element) => !isIndefinite(element) || leaders.includes(element) || systems[element.atoms[0]] === key);
-      const best = settle(structure, colours, leaders, own);
+      const own = elements.filter((element) => !isIndefinite(element) || leaders.includes(element) || systemOf(element, systems) === key);
+      const best = settle(structure, colours, leaders, own, { left: budget });
       decided &&= best.decided;
       chosen.push(best.ligands);
     }
@@ -194,7 +196,7 @@ function settle(
   colours: Int32Array,
   leaders: readonly StereoElement[],
   elements: readonly StereoElement[],
-  budget = { left: COLOURING_BUDGET },
+  budget: { left: number },
 ): Settled {
   let best: Settled | null = null;
   let decided = true;

@@ -1,6 +1,7 @@
 export * from './automorphisms.js';
 export { canonicalSmiles } from './canonical-smiles.js';
 export * from './cip-priority.js';
+export * from './configuration.js';
 export * from './elements.js';
 export * from './embed/embed.js';
 export { threadedRing } from './embed/threading.js';

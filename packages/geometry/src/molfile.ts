@@ -1,12 +1,12 @@
 /** Molecules from molfiles. */
 import { assemble } from './assemble.js';
+import { configurationOf } from './configuration.js';
 import type { ErrorPlace, Note } from './errors.js';
 import { placeHydrogens } from './hydrogen-positions.js';
 import { checkLimit, type Limits, withDefaults } from './limits.js';
 import { type Coordinates, createMolecule, type Molecule, type StereoTable } from './molecule.js';
 import { type MolfileAtom, parseMolfile, type WrittenMolfile } from './molfile-syntax.js';
 import { completeStereo, possibleStereo } from './stereo.js';
-import { perceiveStereo } from './stereo-perception.js';
 import { drawnStereo } from './wedges.js';
 
 /** One structure of an input and what came with it. */
@@ -41,7 +41,7 @@ export function readRecord(lines: readonly string[], limits: Limits, place: Erro
   const molecule = createMolecule({ ...parts, name: written.name });
   const properties = dataFields(lines.slice(written.lineCount));
   if (!isThreeDimensional(written)) {
-    const stated = { ...molecule, stereo: drawnStereo(possibleStereo(molecule, true), written) };
+    const stated = { ...molecule, stereo: drawnStereo(possibleStereo(molecule), written) };
     const stereo = completeStereo(stated);
     return { molecule: { ...molecule, stereo }, coordinates: null, properties, notes: unreadWedges(stereo, written), place };
   }
@@ -56,9 +56,7 @@ export function readRecord(lines: readonly string[], limits: Limits, place: Erro
       message: `${added} hydrogens that the file leaves out were added at standard positions`,
     });
   }
-  const possible = { ...molecule, stereo: possibleStereo(molecule, false) };
-  const stated = { ...molecule, stereo: perceiveStereo(possible, coordinates) };
-  return { molecule: { ...stated, stereo: completeStereo(stated) }, coordinates, properties, notes, place };
+  return { molecule: { ...molecule, stereo: configurationOf(molecule, coordinates) }, coordinates, properties, notes, place };
 }
 
 /** Notes on stereocentres that have a wedge and are open all the same. */

@@ -45,6 +45,11 @@ function endLigands({ neighbours, bonds }: Pick<Molecule, 'neighbours' | 'bonds'
   return ligands;
 }
 
+/** The ring system that an element belongs to by any of its atoms, -1 where it is in none. */
+export function systemOf({ atoms }: StereoElement, systems: ArrayLike<number>): number {
+  return Math.max(...atoms.map((atom) => systems[atom]));
+}
+
 /** Handedness of an element by the colours of its ligands; 0 where it is open or the colours leave ligands equal. */
 export function senseInColours({ kind, ligands, sign }: StereoElement, colours: ArrayLike<number>): number {
   if (sign === 0) return 0;

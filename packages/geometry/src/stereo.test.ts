@@ -33,7 +33,18 @@ describe('which atoms and bonds are stereogenic', () => {
     ])
       expect(centres(smiles), smiles).toEqual([]);
     // protons on P and S move between oxygens; cages fix their bridgeheads; five rings of one kind
-    for (const smiles of ['COP(=O)(O)OCC', 'C1CC2CCC1C2', 'C1CC2CCC1CC2', 'C12C3C4C1C5C4C3C25', 'C1C2CC3CC1CC(C2)C3', 'OC1=CC=CC=C1'])
+    for (const smiles of [
+      'COP(=O)(O)OCC',
+      'C1CC2CCC1C2',
+      'C1CC2CCC1CC2',
+      'C12C3C4C1C5C4C3C25',
+      'C12C3C1C4C2C34',
+      'C1C2CC3CC1CC(C2)C3',
+      'C1[C@H]2C[C@H]3C[C@@H]1C[C@@H](C2)C3',
+      'C1C23CC12C3',
+      'C1N2CN3CN1CN(C2)C3',
+      'OC1=CC=CC=C1',
+    ])
       expect(centres(smiles), smiles).toEqual([]);
   });
   it('keeps what the input states for centres that depend on others', () => {
@@ -51,6 +62,11 @@ describe('which atoms and bonds are stereogenic', () => {
     expect(open('C1CCC2CCCCC2C1')).toHaveLength(2);
     expect(open('CC1CCCCC1')).toEqual([]);
     expect(open('CC1CC(C)CC(C)C1')).toHaveLength(3);
+    expect(open('CC1CC2(C1)CC(C)C2')).toHaveLength(3);
+    expect(open('FC=C1CCC(C)CC1')).toHaveLength(2);
+    expect(open('OC1C(O)C(O)C(O)C(O)C1O')).toHaveLength(6);
+    expect(open('C1CCC2C3CCCCC3CCC2C1')).toHaveLength(4);
+    expect(open('C1CC2CCCC3CCCC(C1)C23')).toHaveLength(4);
   });
   it('lists double bonds with two different ligands at each end', () => {
     expect(open('CC=CC')).toEqual(['the double bond C1=C2']);

@@ -11,9 +11,15 @@ import { cumulatedChains } from './cumulenes.js';
 import { alternatingCycle, doubleBondMatching } from './delocalised-bonds.js';
 import { elementSymbol } from './elements.js';
 import type { Note } from './errors.js';
-import { bondBetween, type Molecule, neighboursOf, type StereoTable } from './molecule.js';
+import { type Molecule, neighboursOf, type StereoTable } from './molecule.js';
 import { ringSystems } from './rings.js';
-import { LONE_PAIR, type Sign, type StereoElement, tied, toTable } from './stereo-elements.js';
+import { LONE_PAIR, type Sign, type StereoElement, systemOf, toTable } from './stereo-elements.js';
+
+/** Rings up to this size cannot turn a bridge inside out. */
+const LARGEST_CAGE_RING = 8;
+
+/** Colourings that the question whether an element of a ring is real may cost; when they run out, it counts as real. */
+const RING_BUDGET = 24;
 
 /** Rings below this size hold their double bonds cis. */
 export const SMALLEST_RING_WITH_TRANS = 8;
@@ -39,28 +45,43 @@ export function completeStereo(molecule: Molecule): StereoTable {
     if (grown) colours = refine(molecule, base, [...kept]).colours;
   }
 
-  // what is left has equal ligands: stated elements stay when exchanging them gives another structure
+  // what is left has equal ligands; in rings such elements depend on one another and are real when some choice of all of them makes them, or
+  // elements equivalent to them, so: three choices are tried
   const systems = ringSystems(molecule);
-  let stated = candidates.filter((element) => !kept.has(element) && element.sign !== 0 && !exchangesLeaves(molecule, element));
+  const definite = [...kept];
+  const equal = candidates.filter(
+    (element) =>
+      !kept.has(element) &&
+      (element.sign !== 0 || !element.onlyIfStated) &&
+      !exchangesLeaves(molecule, element) &&
+      !isCageHead(molecule, element),
+  );
+  const inRings = equal.filter((element) => systemOf(element, systems) >= 0);
+  const real = inRings.filter((_, own) =>
+    [1, 2, inRings.length + 1].some((stride) => {
+      const sign = (n: number) => (Math.floor((n + 1) / stride) % 2 === 0 ? 1 : -1);
+      const dependent = inRings.map((other, n): StereoElement => ({ ...other, sign: sign(n) }));
+      return isStereogenic(molecule, dependent[own], { colours, systems, definite, dependent, budget: RING_BUDGET });
+    }),
+  );
+  const ringElements = inRings.filter((element) =>
+    real.some((other) => other.kind === element.kind && colours[other.atoms[0]] === colours[element.atoms[0]]),
+  );
+
+  // outside rings, stated elements stay when exchanging equal ligands gives another structure
+  let stated = equal.filter((element) => element.sign !== 0 && !inRings.includes(element));
   for (let before = -1; stated.length !== before; ) {
     before = stated.length;
-    const all = stated;
-    stated = all.filter((element) => isStereogenic(molecule, element, colours, systems, [...kept], all));
+    const dependent = [...ringElements, ...stated];
+    stated = stated.filter((element) => isStereogenic(molecule, element, { colours, systems, definite, dependent }));
   }
-  for (const element of stated) kept.add(element);
-  for (const element of openRingCentres(molecule, candidates, kept, colours)) kept.add(element);
-  return toTable(candidates.filter((element) => kept.has(element)));
+  const listed = new Set([...definite, ...ringElements, ...stated]);
+  return toTable(candidates.filter((element) => listed.has(element)));
 }
 
-/**
- * Everything in a molecule that could be stereogenic by its valence, all open: what a reader of wedges asks for. For a reader of coordinates
- * `inverting` is false and leaves out nitrogen in three-membered rings and N-H of imines: they invert, so that a geometry does not state them.
- */
-export function possibleStereo(molecule: Molecule, inverting: boolean): StereoTable {
-  const open = { ...molecule, stereo: { tetrahedral: [], doubleBonds: [], axes: [] } };
-  const states = ({ kind, atoms, onlyIfStated }: StereoElement) =>
-    inverting || !onlyIfStated || (kind === 'tetrahedral' && !molecule.rings.some((ring) => ring.length === 3 && ring.includes(atoms[0])));
-  return toTable(stereoCandidates(open).filter(states));
+/** Everything in a molecule that could be stereogenic by its valence, all open: what a reader of drawings asks for. */
+export function possibleStereo(molecule: Molecule): StereoTable {
+  return toTable(stereoCandidates({ ...molecule, stereo: { tetrahedral: [], doubleBonds: [], axes: [] } }));
 }
 
 /** A note for each stereocentre, double bond and axis that the input leaves open, naming the atoms; code `stereo/open`. */
@@ -214,6 +235,17 @@ function exchangesLeaves({ symmetryClasses: classes, neighbours }: Molecule, { k
   return ligands.some((p, n) => ligands.slice(0, n).some((q) => equal(p, q)));
 }
 
+interface Surroundings {
+  readonly colours: ArrayLike<number>;
+  readonly systems: Int32Array;
+  /** Elements with different ligands. */
+  readonly definite: readonly StereoElement[];
+  /** Elements with equal ligands, which may depend on one another. */
+  readonly dependent: readonly StereoElement[];
+  /** Colourings that may be tried. */
+  readonly budget?: number;
+}
+
 /**
  * Compares the arrangement as it is with each arrangement that differs by an odd exchange of equal ligands; undecided counts as stereogenic.
  * In a ring only what is definite and the element's own ring system can matter.
@@ -221,17 +253,14 @@ function exchangesLeaves({ symmetryClasses: classes, neighbours }: Molecule, { k
 function isStereogenic(
   molecule: Molecule,
   element: StereoElement,
-  colours: ArrayLike<number>,
-  systems: Int32Array,
-  definite: readonly StereoElement[],
-  stated: readonly StereoElement[],
+  { colours, systems, definite, dependent, budget }: Surroundings,
 ): boolean {
-  const system = systems[element.atoms[0]];
-  const dependent = stated.filter((other) => other !== element && (system < 0 || systems[other.atoms[0]] === system));
-  const others = [...definite, ...dependent];
-  const own = makeDefinite(molecule, marked(molecule, element.ligands), others, systems);
+  const system = systemOf(element, systems);
+  const same = (other: StereoElement) => other.kind === element.kind && other.atoms[0] === element.atoms[0];
+  const others = [...definite, ...dependent.filter((other) => !same(other) && (system < 0 || systemOf(other, systems) === system))];
+  const own = makeDefinite(molecule, marked(molecule, element.ligands), others, systems, budget);
   return oddArrangements(element, colours).every((arrangement) => {
-    const exchanged = makeDefinite(molecule, marked(molecule, arrangement), others, systems);
+    const exchanged = makeDefinite(molecule, marked(molecule, arrangement), others, systems, budget);
     return !own.decided || !exchanged.decided || exchanged.text !== own.text;
   });
 }
@@ -275,38 +304,18 @@ const ODD_ORDERS = [
 ];
 
 /**
- * Ring centres that the input leaves open and that depend on another of their ring: cis/trans-1,4-dimethylcyclohexane, decalin. Heads of
- * small bicycles, whose configuration the cage fixes, are none.
+ * Whether a cage of small rings fixes the configuration of a centre: the heads of norbornane and adamantane, the corners of cubane, the
+ * shared bond of a propellane. Heads of large bicycles, which have in- and out-isomers, and fused rings are none.
  */
-function openRingCentres(
-  molecule: Molecule,
-  candidates: readonly StereoElement[],
-  kept: ReadonlySet<StereoElement>,
-  colours: Int32Array,
-): StereoElement[] {
-  const { rings } = molecule;
-  const inRing = (i: number, j: number) => j !== LONE_PAIR && smallestRing(molecule, i, j) < Number.POSITIVE_INFINITY;
-  /** The two equal ligands that lie in rings, if there are no others. */
-  const pairOf = (element: StereoElement): number[] | null => {
-    if (element.kind !== 'tetrahedral' || element.onlyIfStated || exchangesLeaves(molecule, element)) return null;
-    const pair = tied(element, colours);
-    return pair.length === 2 && pair.every((ligand) => inRing(element.atoms[0], ligand)) ? pair : null;
-  };
-  const dependent = candidates.filter((element) => pairOf(element) !== null);
-  return dependent.filter((element) => {
-    const pair = pairOf(element);
-    if (!pair || kept.has(element)) return false;
-    const [centre] = element.atoms;
-    const split = colours.map((c) => 2 * c);
-    split[pair[0]]++;
-    const finer = refine(molecule, split).colours;
-    const ringBonds = element.ligands.filter((ligand) => inRing(centre, ligand)).length;
-    return dependent.some(
-      (other) =>
-        other !== element &&
-        rings.some((ring) => ring.includes(centre) && ring.includes(other.atoms[0])) &&
-        (ringBonds < 3 || bondBetween(molecule, centre, other.atoms[0]) >= 0) &&
-        distinct(molecule, other, finer),
-    );
-  });
+function isCageHead(molecule: Molecule, { kind, atoms: [centre] }: StereoElement): boolean {
+  if (kind !== 'tetrahedral') return false;
+  const small = (i: number) => molecule.rings.filter((ring) => ring.length <= LARGEST_CAGE_RING && ring.includes(i));
+  const own = small(centre);
+  const neighbours = [...neighboursOf(molecule, centre)].filter((j) => own.some((ring) => ring.includes(j)));
+  if (neighbours.length < 3) return false;
+  const bridged = own.some((ring, n) => own.slice(0, n).some((other) => ring.filter((i) => other.includes(i)).length > 2));
+  const shared = new Map<number, number>();
+  for (const ring of own) for (const i of ring) shared.set(i, (shared.get(i) ?? 0) + 1);
+  shared.delete(centre);
+  return bridged || [...shared.values()].some((count) => count > 2) || [centre, ...neighbours].every((i) => small(i).length > 2);
 }
