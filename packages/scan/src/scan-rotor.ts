@@ -79,7 +79,8 @@ export interface Profile {
  * A scan as a calculation, for any potential.
  *
  * Throws as `checkTorsion` does, `scan/linear` where an angle within the torsion is above 175 degrees, `scan/grid` for a step that does not divide 360 degrees
- * or a setting out of range, `scan/start` when there is no start or its size differs, `scan/energy` when a start has no finite energy.
+ * or a setting out of range, `scan/start` when there is no start or its size differs, `scan/energy` when a start has no finite energy,
+ * `scan/unreached` when no start can be turned to one of the angles.
  */
 export function* rotorScan(molecule: Molecule, torsion: Torsion, options: ScanOptions): Calculation<Profile> {
   const scan = prepare(molecule, torsion, options);
@@ -292,6 +293,16 @@ function* find(search: Search, place: number, start: Coordinates): Calculation<H
   return minimum;
 }
 
+/** The same for a geometry that may be no good: null when an angle within the torsion opens to a straight one or atoms fall together. */
+function* tryToFind(search: Search, place: number, start: Coordinates): Calculation<HeldMinimum | null> {
+  try {
+    return yield* find(search, place, start);
+  } catch (error) {
+    if (error instanceof TordialError && (error.code === 'scan/linear' || error.code === 'scan/energy')) return null;
+    throw error;
+  }
+}
+
 /** Steps that would be left if nothing new turned up: a guess that only the display needs. */
 function inSight({ scan, map }: Search): number {
   const missing = map.at.filter((minima) => minima.length === 0).length;
@@ -315,13 +326,7 @@ function* follow(search: Search, from: HeldMinimum, direction: Direction): Calcu
   const place = (from.place + direction + count) % count;
   const step = direction * radians(scan.step);
   const start = predictedStart(scan.rotor, from, direction, radians(scan.angles[place]));
-  let to: HeldMinimum | null;
-  try {
-    to = yield* find(search, place, start);
-  } catch (error) {
-    if (!(error instanceof TordialError && error.code === 'scan/linear')) throw error;
-    to = null;
-  }
+  const to = yield* tryToFind(search, place, start);
   lead(from, direction, to);
   const back = -direction as Direction;
   if (to && next(to, back) === undefined && goesOn(from, to, step, search)) lead(to, back, from);
@@ -376,7 +381,7 @@ function* searchEnvelope(search: Search): Calculation<void> {
   }
   const { molecule, rotor } = search.scan;
   const rotors = otherRotors(molecule, rotor);
-  const next = rotors.filter(({ isNext }) => isNext);
+  const next = rotors.filter(({ distance }) => distance === 0);
   const stride = Math.max(1, Math.round(TURN_NEXT_EVERY / search.scan.step));
   const seeded = new Set<HeldMinimum>();
   for (;;) {
@@ -389,7 +394,7 @@ function* searchEnvelope(search: Search): Calculation<void> {
       if (minimum.twin && minimum.twin !== minimum && seeded.has(minimum.twin)) continue;
       const turning = isWell(envelope, minimum.place) ? rotors : minimum.place % stride === 0 ? next : [];
       for (const start of [...invertedNitrogens(molecule, rotor, minimum.coordinates), ...turnedRotors(turning, minimum.coordinates)])
-        yield* find(search, minimum.place, start);
+        yield* tryToFind(search, minimum.place, start);
     }
   }
 }
@@ -422,7 +427,7 @@ function* close(search: Search): Calculation<void> {
   }
 }
 
-/** The lowest minimum at each place. Throws `scan/linear` when a place has none. */
+/** The lowest minimum at each place. Throws `scan/unreached` when a place has none. */
 function lowestOnEach({ scan, map }: Search): HeldMinimum[] {
   const envelope: HeldMinimum[] = [];
   scan.angles.forEach((angle, place) => {
@@ -431,8 +436,8 @@ function lowestOnEach({ scan, map }: Search): HeldMinimum[] {
     const best = twin ?? lowest(map, place, envelope[place - 1]);
     if (!best)
       throw new TordialError(
-        'scan/linear',
-        `no start reaches ${angle} degrees: an angle within the torsion opens beyond 175 degrees on the way`,
+        'scan/unreached',
+        `no start reaches ${angle} degrees: on the way an angle within the torsion opens beyond 175 degrees, or the energy is not finite`,
       );
     envelope.push(best);
   });
