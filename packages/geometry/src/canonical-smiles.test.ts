@@ -46,6 +46,9 @@ const HARD = [
   '[2H]O[2H]',
   'CC(=O)[O-].[NH4+]',
   'C1=CC=C2C=CC=C2C=C1',
+  'c1cc2ccc3ccc4ccc1c1c2c3c41',
+  'C1=CC2=CC=CC3=C2C1=CC=C3',
+  'C1=CC2=C3C1=CC=C4C3=C(C=C2)C=C4',
   'c1cc2cc3ccc(cc4ccc(cc5ccc(cc1n2)[nH]5)n4)[nH]3',
 ];
 

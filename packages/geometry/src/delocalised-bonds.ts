@@ -67,12 +67,40 @@ export function alternatingCycle({ mate, around }: DoubleBondMatching, a: number
   return length;
 }
 
+/** Atoms of the longest cycle looked for one by one, and steps that one bond may cost. */
+const LONGEST_CYCLE = 30;
+const STEPS = 3000;
+
+/** Whether an alternating cycle of 4n+2 bonds runs through the bond between a and b; looked for depth first, within bounds. */
+function hasHuckelCycle({ mate, around }: DoubleBondMatching, a: number, b: number): boolean {
+  const [p, q] = [mate[a], mate[b]];
+  if (p < 0 || q < 0) return false;
+  // a cycle enters and leaves each double bond by its two ends: from the far end `from` by single bonds round to `to`
+  const [from, to] = p === b ? [b, a] : [q, p];
+  const visited = new Uint8Array(mate.length);
+  for (const i of [a, b, p, q]) visited[i] = 1;
+  let steps = 0;
+  const extend = (at: number, length: number): boolean => {
+    if (length > LONGEST_CYCLE || ++steps > STEPS) return false;
+    for (const next of around[at]) {
+      if (next === mate[at]) continue;
+      if (next === to && length % 4 === 2) return true;
+      if (visited[next] || visited[mate[next]]) continue;
+      visited[next] = visited[mate[next]] = 1;
+      if (extend(mate[next], length + 2)) return true;
+      visited[next] = visited[mate[next]] = 0;
+    }
+    return false;
+  };
+  return extend(from, p === b ? 2 : 4);
+}
+
 /**
- * Marks (1 a bond) the ring bonds that are equally well written single or double, over the atoms that `takesPart` lets in. In a system
- * with alternating cycles of 4n bonds only the six-membered rings that alternate as written are marked.
+ * Marks (1 a bond) the ring bonds that are equally well written single or double, over the atoms that `takesPart` lets in: those on an
+ * alternating cycle. In a system that also has cycles of 4n bonds only the bonds on a cycle of 4n+2 are marked.
  */
 export function delocalisedBonds(molecule: Molecule, takesPart: (atom: number) => boolean): Uint8Array {
-  const { bonds, rings, neighbours } = molecule;
+  const { bonds, neighbours } = molecule;
   const matching = doubleBondMatching(molecule, takesPart);
   const marks = new Uint8Array(bonds.count);
   const length = new Int32Array(bonds.count);
@@ -81,27 +109,18 @@ export function delocalisedBonds(molecule: Molecule, takesPart: (atom: number) =
     if (inRing[n]) length[n] = alternatingCycle(matching, bonds.a[n], bonds.b[n]);
     if (length[n] > 0) marks[n] = 1;
   }
-  // a bond that alternates along 4n bonds spoils the system it belongs to
-  const spoilt = Array.from(length.keys()).filter((n) => length[n] > 0 && length[n] % 4 === 0);
-  if (spoilt.length === 0) return marks;
-  for (const n of spoilt)
+  // a bond that alternates along 4n bonds casts doubt on the system it belongs to
+  const doubtful = Array.from(length.keys()).filter((n) => length[n] > 0 && length[n] % 4 === 0);
+  const seen = new Set(doubtful);
+  for (const n of doubtful)
     for (const atom of [bonds.a[n], bonds.b[n]])
       for (let m = neighbours.start[atom]; m < neighbours.start[atom + 1]; m++) {
         const next = neighbours.bond[m];
-        if (marks[next] === 0) continue;
-        marks[next] = 0;
-        spoilt.push(next);
+        if (length[next] === 0 || seen.has(next)) continue;
+        seen.add(next);
+        doubtful.push(next);
       }
-  const bondBetween = (i: number, j: number) => {
-    for (let m = neighbours.start[i]; m < neighbours.start[i + 1]; m++) if (neighbours.atom[m] === j) return neighbours.bond[m];
-    return -1;
-  };
-  for (const ring of rings) {
-    if (ring.length !== 6) continue;
-    const own = [...ring].map((i, n) => bondBetween(i, ring[(n + 1) % 6]));
-    const alternates = own.every((bond) => length[bond] > 0) && [...ring].every((i) => ring.includes(matching.mate[i]));
-    if (alternates) for (const bond of own) marks[bond] = 1;
-  }
+  for (const n of doubtful) marks[n] = hasHuckelCycle(matching, bonds.a[n], bonds.b[n]) ? 1 : 0;
   return marks;
 }
 
