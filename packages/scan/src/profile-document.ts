@@ -1,7 +1,7 @@
 /** The result of a one-dimensional scan as a plain JSON document; the JSON Schema stands in docs/schemas/profile-1.json. */
 import { type Coordinates, elementSymbol, type Molecule, type Note } from '@tordial/geometry';
+import type { Profile } from './profile.js';
 import type { BranchEnd } from './profile-curve.js';
-import type { Profile } from './scan-rotor.js';
 
 export const PROFILE_SCHEMA = 'tordial/profile/1';
 

@@ -1,0 +1,240 @@
+/**
+ * The search for the lower envelope: every branch of held minima that the starting conformers lead to is followed in both directions until it
+ * closes; each angle is seeded from its neighbours, from mirror images, from inverted nitrogens and from other rotors turned, until nothing
+ * falls any more. What is known already is not followed again: a start that only repeats it costs one relaxation.
+ */
+import { type Coordinates, degrees, radians, TordialError, wrapDegrees } from '@tordial/geometry';
+import { type Branches, branches, type Direction, enter, type HeldMinimum, lead, lowest, mirrored, next } from './branches.js';
+import { intoRotorFrame, rotorAngle, turnTo } from './driven-rotor.js';
+import { MEMORY, type Preconditioner } from './minimise.js';
+import { modelHessian } from './model-hessian.js';
+import { invertedNitrogens } from './nitrogen-inversion.js';
+import type { Calculation } from './potential.js';
+import { predictedStart } from './predicted-start.js';
+import { relaxationAt } from './relax-at.js';
+import { report, type ScanTask } from './scan-task.js';
+import { forget, type SecantMemory, secantMemory } from './secant-memory.js';
+import { otherRotors, turnedRotors } from './turned-rotors.js';
+
+/** A relaxed scan at work: the branches found so far, and what serves every relaxation. */
+export interface Search {
+  readonly scan: ScanTask;
+  readonly preconditioner: Preconditioner;
+  readonly memory: SecantMemory;
+  readonly map: Branches;
+  /** Whether mirror images are the same molecule with the same energy. */
+  readonly mirror: boolean;
+}
+
+/** A search that has found nothing yet. */
+export function newSearch(scan: ScanTask, mirror: boolean): Search {
+  return {
+    scan,
+    preconditioner: modelHessian(scan.molecule, scan.rotor.torsion),
+    memory: secantMemory(3 * scan.molecule.atomCount, MEMORY),
+    map: branches(scan.angles.length, mirror ? oppositePlaces(scan.angles) : null),
+    mirror,
+  };
+}
+
+/** Place of -phi for each place; null when the grid does not hold it. */
+function oppositePlaces(angles: readonly number[]): Int32Array | null {
+  const places = angles.map((angle) => angles.findIndex((other) => Math.abs(wrapDegrees(angle + other + 1e-9)) < 1e-6));
+  return places.includes(-1) ? null : Int32Array.from(places);
+}
+
+/** A geometry relaxed with the rotor held. */
+export interface RelaxedHeld {
+  readonly energy: number;
+  readonly torque: number;
+  readonly coordinates: Coordinates;
+  readonly gradientMax: number;
+  readonly converged: boolean;
+}
+
+/** Relaxes a geometry with the rotor held at an angle (radian). */
+export function* hold({ scan, preconditioner, memory }: Search, angle: number, start: Coordinates): Calculation<RelaxedHeld> {
+  scan.options.signal?.throwIfAborted();
+  forget(memory);
+  const { energy, torque, coordinates, gradientMax, converged, evaluations } = yield* relaxationAt(
+    scan.rotor,
+    preconditioner,
+    angle,
+    start,
+    {
+      memory,
+      tolerance: scan.tolerance,
+      maxEvaluations: scan.options.maxEvaluations,
+    },
+  );
+  scan.evaluations += evaluations;
+  intoRotorFrame(scan.rotor, coordinates);
+  return { energy, torque, coordinates, gradientMax, converged };
+}
+
+/** Relaxes a geometry at a grid angle and enters what it finds. */
+function* find(search: Search, place: number, start: Coordinates): Calculation<HeldMinimum> {
+  const { scan, map } = search;
+  const found = yield* hold(search, radians(scan.angles[place]), start);
+  const minimum = enter(map, { place, ...found });
+  report(scan, scan.angles[place], found.energy, inSight(search));
+  return minimum;
+}
+
+/** The same for a geometry that may be no good: null when an angle within the torsion opens to a straight one or atoms fall together. */
+function* tryToFind(search: Search, place: number, start: Coordinates): Calculation<HeldMinimum | null> {
+  try {
+    return yield* find(search, place, start);
+  } catch (error) {
+    if (error instanceof TordialError && (error.code === 'scan/linear' || error.code === 'scan/energy')) return null;
+    throw error;
+  }
+}
+
+/** Steps that would be left if nothing new turned up: a guess that only the display needs. */
+function inSight({ scan, map }: Search): number {
+  const missing = map.at.filter((minima) => minima.length === 0).length;
+  return scan.done + 1 + missing;
+}
+
+function* startAt(search: Search, start: Coordinates): Calculation<HeldMinimum> {
+  return yield* find(search, nearestPlace(search, start), start);
+}
+
+/** The grid angle nearest to a geometry's. */
+function nearestPlace({ scan: { rotor, angles } }: Search, x: Coordinates): number {
+  const angle = degrees(rotorAngle(rotor, x));
+  const apart = angles.map((other) => Math.abs(wrapDegrees(other - angle)));
+  return apart.indexOf(Math.min(...apart));
+}
+
+/** Turns a minimum by one step and relaxes it; notes where it leads. */
+function* follow(search: Search, from: HeldMinimum, direction: Direction): Calculation<HeldMinimum | null> {
+  const { scan } = search;
+  const count = scan.angles.length;
+  const place = (from.place + direction + count) % count;
+  const step = direction * radians(scan.step);
+  const start = predictedStart(scan.rotor, from, direction, radians(scan.angles[place]));
+  const to = yield* tryToFind(search, place, start);
+  lead(from, direction, to);
+  const back = -direction as Direction;
+  if (to && next(to, back) === undefined && goesOn(from, to, step, search)) lead(to, back, from);
+  return to;
+}
+
+/** Mismatch (kcal/mol) of the trapezoidal rule, and displacement (angstrom) of an atom, up to which a step has stayed on its branch beyond doubt. */
+const SMOOTH_ENERGY = 0.03;
+const SMOOTH_DISPLACEMENT = 0.3;
+
+/** Whether two minima one step apart plainly belong to one branch, so that the way back need not be tried. */
+function goesOn(from: HeldMinimum, to: HeldMinimum, step: number, { scan }: Search): boolean {
+  if (!from.converged || !to.converged) return false;
+  const trapezoid = (step * (from.torque + to.torque)) / 2;
+  if (Math.abs(to.energy - from.energy - trapezoid) > SMOOTH_ENERGY * (step / radians(10)) ** 2) return false;
+  const turned = from.coordinates.slice();
+  turnTo(scan.rotor, turned, radians(scan.angles[to.place]));
+  intoRotorFrame(scan.rotor, turned);
+  return turned.every((value, k) => Math.abs(value - to.coordinates[k]) < SMOOTH_DISPLACEMENT);
+}
+
+/** Follows a branch in one direction until it meets a part that has been followed before, or has gone round. */
+function* sweep(search: Search, from: HeldMinimum, direction: Direction): Calculation<void> {
+  const once = search.scan.options.search === 'sweep' ? search.scan.angles.length - 1 : MOST_ROUNDS * search.scan.angles.length;
+  let at: HeldMinimum | null = from;
+  for (let n = 0; at && n < once && next(at, direction) === undefined; n++) at = yield* follow(search, at, direction);
+}
+
+/** One way round from the first start; the last point is joined to the first only if that plainly continues it. */
+export function* singleSweep(search: Search): Calculation<void> {
+  const first = yield* startAt(search, search.scan.starts[0]);
+  yield* sweep(search, first, 1);
+  const count = search.scan.angles.length;
+  const last = search.map.at[(first.place - 1 + count) % count][0];
+  if (!goesOn(last, first, radians(search.scan.step), search)) return;
+  lead(last, 1, first);
+  lead(first, -1, last);
+}
+
+/** A branch can need several turns of the rotor to close when another rotor is geared to it. */
+const MOST_ROUNDS = 4;
+/** Branches up to this far above the envelope (kcal/mol) are followed from both ends. */
+const WINDOW = 2;
+/** The rotors next to the axis are turned on at points this far apart, degrees: what that finds is followed to the points between. */
+const TURN_NEXT_EVERY = 30;
+
+/** Finds the lowest minimum at each angle. */
+export function* searchEnvelope(search: Search): Calculation<void> {
+  for (const start of search.scan.starts) {
+    const first = yield* startAt(search, start);
+    yield* sweep(search, first, 1);
+    yield* sweep(search, first, -1);
+  }
+  const { molecule, rotor } = search.scan;
+  const rotors = otherRotors(molecule, rotor);
+  const neighbours = rotors.filter(({ distance }) => distance === 0);
+  const stride = Math.max(1, Math.round(TURN_NEXT_EVERY / search.scan.step));
+  const seeded = new Set<HeldMinimum>();
+  for (;;) {
+    yield* close(search);
+    const envelope = lowestOnEach(search);
+    const fresh = envelope.filter((minimum) => !seeded.has(minimum));
+    if (fresh.length === 0) return;
+    for (const minimum of fresh) {
+      seeded.add(minimum);
+      if (minimum.twin && minimum.twin !== minimum && seeded.has(minimum.twin)) continue;
+      const turning = isWell(envelope, minimum.place) ? rotors : minimum.place % stride === 0 ? neighbours : [];
+      for (const start of [...invertedNitrogens(molecule, rotor, minimum.coordinates), ...turnedRotors(turning, minimum.coordinates)])
+        yield* tryToFind(search, minimum.place, start);
+      // on a grid without opposite angles the mirror image is turned to the nearest one
+      if (search.mirror && !search.map.opposite) {
+        const image = mirrored(minimum.coordinates);
+        yield* tryToFind(search, nearestPlace(search, image), image);
+      }
+    }
+  }
+}
+
+/** Whether no neighbour of a point of the envelope lies lower. */
+function isWell(envelope: readonly HeldMinimum[], place: number): boolean {
+  const count = envelope.length;
+  const { energy } = envelope[place];
+  return energy <= envelope[(place + 1) % count].energy && energy <= envelope[(place - 1 + count) % count].energy;
+}
+
+/** Follows every branch near the envelope both ways, lowest first, until each minimum there leads somewhere known. */
+function* close(search: Search): Calculation<void> {
+  const { map } = search;
+  for (;;) {
+    let best: HeldMinimum | null = null;
+    let height = WINDOW;
+    for (const minima of map.at) {
+      const floor = Math.min(...minima.map((minimum) => minimum.energy));
+      for (const minimum of minima) {
+        if (minimum.ahead !== undefined && minimum.behind !== undefined) continue;
+        if (minimum.energy - floor >= height) continue;
+        best = minimum;
+        height = minimum.energy - floor;
+      }
+    }
+    if (!best) return;
+    if (best.ahead === undefined) yield* follow(search, best, 1);
+    if (best.behind === undefined) yield* follow(search, best, -1);
+  }
+}
+
+/** The lowest minimum at each place. Throws `scan/unreached` when a place has none. */
+export function lowestOnEach({ scan, map }: Search): HeldMinimum[] {
+  const envelope: HeldMinimum[] = [];
+  scan.angles.forEach((angle, place) => {
+    const opposite = map.opposite ? map.opposite[place] : place;
+    const twin = opposite < place ? envelope[opposite].twin : null;
+    const best = twin ?? lowest(map, place, envelope[place - 1]);
+    if (!best)
+      throw new TordialError(
+        'scan/unreached',
+        `no start reaches ${angle} degrees: on the way an angle within the torsion opens beyond 175 degrees, or the energy is not finite`,
+      );
+    envelope.push(best);
+  });
+  return envelope;
+}
