@@ -38,14 +38,19 @@ export function rotorAngle({ torsion: [i, a, b, j] }: DrivenRotor, x: Coordinate
   return torsion(x, i, a, b, j);
 }
 
-/** Turns the rotor to `angle` (radian) in place, everything else kept: the smaller side moves. */
+/**
+ * Turns the rotor to `angle` (radian) in place, everything else kept: the smaller side moves. Beside separate fragments, which see the
+ * difference, it is always side b, as in `rigidTorque`.
+ */
 export function turnTo(rotor: DrivenRotor, x: Coordinates, angle: number): void {
   const {
     torsion: [, a, b],
     sides,
+    atomCount,
   } = rotor;
   const by = angle - rotorAngle(rotor, x);
-  if (sides.b.length <= sides.a.length) turnAbout(x, a, b, sides.b, by);
+  const alone = sides.a.length + sides.b.length === atomCount;
+  if (!alone || sides.b.length <= sides.a.length) turnAbout(x, a, b, sides.b, by);
   else turnAbout(x, b, a, sides.a, by);
 }
 

@@ -1,4 +1,5 @@
-import { degrees, radians, torsion } from '@tordial/geometry';
+import { mmff94 } from '@tordial/forcefield';
+import { degrees, embed, moleculeFromSmiles, radians, torsion } from '@tordial/geometry';
 import { describe, expect, test } from 'vitest';
 import { alkane, modelPotential, tetrahedral } from './chain.fixture.js';
 import { relax } from './minimise.js';
@@ -57,5 +58,17 @@ describe('a relaxation with the torsion held', () => {
     const backwards = relaxAt(molecule, potential, [3, 2, 1, 0], 40, start, { tolerance: 1e-6 });
     expect(backwards.energy).toBeCloseTo(forwards.energy, 8);
     expect(backwards.torque).toBeCloseTo(forwards.torque, 5);
+  });
+
+  // an ion beside the molecule feels whether one side turns or the other: the constraint must return by the turn that its gradient means
+  test.each([[[6, 0, 1, 2]], [[2, 1, 0, 6]]] as const)('converges beside a separate fragment, driven as %j', (asked) => {
+    const salt = moleculeFromSmiles('NCC(=O)[O-].[Na+]');
+    const field = mmff94(salt);
+    const from = relax(salt, field, embed(salt)).coordinates;
+    for (const angle of [-180, -120, -60, 0, 60]) {
+      const held = relaxAt(salt, field, asked, angle, from);
+      expect(held.converged).toBe(true);
+      expect(held.evaluations).toBeLessThan(400);
+    }
   });
 });
