@@ -71,8 +71,8 @@ export function levenbergMarquardt(problem: NonlinearProblem): NonlinearFit {
   };
   const places = Array.from({ length: m }, (_, i) => i);
 
-  let parameters = Float64Array.from(problem.start);
-  let residuals = difference(y, values(parameters));
+  let parameters: Float64Array = Float64Array.from(problem.start);
+  let residuals: Float64Array = difference(y, values(parameters));
   let square = sumOfSquares(residuals);
   if (!Number.isFinite(square))
     throw new TordialError('fit/model', 'the model has no finite values at the starting parameters; start elsewhere');
