@@ -63,7 +63,7 @@ describe.concurrent('records that cannot be done end with exit code 1', () => {
         .split('\n')
         .map((line) => JSON.parse(line));
       expect(exitCode).toBe(1);
-      expect(stderr).toMatch(/record 2, line \d+/);
+      expect(stderr).toMatch(/: record 2 \(line \d+\): (?!record)/);
       expect(lines.map(({ index }) => index)).toEqual([0, 1, 2]);
       expect(lines[0].energy).toBe(lines[2].energy);
       expect(lines[1]).toHaveProperty('error.code');

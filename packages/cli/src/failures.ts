@@ -14,10 +14,12 @@ export function describeFailure(error: unknown): string {
   if (!(error instanceof TordialError)) return `internal error: ${error instanceof Error ? (error.stack ?? error.message) : String(error)}`;
   const { file, record, line } = error.place;
   const named = file !== undefined && error.message.includes(file);
+  // readers of files name the record and its line themselves
+  const counted = error.message.startsWith(`record ${record} `);
   const where = [
     named ? undefined : file,
-    record === undefined ? undefined : `record ${record}`,
-    line === undefined ? undefined : `line ${line}`,
+    record === undefined || counted ? undefined : `record ${record}`,
+    line === undefined || counted ? undefined : `line ${line}`,
   ].filter((part) => part !== undefined);
   return `${where.length > 0 ? `${where.join(', ')}: ` : ''}${error.message} [${error.code}]`;
 }
