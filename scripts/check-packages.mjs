@@ -41,8 +41,14 @@ try {
   const packages = readdirSync(join(root, 'packages'));
   for (const name of packages) run('npx', ['--yes', PNPM, 'pack', '--pack-destination', folder], join(root, 'packages', name));
   const tarballs = readdirSync(folder).filter((name) => name.endsWith('.tgz'));
-  for (const name of tarballs) run(process.execPath, [join(root, 'node_modules/publint/src/cli.js'), 'run', join(folder, name), '--strict'], folder);
-  for (const name of tarballs) run(process.execPath, [join(root, 'node_modules/@arethetypeswrong/cli/dist/index.js'), join(folder, name), '--profile', 'esm-only'], folder);
+  for (const name of tarballs)
+    run(process.execPath, [join(root, 'node_modules/publint/src/cli.js'), 'run', join(folder, name), '--strict'], folder);
+  for (const name of tarballs)
+    run(
+      process.execPath,
+      [join(root, 'node_modules/@arethetypeswrong/cli/dist/index.js'), join(folder, name), '--profile', 'esm-only'],
+      folder,
+    );
 
   const consumer = join(folder, 'consumer');
   mkdirSync(consumer);
@@ -52,7 +58,11 @@ try {
   writeFileSync(join(consumer, 'program.ts'), PROGRAM);
   const tsc = join(root, 'node_modules/typescript/bin/tsc');
   const common = ['--strict', '--target', 'es2022', '--types', '', 'program.ts'];
-  run(process.execPath, [tsc, '--module', 'esnext', '--moduleResolution', 'bundler', '--noEmit', '--lib', 'es2022,dom', ...common], consumer);
+  run(
+    process.execPath,
+    [tsc, '--module', 'esnext', '--moduleResolution', 'bundler', '--noEmit', '--lib', 'es2022,dom', ...common],
+    consumer,
+  );
   run(process.execPath, [tsc, '--module', 'nodenext', '--moduleResolution', 'nodenext', '--lib', 'es2022,dom', ...common], consumer);
   process.stdout.write(`consumer: ${run(process.execPath, ['program.js'], consumer)}`);
 } finally {
