@@ -7,6 +7,7 @@ export default defineConfig({
   test: {
     include: ['packages/*/src/**/*.test.ts'],
     exclude: ['**/dist/**', '**/node_modules/**'],
+    reporters: ['default', './scripts/closing-line.mjs'],
     testTimeout: 120_000,
   },
 });
