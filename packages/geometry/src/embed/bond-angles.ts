@@ -26,6 +26,7 @@ const RADIANS = Math.PI / 180;
 const KEPT = 8;
 const STRAIGHT_IN_RING: Readonly<Record<number, number>> = { 8: 157, 9: 163, 10: 168, 11: 171 };
 
+/** The usual angle of every pair of bonds at an atom. */
 export function bondAngles(molecule: Molecule, shapes: Shapes): AngleTable {
   const { atomCount, atomicNumbers, neighbours, rings } = molecule;
   const ringOf = new Map<number, number>();

@@ -10,6 +10,7 @@ import { addVolumeError, type SignedVolumes } from './handedness.js';
 import type { ErrorFunction } from './lbfgs.js';
 import type { DistanceBounds } from './triangle-smoothing.js';
 
+/** What a signed volume short of its least one and a squared angstrom of the fourth dimension cost. */
 export interface ErrorWeights {
   readonly volume: number;
   readonly fourth: number;

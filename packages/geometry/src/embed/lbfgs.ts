@@ -9,6 +9,7 @@ const MEMORY = 6;
 /** Value at x; writes the gradient. */
 export type ErrorFunction = (x: Float64Array, gradient: Float64Array) => number;
 
+/** When a descent stops, and how far one step may go. */
 export interface DescentSettings {
   readonly iterations: number;
   /** Stops when no component of the gradient is larger. */

@@ -4,6 +4,7 @@
  */
 import { bondBetween, type Molecule } from '../molecule.js';
 
+/** One entry an atom, ring or bond, in the molecule's order. */
 export interface Shapes {
   /** Bonds plus lone pairs an atom: 2 linear, 3 trigonal planar, 4 tetrahedral, 5 and 6 hypervalent; conjugated amine nitrogens count as 3. */
   readonly steric: Uint8Array;
@@ -36,6 +37,7 @@ function valenceElectrons(atomicNumber: number): number {
   return 0;
 }
 
+/** Works the shapes out from bonds, charges and rings. */
 export function atomShapes(molecule: Molecule): Shapes {
   const { atomCount, atomicNumbers, formalCharges, bonds, neighbours, rings } = molecule;
   const degree = (i: number) => neighbours.start[i + 1] - neighbours.start[i];

@@ -19,7 +19,7 @@ export interface FlatBond {
   readonly cis: boolean | null;
 }
 
-/** One row a quartet; E = c0 + c1 cos phi + c2 cos^2 phi + c3 cos^3 phi, kcal/mol. */
+/** One row a quartet; E = c1 cos phi + c2 cos^2 phi + c3 cos^3 phi up to a constant, kcal/mol. */
 export interface TorsionTable {
   readonly count: number;
   readonly i: Int32Array;
@@ -39,6 +39,7 @@ export interface CrossedAxis {
   readonly atB: readonly number[];
 }
 
+/** What holds or pulls the torsion angles of a molecule. */
 export interface Turning {
   readonly flat: readonly FlatBond[];
   readonly crossed: readonly CrossedAxis[];
@@ -50,12 +51,13 @@ const SMALLEST_TRANS_RING = 8;
 /** Open double bonds of rings up to this size are made cis. */
 const LARGEST_CIS_RING = 11;
 
+/** kcal/mol for one quartet; a positive V puts maxima at 0, a negative one minima. */
 interface Series {
-  readonly v1?: number;
   readonly v2?: number;
   readonly v3?: number;
 }
 
+/** The flat bonds, crossed axes and torsion terms of a molecule. */
 export function turning(molecule: Molecule, shapes: Shapes): Turning {
   const { bonds, neighbours, atomicNumbers, rings, stereo } = molecule;
   const { steric, unsaturated, flatRing, flatRingBond, aromaticBond, bondRing } = shapes;
@@ -278,12 +280,13 @@ function straightAxes(molecule: Molecule, steric: Uint8Array): { a: AxisEnd; b: 
   return axes;
 }
 
+/** The last atom of a straight axis that may carry substituents, and its neighbour inside. */
 interface AxisEnd {
   readonly atom: number;
   readonly next: number;
 }
 
 /** cos 2 phi = 2 c^2 - 1, cos 3 phi = 4 c^3 - 3 c; a signed V stands for V/2 s. */
-function cubic({ v1 = 0, v2 = 0, v3 = 0 }: Series): [number, number, number] {
-  return [v1 / 2 - (3 * v3) / 2, v2, 2 * v3];
+function cubic({ v2 = 0, v3 = 0 }: Series): [number, number, number] {
+  return [(-3 * v3) / 2, v2, 2 * v3];
 }
