@@ -35,6 +35,8 @@ export interface AnalysisOptions {
   readonly barrierError?: number;
   /** Heights of refined saddles above the lowest well, kcal/mol, in the order of `rotamers(document).barriers`; null keeps the envelope's. */
   readonly saddles?: readonly (number | null)[];
+  /** How many saddles stand for each barrier, in the same order: 2 where a saddle and its mirror image join the same wells; 1 when left out. */
+  readonly saddleCounts?: readonly number[];
   /** Where free energies are known, populations by them are added and rates are taken from them instead of electronic energies. */
   readonly freeEnergies?: FreeEnergies | null;
   /** Transmission coefficient of each barrier at a temperature (Wigner), in the same order; 1 when left out. */
@@ -51,8 +53,10 @@ export interface AnalysedRotamer extends Rotamer {
   readonly label: string;
 }
 
-/** A barrier in a result, with its height seen from either side, kcal/mol. */
+/** A barrier in a result, with its height seen from either side, kcal/mol: that of the refined saddle where one is given. */
 export interface AnalysedBarrier extends BarrierBetween {
+  /** Height of the refined saddle above the lowest well, kcal/mol; null where none is given. */
+  readonly saddle: number | null;
   readonly forward: number;
   readonly backward: number;
 }
@@ -108,11 +112,11 @@ export function analyseProfile(document: ProfileDocument, options: AnalysisOptio
 
   return {
     rotamers: wells.map((well) => ({ ...well, label: rotamerLabel(well) })),
-    barriers: barriers.map((barrier) => ({
-      ...barrier,
-      forward: barrier.energy - wells[barrier.wells[0]].energy,
-      backward: barrier.energy - wells[barrier.wells[1]].energy,
-    })),
+    barriers: barriers.map((barrier, i) => {
+      const saddle = options.saddles?.[i] ?? null;
+      const [forward, backward] = barrier.wells.map((well) => (saddle ?? barrier.energy) - wells[well].energy);
+      return { ...barrier, saddle, forward, backward };
+    }),
     barrierError: error,
     rotamerCouplings: options.couplings
       ? wells.map(({ stationaryPoints: [lowest] }) =>
@@ -144,8 +148,12 @@ type Turn = ReturnType<typeof rotamers>;
 /** The network of wells and barriers at a temperature: refined saddles before the envelope's barriers, free energies before electronic ones. */
 function networkOf(
   { wells, barriers }: Turn,
-  { saddles, freeEnergies, transmission }: AnalysisOptions,
+  { saddles, saddleCounts, freeEnergies, transmission }: AnalysisOptions,
 ): (temperature: number) => WellNetwork {
+  const factorsAt = (temperature: number): number[] | undefined => {
+    const kappa = transmission?.(temperature);
+    return kappa || saddleCounts ? barriers.map((_, i) => (kappa?.[i] ?? 1) * (saddleCounts?.[i] ?? 1)) : undefined;
+  };
   return (temperature) => {
     const free = freeEnergies?.(temperature);
     const heights = free ? free.wells : wells.map((well) => well.energy);
@@ -157,7 +165,7 @@ function networkOf(
         // a low barrier can vanish in free energy: there is no rate over it then
         return height !== null && height >= Math.max(heights[i], heights[(i + 1) % heights.length]) ? height : null;
       }),
-      transmission: transmission?.(temperature),
+      transmission: factorsAt(temperature),
     };
   };
 }

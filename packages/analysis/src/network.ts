@@ -21,7 +21,7 @@ export interface WellNetwork {
   readonly wells: readonly number[];
   /** `barriers[i]` stands between well i and well i + 1, the last one between the last well and the first; null: no saddle is known. */
   readonly barriers: readonly (number | null)[];
-  /** Transmission coefficient of each barrier; 1 when left out. */
+  /** Transmission coefficient of each barrier, times the number of equal saddles that it stands for; 1 when left out. */
   readonly transmission?: readonly number[];
 }
 

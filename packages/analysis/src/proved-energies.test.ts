@@ -1,8 +1,9 @@
 import { describe, expect, it } from 'vitest';
 import { analyseProfile } from './analyse.js';
+import { eyringRate } from './eyring.js';
 import { seriesOfBarriers } from './hindered-rotor/periodic-series.js';
 import { rigidTangent } from './hindered-rotor/reduced-moment.js';
-import { PEROXIDE, profileDocument } from './profile.fixture.js';
+import { geometryAt, PEROXIDE, profileDocument } from './profile.fixture.js';
 import { type ProvedStationaryPoint, provedEnergies } from './proved-energies.js';
 import { vibrations, zeroPointEnergy } from './vibrations.js';
 
@@ -35,8 +36,9 @@ const kinds = document.stationaryPoints.map((point) => (point.kind === 'well' ? 
 
 describe('energies of proved points', () => {
   it('are the heights of the saddles, and free energies that lose the torsion at the saddle', () => {
-    const { saddles, freeEnergies, transmission, notes } = provedEnergies(document, proof(kinds));
+    const { saddles, saddleCounts, freeEnergies, transmission, notes } = provedEnergies(document, proof(kinds));
     expect(notes).toEqual([]);
+    expect(saddleCounts).toEqual([1, 1]);
     const heights = analyseProfile(document).barriers.map((barrier) => barrier.energy);
     saddles.forEach((height, i) => {
       expect(height).toBeCloseTo(heights[i], 8);
@@ -53,6 +55,24 @@ describe('energies of proved points', () => {
     for (const kappa of transmission(298.15)) expect(kappa).toBeGreaterThan(1);
     const analysis = analyseProfile(document, { saddles, freeEnergies, transmission });
     expect(analysis.rows[0].processes[0].barrier).toBeCloseTo(Math.min(...barriers.map((b) => b ?? 0)) - wells[0], 8);
+  });
+
+  it('count a saddle off the mirror plane twice: its mirror image joins the same wells', () => {
+    const turned = (phi: number): Float64Array => Float64Array.from(geometryAt(PEROXIDE, phi));
+    const points = proof(kinds).map((point) => {
+      const { kind, angle } = document.stationaryPoints[point.of];
+      return kind === 'barrier' && Math.abs(angle) < 1
+        ? { ...point, coordinates: turned(25), hessian: hessianAt(turned(25), -2000) }
+        : point;
+    });
+    const { saddles, saddleCounts } = provedEnergies(document, points);
+    const { barriers } = analyseProfile(document);
+    expect(saddleCounts).toEqual(barriers.map(({ angle }) => (Math.abs(angle) < 1 ? 2 : 1)));
+    const [one, two] = [[1, 1], saddleCounts].map(
+      (counts) => analyseProfile(document, { saddles, saddleCounts: counts }).rows[0].processes[0].forward?.value ?? 0,
+    );
+    const [over] = barriers.filter(({ angle }) => Math.abs(angle) < 1);
+    expect((two - one) / eyringRate(over.energy, 298.15)).toBeCloseTo(1, 8);
   });
 
   it('are unknown where nothing was proved, and the notes say so', () => {

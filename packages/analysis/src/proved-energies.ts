@@ -1,8 +1,9 @@
 /** From stationary points that have been proved (wells relaxed without constraint, saddles refined, Hessians at both) to what an analysis takes. */
-import { type Coordinates, type Note, TordialError } from '@tordial/geometry';
+import { type Coordinates, type Note, radians, TordialError } from '@tordial/geometry';
 import type { ProfileDocument } from '@tordial/scan';
-import { massesOfDocument } from './document-molecule.js';
+import { massesOfDocument, moleculeOfDocument } from './document-molecule.js';
 import { freeEnergiesOf, type RefinedPoint } from './free-energies.js';
+import { isometries } from './isometries.js';
 import { rotamers } from './rotamers.js';
 import { vibrations } from './vibrations.js';
 
@@ -24,12 +25,17 @@ export interface ProvedStationaryPoint {
 export interface ProvedEnergies {
   /** Heights above the lowest well, kcal/mol; null where no saddle was proved. */
   readonly saddles: readonly (number | null)[];
+  /** Saddles that each barrier stands for: 2 where the saddle and its mirror image join the same wells. */
+  readonly saddleCounts: readonly number[];
   /** Null where a well was not proved to be a minimum. */
   readonly freeEnergies: ((temperature: number) => { wells: number[]; barriers: (number | null)[] }) | null;
   readonly transmission: ((temperature: number) => number[]) | null;
   /** Which points could not be used. */
   readonly notes: readonly Note[];
 }
+
+/** Degrees from 0 and 180 within which a passage is its own mirror image. */
+const ON_MIRROR = 2;
 
 /**
  * Saddle heights, free energies and transmission coefficients of a profile from its proved points. `masses` in amu, standard weights when left out. A
@@ -68,6 +74,20 @@ export function provedEnergies(
     notes.push({ code: 'proof/saddle', message: `no saddle between its two wells was proved at ${angle.toFixed(1)} degrees${verdict}` });
     return null;
   });
+  const kinds = moleculeOfDocument(document.molecule).symmetryClasses;
+  const saddleCounts = saddles.map((saddle, i) => {
+    if (!saddle || Math.abs(Math.sin(radians(barriers[i].angle))) > Math.sin(radians(ON_MIRROR))) return 1;
+    // the mirror image of a passage at 0 or 180 is the same passage; wells that both are their own image, or each other's, are joined twice
+    const [before, after] = barriers[i].wells;
+    const swapped =
+      wells[before].mirrorImages.includes(after) ||
+      (wells[before].mirrorImages.includes(before) && wells[after].mirrorImages.includes(after));
+    const single = wells[before].stationaryPoints.length === 1 && wells[after].stationaryPoints.length === 1;
+    const own = isometries(saddle.coordinates, saddle.coordinates, kinds, { tolerance: 0.05, limit: 64 }).some(
+      (isometry) => isometry.improper,
+    );
+    return swapped && single && !own ? 2 : 1;
+  });
   const lowest = Math.min(...minima.flatMap((point) => point?.energy ?? []));
   const known = minima.filter((point) => point !== null);
   const complete =
@@ -80,6 +100,7 @@ export function provedEnergies(
       : null;
   return {
     saddles: saddles.map((point) => (point && Number.isFinite(lowest) ? point.energy - lowest : null)),
+    saddleCounts,
     freeEnergies: complete?.freeEnergies ?? null,
     transmission: complete?.transmission ?? null,
     notes,
