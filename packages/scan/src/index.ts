@@ -5,10 +5,20 @@ export { type Constraint, type MinimiseOptions, minimise, type Preconditioner, t
 export { modelHessian } from './model-hessian.js';
 export * from './potential.js';
 export type { Profile, ScanPoint } from './profile.js';
-export * from './profile-curve.js';
+export {
+  type BranchEnd,
+  type CurveExtremum,
+  type CurvePiece,
+  type CurvePoint,
+  energyAt,
+  type ProfileCurve,
+  profileCurve,
+  torqueAt,
+} from './profile-curve.js';
 export * from './profile-document.js';
 export type { StationaryPoint } from './refined-extrema.js';
 export { type RelaxAtOptions, type RelaxedAt, relaxAt, relaxationAt } from './relax-at.js';
 export * from './rotors/index.js';
 export * from './scan-rotor.js';
 export type { ScanOptions, ScanProgress } from './scan-task.js';
+export * from './stationary/index.js';

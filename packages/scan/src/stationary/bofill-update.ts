@@ -10,9 +10,9 @@
 import { dot } from './projected-modes.js';
 
 /** Updates `hessian` (row-major) in place from a step and the change of gradient over it. */
-export function bofillUpdate(hessian: Float64Array, step: Float64Array, change: Float64Array): void {
+export function bofillUpdate(hessian: Float64Array, step: Float64Array, gradientChange: Float64Array): void {
   const size = step.length;
-  const xi = Float64Array.from(change, (value, i) => value - dot(hessian.subarray(i * size, (i + 1) * size), step));
+  const xi = Float64Array.from(gradientChange, (value, i) => value - dot(hessian.subarray(i * size, (i + 1) * size), step));
   const ss = dot(step, step);
   const xx = dot(xi, xi);
   const xs = dot(xi, step);
@@ -22,7 +22,9 @@ export function bofillUpdate(hessian: Float64Array, step: Float64Array, change: 
   // f / xi.dx, written so that it stays finite where xi.dx vanishes
   const rankOne = xs / (xx * ss);
   for (let i = 0; i < size; i++)
-    for (let j = 0; j < size; j++)
-      hessian[i * size + j] +=
-        rankOne * xi[i] * xi[j] + (1 - f) * ((xi[i] * step[j] + step[i] * xi[j]) / ss - (xs * step[i] * step[j]) / (ss * ss));
+    for (let j = 0; j <= i; j++) {
+      const change = rankOne * xi[i] * xi[j] + (1 - f) * ((xi[i] * step[j] + step[i] * xi[j]) / ss - (xs * step[i] * step[j]) / (ss * ss));
+      hessian[i * size + j] += change;
+      if (j < i) hessian[j * size + i] += change;
+    }
 }

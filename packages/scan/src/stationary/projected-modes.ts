@@ -39,7 +39,8 @@ export function projectedModes(hessian: ArrayLike<number>, taken: readonly Float
       along[i] = sum;
       twice += t[i] * sum;
     }
-    for (let i = 0; i < size; i++) for (let j = 0; j < size; j++) A[i * size + j] += twice * t[i] * t[j] - t[i] * along[j] - along[i] * t[j];
+    for (let i = 0; i < size; i++)
+      for (let j = 0; j < size; j++) A[i * size + j] += twice * t[i] * t[j] - t[i] * along[j] - along[i] * t[j];
   }
   for (let n = 0; n < A.length; n++) norm += A[n] * A[n];
   const far = 10 * (1 + Math.sqrt(norm));

@@ -82,7 +82,7 @@ export function* stationaryPoint(start: Coordinates, options: SaddleOptions = {}
   if (!Number.isFinite(energy) || !Number.isFinite(residual))
     throw new TordialError('scan/energy', 'the potential gives no finite energy and gradient where a stationary point is looked for');
 
-  let hessian = options.hessian?.slice() ?? null;
+  let hessian: Float64Array | null = options.hessian?.slice() ?? null;
   let age = 0;
   let radius = maxStep / 2;
   let climbed: readonly Float64Array[] = follow;
@@ -109,7 +109,11 @@ export function* stationaryPoint(start: Coordinates, options: SaddleOptions = {}
       continue;
     }
     // the Hessian learns from a refused step too
-    bofillUpdate(hessian, step, question.gradient.map((value, k) => value - gradient[k]));
+    bofillUpdate(
+      hessian,
+      step,
+      question.gradient.map((value, k) => value - gradient[k]),
+    );
     age++;
     const ratio = (trial - energy) / expected;
     const small = Math.abs(expected) < 1e-6 * (1 + residual);
