@@ -111,6 +111,41 @@ describe('a curve over a change of branch', () => {
   });
 });
 
+describe('two branches that meet at a point', () => {
+  // wells of depth V at +-a about 0, the lower one at each angle, and a cosine far from there
+  const meeting = (a: number) => {
+    const branch = (centre: number) => ({
+      energy: (phi: number) => 2 * (1 - Math.cos(phi - centre)),
+      torque: (phi: number) => 2 * Math.sin(phi - centre),
+    });
+    const [low, high] = [branch(-a), branch(a)];
+    const points = pointsOf(
+      (phi) => (phi <= 0 ? low : high).energy(phi),
+      (phi) => (phi <= 0 ? low : high).torque(phi),
+      15,
+    ).map((point) => (point.angle === 0 ? { ...point, breakAfter: true, torqueAfter: high.torque(0), beyond: ends(high, 15) } : point));
+    return profileCurve(points);
+  };
+  const ends = (branch: { energy: (phi: number) => number; torque: (phi: number) => number }, angle: number) => ({
+    energy: branch.energy(radians(angle)),
+    torque: branch.torque(radians(angle)),
+  });
+
+  test('have a crossing there when it stands above both wells', () => {
+    const near = meeting(0.5).extrema.filter(({ angle }) => Math.abs(angle) < 60);
+    expect(near.map(({ kind }) => kind)).toEqual(['well', 'crossing', 'well']);
+    expect(near[1].angle).toBeCloseTo(0, 10);
+    expect(near[1].energy).toBeCloseTo(2 * (1 - Math.cos(0.5)), 10);
+    expect(near[2].angle).toBeCloseTo((0.5 * 180) / Math.PI, 0);
+  });
+
+  test('are one well when next to nothing separates them', () => {
+    const near = meeting(0.02).extrema.filter(({ angle }) => Math.abs(angle) < 60);
+    expect(near.map(({ kind }) => kind)).toEqual(['well']);
+    expect(Math.abs(near[0].angle)).toBeLessThan(1.5);
+  });
+});
+
 test('leaves out ripples that are rounding', () => {
   const rippled = pointsOf(
     (phi) => energy(phi) + 1e-4 * Math.sin(40 * phi),

@@ -1,5 +1,5 @@
 /**
- * The periodic curve through a profile: cubic Hermite pieces between neighbouring points, from their energies and torques.
+ * The curve through a profile, periodic or over a range: cubic Hermite pieces between neighbouring points, from their energies and torques.
  *
  * Where neighbours lie on different branches no piece joins them: each branch is continued from its own side and the curve is the lower of the
  * two, with a kink where they cross. Source of the interpolation: C. Hermite, J. reine angew. Math. 84, 70 (1878).
@@ -54,15 +54,24 @@ export interface CurveExtremum {
 export interface ProfileCurve {
   readonly points: readonly CurvePoint[];
   readonly pieces: readonly CurvePiece[];
+  /** The curve ends at its first and last point instead of going round. */
+  readonly open: boolean;
   /** Wells alternate with barriers and crossings, ascending by angle. */
   readonly extrema: readonly CurveExtremum[];
 }
 
 /** A well shallower than this, in the unit of the energies, is rounding. */
 const FLAT = 2e-3;
+/** Energies that differ by no more than this are the same. */
+const ALIKE = 1e-6;
+/** A place just after a point, as a part of the interval. */
+const NEXT_TO = 1e-3;
 
-/** The curve through points ascending by angle that go round once. Throws `profile/points` when there are fewer than 3 or they do not ascend. */
-export function profileCurve(points: readonly CurvePoint[]): ProfileCurve {
+/**
+ * The curve through points ascending by angle that go round once, or that cover a range (`open`: angles are then those of the points, not
+ * brought into one turn). Throws `profile/points` when there are fewer than 3 or they do not ascend.
+ */
+export function profileCurve(points: readonly CurvePoint[], { open = false } = {}): ProfileCurve {
   const last = points.length - 1;
   if (
     points.length < 3 ||
@@ -70,8 +79,8 @@ export function profileCurve(points: readonly CurvePoint[]): ProfileCurve {
     points[last].angle - points[0].angle >= 360
   )
     throw new TordialError('profile/points', 'a profile needs at least 3 points whose angles ascend within one turn');
-  const pieces = points.flatMap((_, n) => piecesAfter(points, n));
-  return { points, pieces, extrema: extremaOf(points, pieces) };
+  const pieces = points.flatMap((_, n) => (open && n === last ? [] : piecesAfter(points, n, open)));
+  return { points, pieces, open, extrema: alternating(allExtrema({ points, pieces, open }), open) };
 }
 
 /** Width (radian) of the interval after point n. */
@@ -86,15 +95,15 @@ function hermite(left: BranchEnd, right: BranchEnd, width: number): CurvePiece['
   return [left.energy, s0, 3 * rise - 2 * s0 - s1, s0 + s1 - 2 * rise];
 }
 
-function piecesAfter(points: readonly CurvePoint[], n: number): CurvePiece[] {
+function piecesAfter(points: readonly CurvePoint[], n: number, open: boolean): CurvePiece[] {
   const count = points.length;
   const left = { ...points[n], torque: points[n].torqueAfter ?? points[n].torque };
   const right = points[(n + 1) % count];
   const width = widthAfter(points, n);
   if (!left.breakAfter) return [{ point: n, coefficients: hermite(left, right, width), from: 0, to: 1, side: 'both' }];
 
-  const l = hermite(left, left.beyond ?? continued(points, n, width, 1), width);
-  const r = hermite(right.before ?? continued(points, (n + 1) % count, width, -1), right, width);
+  const l = hermite(left, left.beyond ?? continued(points, n, width, 1, open), width);
+  const r = hermite(right.before ?? continued(points, (n + 1) % count, width, -1, open), right, width);
   const at = crossing(l, r);
   return [
     { point: n, coefficients: l, from: 0, to: at, side: 'left' },
@@ -103,12 +112,13 @@ function piecesAfter(points: readonly CurvePoint[], n: number): CurvePiece[] {
 }
 
 /** Where the branch of point n would be after `width` radian: with the curvature it has between n and its neighbour on the other side. */
-function continued(points: readonly CurvePoint[], n: number, width: number, direction: 1 | -1): BranchEnd {
+function continued(points: readonly CurvePoint[], n: number, width: number, direction: 1 | -1, open: boolean): BranchEnd {
   const count = points.length;
   const { energy, torque } = points[n];
   const other = (n - direction + count) % count;
   const interval = direction === 1 ? other : n;
-  const curvature = points[interval].breakAfter ? 0 : (direction * (torque - points[other].torque)) / widthAfter(points, interval);
+  const alone = points[interval].breakAfter || (open && interval === count - 1);
+  const curvature = alone ? 0 : (direction * (torque - points[other].torque)) / widthAfter(points, interval);
   const step = direction * width;
   return { energy: energy + torque * step + (curvature * step * step) / 2, torque: torque + curvature * step };
 }
@@ -116,9 +126,11 @@ function continued(points: readonly CurvePoint[], n: number, width: number, dire
 /** Where the left branch, the lower one at t = 0, comes to lie above the right one. */
 function crossing(l: CurvePiece['coefficients'], r: CurvePiece['coefficients']): number {
   const above = (t: number) => polynomial(l, t) - polynomial(r, t);
-  if (above(0) >= 0) return 0;
+  // branches of one energy at the left point: the one that falls more is the lower one after it
+  const begin = Math.abs(above(0)) <= ALIKE && derivative(l, 0) < derivative(r, 0) ? NEXT_TO : 0;
+  if (above(begin) >= 0) return 0;
   if (above(1) <= 0) return 1;
-  let low = 0;
+  let low = begin;
   let high = 1;
   for (let n = 0; n < 60; n++) {
     const middle = (low + high) / 2;
@@ -136,21 +148,25 @@ function derivative([, c1, c2, c3]: CurvePiece['coefficients'], t: number): numb
   return c1 + t * (2 * c2 + 3 * t * c3);
 }
 
-/** Energy of the curve at an angle (degrees). */
+/** Energy of the curve at an angle (degrees). Throws `profile/angle` beyond the ends of an open curve. */
 export function energyAt(curve: ProfileCurve, angle: number): number {
   const { piece, t } = locate(curve, angle);
   return polynomial(piece.coefficients, t);
 }
 
-/** Slope of the curve at an angle (degrees), energy per radian. */
+/** Slope of the curve at an angle (degrees), energy per radian. Throws as `energyAt`. */
 export function torqueAt(curve: ProfileCurve, angle: number): number {
   const { piece, t } = locate(curve, angle);
   return derivative(piece.coefficients, t) / widthAfter(curve.points, piece.point);
 }
 
-function locate({ points, pieces }: ProfileCurve, angle: number): { piece: CurvePiece; t: number } {
+function locate({ points, pieces, open }: ProfileCurve, angle: number): { piece: CurvePiece; t: number } {
   if (!Number.isFinite(angle)) throw new TordialError('profile/angle', `an angle must be a number of degrees, not ${angle}`);
   const first = points[0].angle;
+  const last = points[points.length - 1].angle;
+  if (open && !(angle >= first && angle <= last))
+    throw new TordialError('profile/angle', `the profile covers ${first} to ${last} degrees, not ${angle}`);
+  if (open && angle === last) return { piece: pieces[pieces.length - 1], t: 1 };
   const turned = first + ((((angle - first) % 360) + 360) % 360);
   let low = 0;
   let high = points.length;
@@ -170,28 +186,32 @@ function locate({ points, pieces }: ProfileCurve, angle: number): { piece: Curve
   return { piece: pieces[at], t };
 }
 
-function extremaOf(points: readonly CurvePoint[], pieces: readonly CurvePiece[]): CurveExtremum[] {
+/** Every extremum, ripples included, ascending by angle. */
+export function allExtrema({ points, pieces, open }: Pick<ProfileCurve, 'points' | 'pieces' | 'open'>): CurveExtremum[] {
   const found: CurveExtremum[] = [];
   const add = (kind: CurveExtremum['kind'], { point, side, coefficients }: CurvePiece, t: number, curvature: number) => {
     const width = widthAfter(points, point);
-    const angle = wrapDegrees(points[point].angle + (t * width * 180) / Math.PI);
+    const reached = points[point].angle + (t * width * 180) / Math.PI;
+    const angle = open ? reached : wrapDegrees(reached);
     found.push({ kind, angle, energy: polynomial(coefficients, t), curvature: curvature / width ** 2, point, fraction: t, side });
   };
   pieces.forEach((piece, n) => {
     const [, c1, c2, c3] = piece.coefficients;
     for (const t of roots(3 * c3, 2 * c2, c1)) {
-      if (t < piece.from || t >= piece.to) continue;
+      // a point's own extremum counts even where its branch is taken to end at once
+      if (t < piece.from || (t >= piece.to && t !== 0)) continue;
       const curvature = 2 * c2 + 6 * c3 * t;
       if (curvature !== 0) add(curvature > 0 ? 'well' : 'barrier', piece, t, curvature);
     }
     // the branch changes within an interval, or at a point where two of one energy meet
+    if (open && n + 1 === pieces.length) return;
     const following = pieces[(n + 1) % pieces.length];
     const within = piece.side === 'left';
     if (!within && points[following.point].torqueAfter === undefined) return;
     const falls = within ? derivative(following.coefficients, piece.to) : derivative(following.coefficients, 0);
     if (derivative(piece.coefficients, piece.to) > 0 && falls < 0) add('crossing', within ? piece : following, within ? piece.to : 0, 0);
   });
-  return alternating(found.sort((p, q) => p.angle - q.angle));
+  return found.sort((p, q) => p.angle - q.angle);
 }
 
 /** Real roots of a t^2 + b t + c, ascending. */
@@ -203,18 +223,42 @@ function roots(a: number, b: number, c: number): number[] {
   return (q === 0 ? [0] : [q / a, c / q]).sort((s, t) => s - t);
 }
 
-/** Leaves out ripples that are no deeper than rounding, until wells and maxima take turns. */
-function alternating(extrema: CurveExtremum[]): CurveExtremum[] {
+/**
+ * Leaves out what is no deeper than rounding, shallowest first, until wells and maxima take turns: of two wells with next to nothing between
+ * them the lower one stays, and of two alike (mirror images about 0, say) the one at the larger angle.
+ */
+export function alternating<T extends { readonly kind: CurveExtremum['kind']; readonly energy: number }>(
+  extrema: readonly T[],
+  open: boolean,
+): T[] {
   const kept = [...extrema];
-  const isWell = (n: number) => kept[n].kind === 'well';
   for (;;) {
-    let drop: number[] = [];
-    for (let n = 0; n < kept.length && kept.length > 1 && drop.length === 0; n++) {
-      const m = (n + 1) % kept.length;
-      if (isWell(n) === isWell(m)) drop = [kept[n].energy > kept[m].energy === isWell(n) ? n : m];
-      else if (Math.abs(kept[n].energy - kept[m].energy) < FLAT) drop = [n, m];
-    }
+    const drop = shallowest(kept, open);
     if (drop.length === 0) return kept;
     for (const n of drop.sort((p, q) => q - p)) kept.splice(n, 1);
   }
+}
+
+/** Places of the neighbours that differ least: both if they are well and maximum and differ by rounding, the worse one if they are of a kind. */
+function shallowest(extrema: readonly { readonly kind: CurveExtremum['kind']; readonly energy: number }[], open: boolean): number[] {
+  let drop: number[] = [];
+  let least = FLAT;
+  if (extrema.length < 2) return drop;
+  extrema.forEach(({ kind, energy }, n) => {
+    const m = (n + 1) % extrema.length;
+    if (open && m === 0) return;
+    const other = extrema[m];
+    const isWell = kind === 'well';
+    if (isWell === (other.kind === 'well')) {
+      if (least < 0) return;
+      // a well wants to be low, a maximum high; alike, the first one goes
+      const better = isWell ? other.energy - energy : energy - other.energy;
+      drop = [better > ALIKE ? m : n];
+      least = -1;
+    } else if (Math.abs(energy - other.energy) < least - ALIKE) {
+      drop = [n, m];
+      least = Math.abs(energy - other.energy);
+    }
+  });
+  return drop;
 }

@@ -1,7 +1,7 @@
 /** The wells, barriers and crossings of a profile, with geometries and energies of their own instead of interpolated ones. */
 import { type Coordinates, degrees, radians, wrapDegrees } from '@tordial/geometry';
 import type { Calculation } from './potential.js';
-import type { CurveExtremum, ProfileCurve } from './profile-curve.js';
+import { allExtrema, alternating, type CurveExtremum, type ProfileCurve } from './profile-curve.js';
 
 export interface StationaryPoint {
   /**
@@ -32,8 +32,9 @@ interface Held {
 /** Calculates the geometry held at an angle (degrees) that `start` leads to. */
 export type HoldAt = (angle: number, start: Coordinates) => Calculation<Held>;
 
-/** The torque (kcal/mol/radian) that counts as none, and the difference of energies (kcal/mol) at which two branches meet. */
+/** The torque (kcal/mol/radian) that counts as none, that which an extremum may be left with, and the difference of energies (kcal/mol) at which two branches meet. */
 const NO_TORQUE = 2e-3;
+const LITTLE_TORQUE = 2e-2;
 const MEET = 1e-3;
 const MOST_STEPS = 8;
 
@@ -48,24 +49,61 @@ export function* refinedExtrema(
   mirror: ((x: Coordinates) => Coordinates) | null,
 ): Calculation<StationaryPoint[]> {
   const refined: StationaryPoint[] = [];
-  for (const extremum of curve.extrema) {
+  for (const extremum of allExtrema(curve)) {
     const onMirror = Math.abs(extremum.angle) < 1e-3 || Math.abs(Math.abs(extremum.angle) - 180) < 1e-3;
     if (mirror && !onMirror && extremum.angle < 0) continue;
-    const point =
-      extremum.kind === 'crossing' ? yield* meeting(curve, extremum, points, holdAt) : yield* balanced(curve, extremum, points, holdAt);
-    refined.push(point);
+    const interval = intervalOf(curve, extremum.point, points, mirror);
+    const point = extremum.kind === 'crossing' ? yield* meeting(extremum, interval, holdAt) : yield* balanced(extremum, interval, holdAt);
+    refined.push(onCurve(curve, point));
     if (mirror && !onMirror)
-      refined.push({ ...point, angle: wrapDegrees(-point.angle), torque: -point.torque, coordinates: mirror(point.coordinates) });
+      refined.push(onCurve(curve, { ...point, angle: -point.angle, torque: -point.torque, coordinates: mirror(point.coordinates) }));
   }
-  return refined.sort((p, q) => p.angle - q.angle);
+  return alternating(
+    refined.sort((p, q) => p.angle - q.angle),
+    curve.open,
+  );
 }
 
-/** Finds the angle near an extremum at which the torque vanishes. */
-function* balanced(curve: ProfileCurve, extremum: CurveExtremum, points: readonly Held[], holdAt: HoldAt): Calculation<StationaryPoint> {
-  const { kind, point, fraction, side, curvature } = extremum;
-  const left = points[point];
-  const right = points[(point + 1) % points.length];
-  const width = intervalOf(curve, point);
+/** A stationary point with its angle as the curve counts angles: within the turn, or within the range of an open one. */
+function onCurve({ points, open }: ProfileCurve, point: StationaryPoint): StationaryPoint {
+  if (!open) return { ...point, angle: wrapDegrees(point.angle) };
+  const middle = (points[0].angle + points[points.length - 1].angle) / 2;
+  return { ...point, angle: middle + wrapDegrees(point.angle - middle) };
+}
+
+/** Two neighbouring points as the branches between them begin and end there. */
+interface Interval {
+  readonly left: Held;
+  readonly right: Held;
+  /** Radian. */
+  readonly width: number;
+  /** A mirror image leads on from the left point, which is where the two branches meet. */
+  readonly meetsAtLeft: boolean;
+}
+
+function intervalOf(
+  { points: onCurve }: ProfileCurve,
+  n: number,
+  points: readonly Held[],
+  mirror: ((x: Coordinates) => Coordinates) | null,
+): Interval {
+  const following = (n + 1) % points.length;
+  const { angle, torqueAfter } = onCurve[n];
+  const meetsAtLeft = torqueAfter !== undefined && mirror !== null;
+  return {
+    left: meetsAtLeft ? { ...points[n], torque: torqueAfter, coordinates: mirror(points[n].coordinates) } : points[n],
+    right: points[following],
+    width: radians(onCurve[following].angle + (following === 0 ? 360 : 0) - angle),
+    meetsAtLeft,
+  };
+}
+
+/**
+ * Finds the angle near an extremum at which the torque vanishes. A maximum whose branch gives way before that is a crossing; a well that
+ * is not found so is marked as not converged.
+ */
+function* balanced(extremum: CurveExtremum, { left, right, width }: Interval, holdAt: HoldAt): Calculation<StationaryPoint> {
+  const { kind, fraction, side, curvature } = extremum;
   if (fraction === 0 && side !== 'right' && Math.abs(left.torque) <= NO_TORQUE) return stationary(kind, left);
 
   // angles count from the left point, so that the interval does not break at 180 degrees
@@ -79,7 +117,7 @@ function* balanced(curve: ProfileCurve, extremum: CurveExtremum, points: readonl
   for (let n = 0; n < MOST_STEPS; n++) {
     const held: Held = yield* holdAt(wrapDegrees(left.angle + degrees(at)), best ? best.coordinates : start.coordinates);
     if (!best || Math.abs(held.torque) < Math.abs(best.torque)) best = held;
-    if (Math.abs(held.torque) <= NO_TORQUE) break;
+    if (Math.abs(held.torque) <= NO_TORQUE) return stationary(kind, held);
     if (held.torque > 0 === curvature > 0) high = at;
     else low = at;
     if (previous && at !== previous.at) {
@@ -91,16 +129,18 @@ function* balanced(curve: ProfileCurve, extremum: CurveExtremum, points: readonl
     at = step > low && step < high ? step : (low + high) / 2;
     if (high - low < radians(1e-4)) break;
   }
-  return stationary(kind, best ?? start);
+  const found = stationary(kind, best ?? start);
+  if (Math.abs(found.torque) <= LITTLE_TORQUE) return found;
+  return kind === 'barrier' ? { ...found, kind: 'crossing' } : { ...found, converged: false };
 }
 
 /** Finds the angle at which the branches of both sides have the same energy. */
-function* meeting(curve: ProfileCurve, extremum: CurveExtremum, points: readonly Held[], holdAt: HoldAt): Calculation<StationaryPoint> {
-  const { point, fraction } = extremum;
-  const left = points[point];
-  const right = points[(point + 1) % points.length];
-  if (fraction === 0 && curve.points[point].torqueAfter !== undefined) return stationary('crossing', left);
-  const width = intervalOf(curve, point);
+function* meeting(
+  { fraction }: CurveExtremum,
+  { left, right, width, meetsAtLeft }: Interval,
+  holdAt: HoldAt,
+): Calculation<StationaryPoint> {
+  if (fraction === 0 && meetsAtLeft) return stationary('crossing', left);
   let at = fraction * width;
   let fromLeft: Held = left;
   let fromRight: Held = right;
@@ -118,8 +158,4 @@ function* meeting(curve: ProfileCurve, extremum: CurveExtremum, points: readonly
 
 function stationary(kind: StationaryPoint['kind'], { angle, energy, torque, converged, coordinates }: Held): StationaryPoint {
   return { kind, angle, energy, torque, converged, coordinates };
-}
-
-function intervalOf({ points }: ProfileCurve, n: number): number {
-  return radians(n + 1 < points.length ? points[n + 1].angle - points[n].angle : points[0].angle + 360 - points[n].angle);
 }
