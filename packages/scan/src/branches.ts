@@ -34,11 +34,13 @@ export interface Branches {
   readonly at: HeldMinimum[][];
   /** Place of the opposite angle for each place; null when minima have no mirror images among the grid's. */
   readonly opposite: Int32Array | null;
+  /** The mirror image of a geometry as the same molecule. */
+  readonly image: (x: Coordinates) => Coordinates;
 }
 
 /** An empty map for a grid of `count` angles. */
-export function branches(count: number, opposite: Int32Array | null): Branches {
-  return { at: Array.from({ length: count }, () => []), opposite };
+export function branches(count: number, opposite: Int32Array | null, image: Branches['image'] = mirrored): Branches {
+  return { at: Array.from({ length: count }, () => []), opposite, image };
 }
 
 /** Two relaxations that end this close together have found the same minimum, or a copy with equivalent atoms exchanged. */
@@ -58,7 +60,7 @@ export function enter(map: Branches, found: Found): HeldMinimum {
   if (!map.opposite) return minimum;
 
   const place = map.opposite[found.place];
-  const image = { ...found, place, torque: -found.torque, coordinates: mirrored(found.coordinates) };
+  const image = { ...found, place, torque: -found.torque, coordinates: map.image(found.coordinates) };
   const same = lookUp(map, image, spread);
   if (same === minimum) {
     // its own mirror image: the torque vanishes by symmetry

@@ -18,19 +18,23 @@ export interface DrivenRotor {
   readonly atomCount: number;
   /** i, a, b, j: the angle is that of i-a-b-j, the axis a-b. */
   readonly torsion: Torsion;
-  /** Atoms that turn with a and with b, both ascending, axis atoms included. */
+  /** Atoms that turn with a and with b, both ascending, axis atoms included; those alone where the axis is part of a ring. */
   readonly sides: { readonly a: Int32Array; readonly b: Int32Array };
+  /** Whether the axis is part of a ring: nothing turns rigidly about it. */
+  readonly inRing: boolean;
 }
 
 /** Largest angle within the torsion, degrees: beyond it the torsion angle has no meaning. */
 export const STRAIGHTEST = 175;
 
-/** The rotor of a torsion. Throws as `checkTorsion` does. */
-export function drivenRotor(molecule: Molecule, atoms: Torsion): DrivenRotor {
-  const torsion = checkTorsion(molecule, atoms);
-  const sides = sidesOfBond(molecule, torsion[1], torsion[2]);
-  if (!sides) throw new TordialError('torsion/ring', `the bond ${torsion[1]}-${torsion[2]} is part of a ring and cannot be turned`);
-  return { atomCount: molecule.atomCount, torsion, sides };
+/** The rotor of a torsion; one inside a ring only when `rings` are taken. Throws as `checkTorsion` does. */
+export function drivenRotor(molecule: Molecule, atoms: Torsion, { rings = false } = {}): DrivenRotor {
+  const torsion = checkTorsion(molecule, atoms, { rings });
+  const [, a, b] = torsion;
+  const sides = sidesOfBond(molecule, a, b);
+  const { atomCount } = molecule;
+  if (!sides) return { atomCount, torsion, sides: { a: Int32Array.of(a), b: Int32Array.of(b) }, inRing: true };
+  return { atomCount, torsion, sides, inRing: false };
 }
 
 /** Torsion angle of the rotor, radian in (-pi, pi]. */

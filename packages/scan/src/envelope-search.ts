@@ -4,7 +4,7 @@
  * falls any more. What is known already is not followed again: a start that only repeats it costs one relaxation.
  */
 import { type Coordinates, degrees, radians, TordialError, wrapDegrees } from '@tordial/geometry';
-import { type Branches, branches, type Direction, enter, type HeldMinimum, lead, lowest, mirrored, next } from './branches.js';
+import { type Branches, branches, type Direction, enter, type HeldMinimum, lead, lowest, next } from './branches.js';
 import { intoRotorFrame, rotorAngle, turnTo } from './driven-rotor.js';
 import { MEMORY, type Preconditioner } from './minimise.js';
 import { modelHessian } from './model-hessian.js';
@@ -12,6 +12,8 @@ import { invertedNitrogens } from './nitrogen-inversion.js';
 import type { Calculation } from './potential.js';
 import { predictedStart } from './predicted-start.js';
 import { relaxationAt } from './relax-at.js';
+import type { RingGuard } from './ring-torsion.js';
+import { rotorOfTorsion } from './rotors/rotor.js';
 import { report, type ScanTask } from './scan-task.js';
 import { forget, type SecantMemory, secantMemory } from './secant-memory.js';
 import { otherRotors, turnedRotors } from './turned-rotors.js';
@@ -22,18 +24,24 @@ export interface Search {
   readonly preconditioner: Preconditioner;
   readonly memory: SecantMemory;
   readonly map: Branches;
-  /** Whether mirror images are the same molecule with the same energy. */
-  readonly mirror: boolean;
+  /** What makes the mirror image of a geometry the same molecule with the same energy; null where nothing does. */
+  readonly mirror: ((x: Coordinates) => Coordinates) | null;
+  /** Keeps a ring from being driven until it breaks; null outside rings. */
+  readonly guard: RingGuard | null;
+  /** Degrees after which the symmetry of the rotor's sides repeats the profile, nearly; 360 without symmetry. */
+  readonly period: number;
 }
 
 /** A search that has found nothing yet. */
-export function newSearch(scan: ScanTask, mirror: boolean): Search {
+export function newSearch(scan: ScanTask, mirror: Search['mirror'], guard: RingGuard | null = null): Search {
   return {
     scan,
-    preconditioner: modelHessian(scan.molecule, scan.rotor.torsion),
+    preconditioner: modelHessian(scan.molecule, scan.rotor.inRing ? null : scan.rotor.torsion),
     memory: secantMemory(3 * scan.molecule.atomCount, MEMORY),
-    map: branches(scan.angles.length, mirror ? oppositePlaces(scan.angles) : null),
+    map: branches(scan.angles.length, mirror ? oppositePlaces(scan.angles) : null, mirror ?? undefined),
     mirror,
+    guard,
+    period: scan.rotor.inRing ? 360 : rotorOfTorsion(scan.molecule, scan.rotor.torsion).periodicity,
   };
 }
 
@@ -53,7 +61,7 @@ export interface RelaxedHeld {
 }
 
 /** Relaxes a geometry with the rotor held at an angle (radian). */
-export function* hold({ scan, preconditioner, memory }: Search, angle: number, start: Coordinates): Calculation<RelaxedHeld> {
+export function* hold({ scan, preconditioner, memory, guard }: Search, angle: number, start: Coordinates): Calculation<RelaxedHeld> {
   scan.options.signal?.throwIfAborted();
   forget(memory);
   const { energy, torque, coordinates, gradientMax, converged, evaluations } = yield* relaxationAt(
@@ -68,6 +76,7 @@ export function* hold({ scan, preconditioner, memory }: Search, angle: number, s
     },
   );
   scan.evaluations += evaluations;
+  guard?.check(coordinates, energy);
   intoRotorFrame(scan.rotor, coordinates);
   return { energy, torque, coordinates, gradientMax, converged };
 }
@@ -81,12 +90,15 @@ function* find(search: Search, place: number, start: Coordinates): Calculation<H
   return minimum;
 }
 
-/** The same for a geometry that may be no good: null when an angle within the torsion opens to a straight one or atoms fall together. */
+/** What a geometry that is no good comes to: an angle within the torsion opens to a straight one, atoms fall together, a ring would break. */
+const NO_GOOD = new Set(['scan/linear', 'scan/energy', 'scan/ring-broken']);
+
+/** The same for a geometry that may be no good: null then. */
 function* tryToFind(search: Search, place: number, start: Coordinates): Calculation<HeldMinimum | null> {
   try {
     return yield* find(search, place, start);
   } catch (error) {
-    if (error instanceof TordialError && (error.code === 'scan/linear' || error.code === 'scan/energy')) return null;
+    if (error instanceof TordialError && NO_GOOD.has(error.code)) return null;
     throw error;
   }
 }
@@ -97,12 +109,12 @@ function inSight({ scan, map }: Search): number {
   return scan.done + 1 + missing;
 }
 
-function* startAt(search: Search, start: Coordinates): Calculation<HeldMinimum> {
+export function* startAt(search: Search, start: Coordinates): Calculation<HeldMinimum> {
   return yield* find(search, nearestPlace(search, start), start);
 }
 
 /** The grid angle nearest to a geometry's. */
-function nearestPlace({ scan: { rotor, angles } }: Search, x: Coordinates): number {
+export function nearestPlace({ scan: { rotor, angles } }: Search, x: Coordinates): number {
   const angle = degrees(rotorAngle(rotor, x));
   const apart = angles.map((other) => Math.abs(wrapDegrees(other - angle)));
   return apart.indexOf(Math.min(...apart));
@@ -111,8 +123,11 @@ function nearestPlace({ scan: { rotor, angles } }: Search, x: Coordinates): numb
 /** Turns a minimum by one step and relaxes it; notes where it leads. */
 function* follow(search: Search, from: HeldMinimum, direction: Direction): Calculation<HeldMinimum | null> {
   const { scan } = search;
-  const count = scan.angles.length;
-  const place = (from.place + direction + count) % count;
+  const place = neighbour(scan, from.place, direction);
+  if (place === null) {
+    lead(from, direction, null);
+    return null;
+  }
   const step = direction * radians(scan.step);
   const start = predictedStart(scan.rotor, from, direction, radians(scan.angles[place]));
   const to = yield* tryToFind(search, place, start);
@@ -122,23 +137,31 @@ function* follow(search: Search, from: HeldMinimum, direction: Direction): Calcu
   return to;
 }
 
+/** The next place in a direction; null beyond the ends of a range. */
+export function neighbour({ angles, closed }: ScanTask, place: number, direction: Direction): number | null {
+  const count = angles.length;
+  const after = place + direction;
+  if (!closed && (after < 0 || after === count)) return null;
+  return (after + count) % count;
+}
+
 /** Mismatch (kcal/mol) of the trapezoidal rule, and displacement (angstrom) of an atom, up to which a step has stayed on its branch beyond doubt. */
 const SMOOTH_ENERGY = 0.03;
 const SMOOTH_DISPLACEMENT = 0.3;
 
 /** Whether two minima one step apart plainly belong to one branch, so that the way back need not be tried. */
-function goesOn(from: HeldMinimum, to: HeldMinimum, step: number, { scan }: Search): boolean {
+export function goesOn(from: HeldMinimum, to: HeldMinimum, step: number, { scan }: Search): boolean {
   if (!from.converged || !to.converged) return false;
   const trapezoid = (step * (from.torque + to.torque)) / 2;
   if (Math.abs(to.energy - from.energy - trapezoid) > SMOOTH_ENERGY * (step / radians(10)) ** 2) return false;
   const turned = from.coordinates.slice();
-  turnTo(scan.rotor, turned, radians(scan.angles[to.place]));
+  if (!scan.rotor.inRing) turnTo(scan.rotor, turned, radians(scan.angles[to.place]));
   intoRotorFrame(scan.rotor, turned);
   return turned.every((value, k) => Math.abs(value - to.coordinates[k]) < SMOOTH_DISPLACEMENT);
 }
 
 /** Follows a branch in one direction until it meets a part that has been followed before, or has gone round. */
-function* sweep(search: Search, from: HeldMinimum, direction: Direction): Calculation<void> {
+export function* sweep(search: Search, from: HeldMinimum, direction: Direction): Calculation<void> {
   const once = search.scan.options.search === 'sweep' ? search.scan.angles.length - 1 : MOST_ROUNDS * search.scan.angles.length;
   let at: HeldMinimum | null = from;
   for (let n = 0; at && n < once && next(at, direction) === undefined; n++) at = yield* follow(search, at, direction);
@@ -148,6 +171,7 @@ function* sweep(search: Search, from: HeldMinimum, direction: Direction): Calcul
 export function* singleSweep(search: Search): Calculation<void> {
   const first = yield* startAt(search, search.scan.starts[0]);
   yield* sweep(search, first, 1);
+  if (!search.scan.closed) return yield* sweep(search, first, -1);
   const count = search.scan.angles.length;
   const last = search.map.at[(first.place - 1 + count) % count][0];
   if (!goesOn(last, first, radians(search.scan.step), search)) return;
@@ -182,23 +206,52 @@ export function* searchEnvelope(search: Search): Calculation<void> {
     for (const minimum of fresh) {
       seeded.add(minimum);
       if (minimum.twin && minimum.twin !== minimum && seeded.has(minimum.twin)) continue;
-      const turning = isWell(envelope, minimum.place) ? rotors : minimum.place % stride === 0 ? neighbours : [];
+      const turning = isWell(search, envelope, minimum.place) ? rotors : minimum.place % stride === 0 ? neighbours : [];
       for (const start of [...invertedNitrogens(molecule, rotor, minimum.coordinates), ...turnedRotors(turning, minimum.coordinates)])
         yield* tryToFind(search, minimum.place, start);
       // on a grid without opposite angles the mirror image is turned to the nearest one
-      if (search.mirror && !search.map.opposite) {
-        const image = mirrored(minimum.coordinates);
-        yield* tryToFind(search, nearestPlace(search, image), image);
-      }
+      if (search.mirror && !search.map.opposite) yield* tryNearby(search, search.mirror(minimum.coordinates));
+      for (const { place, start } of periodSeeds(search, envelope, minimum)) yield* tryToFind(search, place, start);
     }
   }
 }
 
 /** Whether no neighbour of a point of the envelope lies lower. */
-function isWell(envelope: readonly HeldMinimum[], place: number): boolean {
-  const count = envelope.length;
-  const { energy } = envelope[place];
-  return energy <= envelope[(place + 1) % count].energy && energy <= envelope[(place - 1 + count) % count].energy;
+function isWell({ scan }: Search, envelope: readonly HeldMinimum[], place: number): boolean {
+  const lowerAt = (direction: Direction): boolean => {
+    const beside = neighbour(scan, place, direction);
+    return beside !== null && envelope[beside].energy < envelope[place].energy;
+  };
+  return !lowerAt(1) && !lowerAt(-1);
+}
+
+/** Tries a geometry at the grid angle nearest to its own, if there is one within a step. */
+function* tryNearby(search: Search, start: Coordinates): Calculation<void> {
+  const { rotor, angles, step } = search.scan;
+  const place = nearestPlace(search, start);
+  if (Math.abs(wrapDegrees(angles[place] - degrees(rotorAngle(rotor, start)))) <= step) yield* tryToFind(search, place, start);
+}
+
+/** Kcal/mol: what a relabelled copy must lie below the envelope to be worth a relaxation. */
+const WORTHWHILE = 0.02;
+
+/**
+ * The minimum with the atoms of a symmetric side exchanged: nearly itself turned by the rotor's period. Where the envelope is higher there, that
+ * is a branch not found yet.
+ */
+function periodSeeds(
+  { scan, period }: Search,
+  envelope: readonly HeldMinimum[],
+  minimum: HeldMinimum,
+): { readonly place: number; readonly start: Coordinates }[] {
+  const places = Math.round(period / scan.step);
+  if (!scan.closed || period >= 360 || Math.abs(places * scan.step - period) > 1e-9) return [];
+  const seeds: { place: number; start: Coordinates }[] = [];
+  for (let turn = places; turn < envelope.length; turn += places) {
+    const place = (minimum.place + turn) % envelope.length;
+    if (envelope[place].energy > minimum.energy + WORTHWHILE) seeds.push({ place, start: minimum.coordinates });
+  }
+  return seeds;
 }
 
 /** Follows every branch near the envelope both ways, lowest first, until each minimum there leads somewhere known. */

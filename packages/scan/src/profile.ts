@@ -12,6 +12,8 @@ export interface ScanPoint extends CurvePoint {
   readonly residual: number | null;
   /** Angstrom, in the rotor's frame. */
   readonly coordinates: Coordinates;
+  /** The angle (degrees) of the point that this one is copied from. */
+  readonly copyOf?: number;
 }
 
 /** A scan's result. Angles in degrees, energies in kcal/mol, torques in kcal/mol/radian, coordinates in angstrom. */
@@ -21,8 +23,12 @@ export interface Profile {
   readonly sides: DrivenRotor['sides'];
   readonly step: number;
   readonly startAngle: number;
+  /** First and last angle asked for, where the profile covers a range only; null for the full turn. */
+  readonly range: readonly [number, number] | null;
+  /** Degrees that were scanned, where the rest of the turn is copied from them; null where all was. */
+  readonly period: number | null;
   readonly tolerance: number;
-  /** One a grid angle, ascending in [-180, 180). */
+  /** One a grid angle, ascending; in [-180, 180) for the full turn. */
   readonly points: readonly ScanPoint[];
   /** Wells, barriers and crossings, ascending by angle. */
   readonly stationaryPoints: readonly StationaryPoint[];
@@ -33,6 +39,7 @@ export interface Profile {
 
 /** The profile that a scan has come to. */
 export function profileOf(scan: ScanTask, points: readonly ScanPoint[], stationaryPoints: readonly StationaryPoint[]): Profile {
-  const { kind, rotor, step, startAngle, tolerance, notes, evaluations } = scan;
-  return { kind, torsion: rotor.torsion, sides: rotor.sides, step, startAngle, tolerance, points, stationaryPoints, notes, evaluations };
+  const { kind, rotor, step, startAngle, range, period, tolerance, notes, evaluations } = scan;
+  const { torsion, sides } = rotor;
+  return { kind, torsion, sides, step, startAngle, range, period, tolerance, points, stationaryPoints, notes, evaluations };
 }

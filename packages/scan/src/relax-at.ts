@@ -1,10 +1,11 @@
 /** Relaxation of a molecule with one rotor held exactly at an angle. */
-import { type Coordinates, type Molecule, radians } from '@tordial/geometry';
+import { type Coordinates, degrees, type Molecule, radians, TordialError, wrapRadians } from '@tordial/geometry';
 import { drive } from './drive.js';
-import { checkBent, type DrivenRotor, drivenRotor, heldAt, rigidTorque } from './driven-rotor.js';
+import { checkBent, type DrivenRotor, drivenRotor, heldAt, rigidTorque, rotorAngle } from './driven-rotor.js';
 import { checkSizes, type MinimiseOptions, minimise, type Preconditioner, type Relaxed } from './minimise.js';
 import { modelHessian } from './model-hessian.js';
 import type { Calculation, Potential } from './potential.js';
+import { heldInRing } from './ring-torsion.js';
 import type { Torsion } from './rotors/defining-torsion.js';
 
 export interface RelaxedAt extends Relaxed {
@@ -28,12 +29,35 @@ export function* relaxationAt(
   options: RelaxAtOptions = {},
 ): Calculation<RelaxedAt> {
   checkBent(rotor, start);
+  if (rotor.inRing) return yield* relaxationInRing(rotor, preconditioner, angle, start, options);
   const constraint = heldAt(rotor, angle);
   const x = start.slice();
   constraint.retract(x);
   const relaxed = yield* minimise(x, preconditioner, { ...options, constraint });
   checkBent(rotor, relaxed.coordinates);
   return { ...relaxed, torque: rigidTorque(rotor, relaxed.coordinates, relaxed.gradient) };
+}
+
+/** The same for a torsion inside a ring, whose multiplier is that of `heldInRing`. Throws `scan/ring-broken` when the angle cannot be reached. */
+function* relaxationInRing(
+  rotor: DrivenRotor,
+  preconditioner: Preconditioner,
+  angle: number,
+  start: Coordinates,
+  options: RelaxAtOptions,
+): Calculation<RelaxedAt> {
+  const constraint = heldInRing(rotor, angle, preconditioner);
+  const x = start.slice();
+  preconditioner.follow?.(x);
+  constraint.retract(x);
+  if (!(Math.abs(wrapRadians(angle - rotorAngle(rotor, x))) < 1e-8))
+    throw new TordialError(
+      'scan/ring-broken',
+      `Newton steps do not bring the torsion ${rotor.torsion.join('-')} to ${degrees(angle).toFixed(1)} degrees: the ring would break there`,
+    );
+  const relaxed = yield* minimise(x, preconditioner, { ...options, constraint });
+  checkBent(rotor, relaxed.coordinates);
+  return { ...relaxed, torque: constraint.multiplier(relaxed.coordinates, relaxed.gradient) };
 }
 
 /**
@@ -49,6 +73,6 @@ export function relaxAt(
   options: RelaxAtOptions = {},
 ): RelaxedAt {
   checkSizes(molecule, potential, x);
-  const rotor = drivenRotor(molecule, torsion);
-  return drive(relaxationAt(rotor, modelHessian(molecule, torsion), radians(angle), x, options), potential);
+  const rotor = drivenRotor(molecule, torsion, { rings: true });
+  return drive(relaxationAt(rotor, modelHessian(molecule, rotor.inRing ? null : torsion), radians(angle), x, options), potential);
 }

@@ -31,6 +31,6 @@ export function* rigidScan(scan: ScanTask): Calculation<Profile> {
     points.push({ ...point, breakAfter: false, beyond: null, before: null });
     report(scan, angle, point.energy, angles.length);
   }
-  const stationaryPoints = yield* refinedExtrema(profileCurve(points), points, at, null);
+  const stationaryPoints = yield* refinedExtrema(profileCurve(points, { open: !scan.closed }), points, at, null);
   return profileOf(scan, points, stationaryPoints);
 }

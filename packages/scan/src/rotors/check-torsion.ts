@@ -9,10 +9,11 @@ const SUGGESTIONS = 8;
 
 /**
  * Returns the four atoms as a torsion. Throws `torsion/index` when there are not four different atoms of the molecule,
- * `torsion/chain` when they are not bonded in a chain, `torsion/ring` when the inner bond is part of a ring, `torsion/linear` when an
- * inner atom is a linear centre. Each message names the atoms and lists torsions that would work.
+ * `torsion/chain` when they are not bonded in a chain, `torsion/ring` when the inner bond is part of a ring (unless `rings` are taken, as a
+ * scan over a range does), `torsion/linear` when an inner atom is a linear centre. Each message names the atoms and lists torsions that
+ * would work.
  */
-export function checkTorsion(molecule: Molecule, atoms: readonly number[]): Torsion {
+export function checkTorsion(molecule: Molecule, atoms: readonly number[], { rings = false } = {}): Torsion {
   const { atomCount } = molecule;
   const written = atoms.join(',');
   if (atoms.length !== 4) throw new TordialError('torsion/index', `a torsion is four atoms, ${atoms.length} were given (${written})`);
@@ -37,10 +38,10 @@ export function checkTorsion(molecule: Molecule, atoms: readonly number[]): Tors
         `torsion ${written}: atoms ${p} and ${q} are not bonded, the four must be bonded in a chain; ${suggestions(molecule, atoms)}`,
         { atom: p },
       );
-  if (sidesOfBond(molecule, j, k) === null)
+  if (!rings && sidesOfBond(molecule, j, k) === null)
     throw new TordialError(
       'torsion/ring',
-      `torsion ${written}: the bond between ${j} and ${k} is part of a ring, so that its sides cannot turn freely; ${suggestions(molecule, atoms)}`,
+      `torsion ${written}: the bond between ${j} and ${k} is part of a ring, so that its sides cannot turn freely; drive it over a range of angles (--range FROM:TO, such as --range=-60:60; \`range\` in the library); ${suggestions(molecule, atoms)}`,
       { atom: j, bond: bondBetween(molecule, j, k) },
     );
   const linear = [j, k].find((atom) => atomShape(molecule, atom) === 'linear');
