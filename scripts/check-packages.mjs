@@ -57,13 +57,13 @@ try {
   run('npm', ['install', '--no-audit', '--no-fund', '--silent', ...tarballs.map((name) => join(folder, name))], consumer);
   writeFileSync(join(consumer, 'program.ts'), PROGRAM);
   const tsc = join(root, 'node_modules/typescript/bin/tsc');
-  const common = ['--strict', '--target', 'es2022', '--types', '', 'program.ts'];
-  run(
-    process.execPath,
-    [tsc, '--module', 'esnext', '--moduleResolution', 'bundler', '--noEmit', '--lib', 'es2022,dom', ...common],
-    consumer,
-  );
-  run(process.execPath, [tsc, '--module', 'nodenext', '--moduleResolution', 'nodenext', '--lib', 'es2022,dom', ...common], consumer);
+  const settings = { strict: true, target: 'es2022', lib: ['es2022', 'dom'], types: [] };
+  const compile = (name, resolution) => {
+    writeFileSync(join(consumer, name), JSON.stringify({ compilerOptions: { ...settings, ...resolution }, files: ['program.ts'] }));
+    run(process.execPath, [tsc, '-p', name], consumer);
+  };
+  compile('tsconfig.bundler.json', { module: 'esnext', moduleResolution: 'bundler', noEmit: true });
+  compile('tsconfig.nodenext.json', { module: 'nodenext', moduleResolution: 'nodenext' });
   process.stdout.write(`consumer: ${run(process.execPath, ['program.js'], consumer)}`);
 } finally {
   rmSync(folder, { recursive: true, force: true });
