@@ -83,7 +83,8 @@ function requireClosed({ points, pieces }: ProfileCurve): void {
     if (piece.side === 'both') {
       const width = widthAfter(points, piece.point);
       const next = points[(piece.point + 1) % points.length];
-      work += ((points[piece.point].torque + next.torque) * width) / 2;
+      const { torque, torqueAfter = torque } = points[piece.point];
+      work += ((torqueAfter + next.torque) * width) / 2;
       continue;
     }
     smooth = false;

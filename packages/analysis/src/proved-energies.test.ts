@@ -86,5 +86,18 @@ describe('energies of proved points', () => {
     expect(lost.freeEnergies).toBeNull();
     expect(lost.notes.map((note) => note.code)).toEqual(['proof/well']);
     expect(() => provedEnergies(document, [{ ...proof(kinds)[0], of: 99 }])).toThrow(/this very profile/);
+    expect(() =>
+      provedEnergies(
+        document,
+        proof(kinds).map(({ hessian, ...point }) => point),
+      ),
+    ).toThrow(/neither a Hessian nor frequencies/);
+    const known = proof(kinds).map(({ hessian, ...point }) => ({
+      ...point,
+      frequencies: vibrations(hessian ?? [], point.coordinates, MASSES).frequencies,
+    }));
+    expect(provedEnergies(document, known).freeEnergies?.(298.15)).toEqual(
+      provedEnergies(document, proof(kinds), MASSES).freeEnergies?.(298.15),
+    );
   });
 });

@@ -17,8 +17,9 @@ export interface ProvedStationaryPoint {
   readonly energy: number;
   /** 3 values an atom, angstrom. */
   readonly coordinates: Coordinates;
-  /** Row-major, kcal/mol/angstrom^2. */
-  readonly hessian: ArrayLike<number>;
+  /** Row-major, kcal/mol/angstrom^2; or the frequencies that follow from it, cm-1, imaginary ones negative. */
+  readonly hessian?: ArrayLike<number>;
+  readonly frequencies?: ArrayLike<number>;
 }
 
 /** Energies of proved points in the order of `rotamers(document)`, to be handed to `analyseProfile`. */
@@ -40,7 +41,7 @@ const ON_MIRROR = 2;
 /**
  * Saddle heights, free energies and transmission coefficients of a profile from its proved points. `masses` in amu, standard weights when left out. A
  * barrier whose saddle joins other wells, has more than one negative mode or was not found stays unknown, so that no rate is taken over it.
- * Throws `proof/points` for points that belong to another document, and as `vibrations` does.
+ * Throws `proof/points` for points that belong to another document or have neither a Hessian nor frequencies, and as `vibrations` and `freeEnergiesOf` do.
  */
 export function provedEnergies(
   document: ProfileDocument,
@@ -56,11 +57,11 @@ export function provedEnergies(
       );
   const { wells, barriers } = rotamers(document);
   const notes: Note[] = [];
-  const refined = ({ energy, coordinates, hessian }: ProvedStationaryPoint): RefinedPoint => ({
-    energy,
-    coordinates,
-    frequencies: vibrations(hessian, coordinates, masses).frequencies,
-  });
+  const refined = ({ of, energy, coordinates, hessian, frequencies }: ProvedStationaryPoint): RefinedPoint => {
+    if (!frequencies && !hessian)
+      throw new TordialError('proof/points', `the proved point ${of} has neither a Hessian nor frequencies: give one of them`);
+    return { energy, coordinates, frequencies: frequencies ?? vibrations(hessian ?? [], coordinates, masses).frequencies };
+  };
   const minima = wells.map(({ stationaryPoints, angle }) => {
     const found = stationaryPoints.flatMap((place) => byPlace.get(place) ?? []).filter((point) => point.verdict === 'minimum');
     if (found.length === 0)
