@@ -61,3 +61,38 @@ export function gridStep(text: string): number {
   if (count < 3 || Math.abs(count * step - 360) > 1e-9) throw new InvalidArgumentError('a divisor of 360 is meant, such as 5, 10 or 15.');
   return step;
 }
+
+export function nonNegativeNumber(text: string): number {
+  const value = finiteNumber(text);
+  if (value < 0) throw new InvalidArgumentError('a number from 0 up is meant.');
+  return value;
+}
+
+/** A positive number with or without its unit, `0.35ppm`. */
+export function quantity(unit: string): (text: string) => number {
+  return (text) => {
+    const bare = text.trim().toLowerCase().endsWith(unit.toLowerCase()) ? text.trim().slice(0, -unit.length) : text;
+    const value = Number(bare);
+    if (bare.trim() === '' || !Number.isFinite(value) || value <= 0)
+      throw new InvalidArgumentError(`a number above 0 in ${unit} is meant, such as 1${unit}.`);
+    return value;
+  };
+}
+
+/** Temperatures in kelvin: one, a list `a,b,c`, or a range `from:to:step`. */
+export function temperatures(text: string): number[] {
+  const range = text.split(':').map(Number);
+  if (text.includes(':')) {
+    const [from, to, step] = range;
+    const count = Math.floor((to - from) / step + 1e-9) + 1;
+    if (range.length !== 3 || !range.every(Number.isFinite) || !(from > 0 && step > 0 && count >= 1 && count <= MOST_TEMPERATURES))
+      throw new InvalidArgumentError(`a range above 0 K is meant, such as 250:400:10, of at most ${MOST_TEMPERATURES} temperatures.`);
+    return Array.from({ length: count }, (_, n) => from + n * step);
+  }
+  const values = text.split(',').map((word) => (word.trim() === '' ? Number.NaN : Number(word)));
+  if (values.length > MOST_TEMPERATURES || !values.every((value) => Number.isFinite(value) && value > 0))
+    throw new InvalidArgumentError('kelvin above 0 are meant, such as 298.15 or 250:400:10.');
+  return values;
+}
+
+const MOST_TEMPERATURES = 1000;

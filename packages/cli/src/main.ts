@@ -3,10 +3,12 @@
  * when it is asked for, so that help and version answer at once.
  */
 import { Command, CommanderError } from 'commander';
+import { describeAnalyse } from './commands/analyse.js';
 import { describeBuild } from './commands/build.js';
 import { describeEnergy } from './commands/energy.js';
 import { describeProfile } from './commands/profile.js';
 import { describeRotors } from './commands/rotors.js';
+import { describeStrain } from './commands/strain.js';
 import { exitCodeOf, report } from './failures.js';
 import { VERSION } from './version.js';
 
@@ -33,7 +35,8 @@ Example:
 
 MMFF94 energies are estimates; decisions about safety, stability or release need experiment and the responsible specialist.`,
     );
-  for (const describe of [describeRotors, describeEnergy, describeBuild, describeProfile]) describe(program, finish);
+  for (const describe of [describeRotors, describeEnergy, describeBuild, describeProfile, describeAnalyse, describeStrain])
+    describe(program, finish);
   for (const command of [program, ...program.commands]) command.exitOverride().showHelpAfterError('(--help lists the options)');
 
   process.stdout.on('error', (error: NodeJS.ErrnoException) => {

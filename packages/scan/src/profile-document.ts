@@ -1,7 +1,9 @@
 /** The result of a one-dimensional scan as a plain JSON document; the JSON Schema stands in docs/schemas/profile-1.json. */
-import { type Coordinates, elementSymbol, type Molecule, type Note } from '@tordial/geometry';
+import { type Coordinates, elementSymbol, type Molecule, type Note, TordialError } from '@tordial/geometry';
 import type { Profile } from './profile.js';
 import type { BranchEnd } from './profile-curve.js';
+import type { Motion } from './stationary/motion.js';
+import type { PathEnd, ProvedPoint, Verdict } from './stationary/prove.js';
 
 export const PROFILE_SCHEMA = 'tordial/profile/1';
 
@@ -67,7 +69,7 @@ export interface ProfilePoint {
 }
 
 export interface ProfileStationaryPoint {
-  /** A `crossing` is a maximum of the envelope where two branches meet, an upper bound and no saddle. */
+  /** A `crossing` is a maximum of the envelope where two branches meet: no saddle, and the way between the branches may lead well above it. */
   readonly kind: 'well' | 'barrier' | 'crossing';
   readonly angle: number;
   readonly energy: number;
@@ -78,6 +80,39 @@ export interface ProfileStationaryPoint {
   readonly coordinates: readonly number[];
 }
 
+/** A stationary point of the profile after it was proved: what it is, beside what the profile took it for. Energies in the document's unit. */
+export interface ProfileProvedPoint {
+  /** Index among `stationaryPoints`. */
+  readonly of: number;
+  readonly kind: 'well' | 'barrier' | 'crossing';
+  readonly verdict: Verdict;
+  /** Negative eigenvalues of the Hessian without translation and rotation. */
+  readonly order: number;
+  readonly angle: number;
+  readonly energy: number;
+  /** Above the lowest proved point. */
+  readonly relativeEnergy: number;
+  /** Largest gradient component, kcal/mol/angstrom. */
+  readonly gradientMax: number;
+  readonly converged: boolean;
+  /** Root mean square distance from the profile's geometry, angstrom. */
+  readonly moved: number;
+  /** Of a saddle: overlap of its negative mode with the turn of the rotor, 0 to 1; the motion it resembles most; where its paths down end. */
+  readonly overlap: number | null;
+  readonly motion: { readonly kind: Motion['kind']; readonly atoms: readonly number[]; readonly overlap: number } | null;
+  readonly ends: readonly [PathEnd, PathEnd] | null;
+  /** Nitrogens that turn inside out between the two ends. */
+  readonly inverts: readonly number[];
+  /** Saddles on the way between the wells, of which this one is the highest; 0 where they are not joined. */
+  readonly links: number;
+  /** Of a well: the first well that is the same minimum with equivalent atoms exchanged. */
+  readonly sameAs: number | null;
+  /** Harmonic, cm-1, ascending; imaginary ones negative. */
+  readonly frequencies: readonly number[];
+  /** Angstrom. */
+  readonly coordinates: readonly number[];
+}
+
 export interface ProfileDocument {
   readonly schema: typeof PROFILE_SCHEMA;
   readonly molecule: DocumentMolecule;
@@ -85,6 +120,10 @@ export interface ProfileDocument {
   readonly unit: EnergyUnit;
   readonly points: readonly ProfilePoint[];
   readonly stationaryPoints: readonly ProfileStationaryPoint[];
+  /** One for each stationary point, where they were proved. */
+  readonly proved?: readonly ProfileProvedPoint[];
+  /** What followed from the profile when it was written: rotamers, populations, rates, cautions. It can be made again from the rest. */
+  readonly analysis?: Readonly<Record<string, unknown>>;
   readonly settings: {
     readonly kind: 'relaxed' | 'rigid';
     /** Degrees. */
@@ -172,6 +211,42 @@ export function profileDocument(profile: Profile, details: DocumentDetails): Pro
     notes: [...details.notes, ...profile.notes],
     provenance: { ...details.provenance, evaluations: profile.evaluations },
   };
+}
+
+/**
+ * A document with its proved points added: `frequencies` (cm-1) of each point in the same order. Throws `proof/points` when the points are not those of the document.
+ */
+export function withProvedPoints(
+  document: ProfileDocument,
+  points: readonly ProvedPoint[],
+  frequencies: readonly ArrayLike<number>[],
+  notes: readonly Note[],
+): ProfileDocument {
+  if (points.length !== document.stationaryPoints.length || frequencies.length !== points.length)
+    throw new TordialError('proof/points', `${points.length} proved points for ${document.stationaryPoints.length} stationary points`);
+  const factor = document.unit === 'kJ/mol' ? KJ_PER_KCAL : 1;
+  const lowest = Math.min(...points.map(({ energy }) => energy));
+  return {
+    ...document,
+    proved: points.map(({ hessian: _, ...point }, n) => ({
+      ...point,
+      angle: rounded(point.angle),
+      energy: rounded(point.energy * factor),
+      relativeEnergy: rounded((point.energy - lowest) * factor),
+      gradientMax: rounded(point.gradientMax),
+      moved: rounded(point.moved),
+      overlap: point.overlap === null ? null : rounded(point.overlap),
+      motion: point.motion && { ...point.motion, overlap: rounded(point.motion.overlap) },
+      ends: point.ends && [endOf(point.ends[0], factor), endOf(point.ends[1], factor)],
+      frequencies: Array.from(frequencies[n], (value) => Math.round(value * 1e3) / 1e3 + 0),
+      coordinates: Array.from(point.coordinates, rounded),
+    })),
+    notes: [...document.notes, ...notes],
+  };
+}
+
+function endOf({ well, angle, energy }: PathEnd, factor: number): PathEnd {
+  return { well, angle: rounded(angle), energy: rounded(energy * factor) };
 }
 
 /** To six decimals, without a negative zero. */

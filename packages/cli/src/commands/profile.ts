@@ -14,6 +14,7 @@ export interface ProfileFlags extends CommonFlags {
   tolerance: number;
   geometry?: string;
   output?: string;
+  prove: boolean;
 }
 
 export function describeProfile(program: Command, finish: Finish): void {
@@ -36,6 +37,7 @@ export function describeProfile(program: Command, finish: Finish): void {
         .default(1e-3),
     )
     .option('--geometry <file>', 'start from these structures too (.xyz, atoms in the order of MOLECULE)')
+    .option('--no-prove', 'leave wells and saddles as the scan gives them: rates over crossings of branches are then refused')
     .option('-o, --output <folder>', 'write profile.json, profile.csv, profile.svg, frames.xyz and frames.sdf there')
     .helpOption('--help', 'print this help')
     .addHelpText(

@@ -1,8 +1,10 @@
 /** `tordial profile`: scans, and the files that show them. */
 import { join } from 'node:path';
-import { geometriesFor, type MolecularRecord, type Molecule, TordialError } from '@tordial/geometry';
+import { geometriesFor, type MolecularRecord, type Molecule, type Note, TordialError } from '@tordial/geometry';
 import { checkTorsion, findRotors, type ProfileDocument, torsionOfAxis } from '@tordial/scan';
 import type { ProfileFlags } from '../commands/profile.js';
+import { analyseDocument, type DocumentAnalysis } from '../profile-analysis.js';
+import { provedPoints } from '../proved-points.js';
 import { torsionProfile } from '../torsion-profile.js';
 import { eachRecord, tell } from './each-record.js';
 import { readFrames } from './input.js';
@@ -30,16 +32,37 @@ export async function scanProfiles(argument: string, flags: ProfileFlags): Promi
     const torsions = torsionsOf(record.molecule, flags);
     const home = alone ? [] : [folderName(record.molecule, index, folders)];
     for (const torsion of torsions) {
-      const document = await scan(record, torsion, flags, `${label} ${torsion[1]}-${torsion[2]}`);
+      const { document, analysis } = await completed(await scan(record, torsion, flags, `${label} ${torsion[1]}-${torsion[2]}`), flags);
       tell(document.notes, label);
       if (flags.json) process.stdout.write(`${JSON.stringify(document)}\n`);
       if (!flags.output) continue;
       const folder = join(flags.output, ...home, flags.all ? `rotor-${torsion[1]}-${torsion[2]}` : '');
       prepareFolder(folder);
       writeFiles(folder, profileFiles(record.molecule, document));
-      process.stderr.write(`${profileSummary(document)}written to ${folder}\n`);
+      process.stderr.write(`${profileSummary(document, analysis)}written to ${folder}\n`);
     }
   });
+}
+
+/** A scan with its points proved and what follows from it; what forbids either becomes a note, for the profile itself stands. */
+async function completed(
+  scanned: ProfileDocument,
+  flags: ProfileFlags,
+): Promise<{ document: ProfileDocument; analysis: DocumentAnalysis | null }> {
+  const notes: Note[] = [];
+  const attempt = async <T>(work: () => T | Promise<T>): Promise<T | null> => {
+    try {
+      return await work();
+    } catch (error) {
+      if (!(error instanceof TordialError)) throw error;
+      notes.push({ code: error.code, message: error.message });
+      return null;
+    }
+  };
+  const proved = flags.prove && !flags.rigid ? await attempt(() => provedPoints(scanned)) : null;
+  const document = proved ?? scanned;
+  const analysis = await attempt(() => analyseDocument(document));
+  return { document: { ...document, notes: [...document.notes, ...notes], ...(analysis ? { analysis: { ...analysis } } : {}) }, analysis };
 }
 
 async function scan(record: MolecularRecord, torsion: Torsion, flags: ProfileFlags, label: string): Promise<ProfileDocument> {
