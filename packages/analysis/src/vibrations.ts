@@ -9,9 +9,8 @@
  * N. C. Handy, J. E. Adams, J. Chem. Phys. 72, 99 (1980).
  */
 import { type Coordinates, TordialError } from '@tordial/geometry';
-import { EigenvalueDecomposition, Matrix } from 'ml-matrix';
+import { projectedModes, rigidMotions } from '@tordial/scan';
 import { AVOGADRO, JOULE_PER_CALORIE, PLANCK, SPEED_OF_LIGHT, WAVENUMBER_OF_FORCE } from './constants.js';
-import { inertia } from './hindered-rotor/reduced-moment.js';
 
 /** Normal modes of a molecule, 3N - 6 of them (3N - 5 when linear), ascending by frequency. */
 export interface Vibrations {
@@ -37,35 +36,17 @@ export function vibrations(hessian: ArrayLike<number>, x: Coordinates, masses: A
     if (!Number.isFinite(hessian[n])) throw new TordialError('vibrations/hessian', 'the Hessian holds a value that is no number');
     largest = Math.max(largest, Math.abs(hessian[n]));
   }
-  const weighted = new Matrix(size, size);
   for (let i = 0; i < size; i++)
-    for (let j = 0; j <= i; j++) {
-      const a = hessian[i * size + j];
-      const b = hessian[j * size + i];
-      if (Math.abs(a - b) > 1e-6 * largest)
-        throw new TordialError('vibrations/hessian', `the Hessian is not symmetric: elements ${i}, ${j} are ${a} and ${b}`);
-      const value = (a + b) / 2 / Math.sqrt(masses[Math.floor(i / 3)] * masses[Math.floor(j / 3)]);
-      weighted.set(i, j, value);
-      weighted.set(j, i, value);
-    }
-
-  // P H P with the taken-out motions moved far above all vibrations, so that no soft mode can mix with them
-  const rigid = rigidMotions(x, masses);
-  const far = 10 * (1 + weighted.norm('frobenius'));
-  project(weighted, rigid);
-  for (const motion of rigid)
-    for (let i = 0; i < size; i++) for (let j = 0; j < size; j++) weighted.set(i, j, weighted.get(i, j) + far * motion[i] * motion[j]);
-  const { realEigenvalues, eigenvectorMatrix } = new EigenvalueDecomposition(weighted, { assumeSymmetric: true });
-  const order = realEigenvalues
-    .map((_, n) => n)
-    .sort((p, q) => realEigenvalues[p] - realEigenvalues[q])
-    .slice(0, size - rigid.length);
+    for (let j = 0; j < i; j++)
+      if (Math.abs(hessian[i * size + j] - hessian[j * size + i]) > 1e-6 * largest)
+        throw new TordialError(
+          'vibrations/hessian',
+          `the Hessian is not symmetric: elements ${i}, ${j} are ${hessian[i * size + j]} and ${hessian[j * size + i]}`,
+        );
+  const { eigenvalues, vectors } = projectedModes(hessian, rigidMotions(x, masses), masses);
   return {
-    frequencies: Float64Array.from(
-      order,
-      (n) => Math.sign(realEigenvalues[n]) * Math.sqrt(Math.abs(realEigenvalues[n])) * WAVENUMBER_OF_FORCE,
-    ),
-    modes: order.map((n) => Float64Array.from({ length: size }, (_, row) => eigenvectorMatrix.get(row, n))),
+    frequencies: eigenvalues.map((lambda) => Math.sign(lambda) * Math.sqrt(Math.abs(lambda)) * WAVENUMBER_OF_FORCE),
+    modes: vectors,
   };
 }
 
@@ -103,49 +84,6 @@ export function modeAlong(
     }
   });
   return { mode, overlap };
-}
-
-/** Orthonormal mass-weighted translations and rotations of a geometry: 6, of a linear molecule 5, of an atom 3. */
-function rigidMotions(x: Coordinates, masses: ArrayLike<number>): Float64Array[] {
-  const count = masses.length;
-  const { mass, centre, moments, axes } = inertia(x, masses);
-  const motions: Float64Array[] = [];
-  for (let k = 0; k < 3; k++) {
-    const motion = new Float64Array(3 * count);
-    for (let i = 0; i < count; i++) motion[3 * i + k] = Math.sqrt(masses[i] / mass);
-    motions.push(motion);
-  }
-  for (let n = 0; n < 3; n++) {
-    if (!(moments[n] > 1e-6 * moments[2]) || moments[n] === 0) continue;
-    const [ux, uy, uz] = axes[n];
-    const motion = new Float64Array(3 * count);
-    for (let i = 0; i < count; i++) {
-      const factor = Math.sqrt(masses[i] / moments[n]);
-      const rx = x[3 * i] - centre[0];
-      const ry = x[3 * i + 1] - centre[1];
-      const rz = x[3 * i + 2] - centre[2];
-      motion[3 * i] = factor * (uy * rz - uz * ry);
-      motion[3 * i + 1] = factor * (uz * rx - ux * rz);
-      motion[3 * i + 2] = factor * (ux * ry - uy * rx);
-    }
-    motions.push(motion);
-  }
-  return motions;
-}
-
-/** Replaces a symmetric A by P A P, P = 1 - sum_m m m^T, one motion after another. */
-function project(A: Matrix, motions: readonly Float64Array[]): void {
-  const size = A.rows;
-  for (const m of motions) {
-    const Am = Float64Array.from({ length: size }, (_, i) => {
-      let sum = 0;
-      for (let j = 0; j < size; j++) sum += A.get(i, j) * m[j];
-      return sum;
-    });
-    const mAm = dot(m, Am);
-    for (let i = 0; i < size; i++)
-      for (let j = 0; j < size; j++) A.set(i, j, A.get(i, j) - m[i] * Am[j] - Am[i] * m[j] + mAm * m[i] * m[j]);
-  }
 }
 
 function dot(a: Float64Array, b: Float64Array): number {
