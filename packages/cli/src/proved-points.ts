@@ -1,6 +1,6 @@
 /** The stationary points of a profile document, proved: wells, saddles, their frequencies and where they lead. */
 import { massesOfDocument, moleculeOfDocument, vibrations } from '@tordial/analysis';
-import { type Mmff94Options, mmff94 } from '@tordial/forcefield';
+import { type Mmff94Options, mmff94, type TorsionSeries } from '@tordial/forcefield';
 import { TordialError } from '@tordial/geometry';
 import { type Abortable, type Potential, type ProfileDocument, proof, withProvedPoints } from '@tordial/scan';
 import { driveInTurns } from './drive-in-turns.js';
