@@ -16,7 +16,7 @@ import type { RingGuard } from './ring-torsion.js';
 import { rotorOfTorsion } from './rotors/rotor.js';
 import { report, type ScanTask } from './scan-task.js';
 import { forget, type SecantMemory, secantMemory } from './secant-memory.js';
-import { otherRotors, turnedRotors } from './turned-rotors.js';
+import { type OtherRotor, otherRotors, turnedRotors, turnedTogether } from './turned-rotors.js';
 
 /** A relaxed scan at work: the branches found so far, and what serves every relaxation. */
 export interface Search {
@@ -185,6 +185,8 @@ const MOST_ROUNDS = 4;
 const WINDOW = 2;
 /** The rotors next to the axis are turned on at points this far apart, degrees: what that finds is followed to the points between. */
 const TURN_NEXT_EVERY = 30;
+/** Rounds of turning other rotors after which only neighbours, mirror images and inversions seed: long chains would fold for ever. */
+const TURNING_ROUNDS = 4;
 
 /** Finds the lowest minimum at each angle. */
 export function* searchEnvelope(search: Search): Calculation<void> {
@@ -196,9 +198,10 @@ export function* searchEnvelope(search: Search): Calculation<void> {
   const { molecule, rotor } = search.scan;
   const rotors = otherRotors(molecule, rotor);
   const neighbours = rotors.filter(({ distance }) => distance === 0);
+  const near = rotors.slice(0, TURNED_TOGETHER);
   const stride = Math.max(1, Math.round(TURN_NEXT_EVERY / search.scan.step));
   const seeded = new Set<HeldMinimum>();
-  for (;;) {
+  for (let round = 1; ; round++) {
     yield* close(search);
     const envelope = lowestOnEach(search);
     const fresh = envelope.filter((minimum) => !seeded.has(minimum));
@@ -206,14 +209,46 @@ export function* searchEnvelope(search: Search): Calculation<void> {
     for (const minimum of fresh) {
       seeded.add(minimum);
       if (minimum.twin && minimum.twin !== minimum && seeded.has(minimum.twin)) continue;
-      const turning = isWell(search, envelope, minimum.place) ? rotors : minimum.place % stride === 0 ? neighbours : [];
+      const turning =
+        round > TURNING_ROUNDS ? [] : isWell(search, envelope, minimum.place) ? rotors : minimum.place % stride === 0 ? neighbours : [];
       for (const start of [...invertedNitrogens(molecule, rotor, minimum.coordinates), ...turnedRotors(turning, minimum.coordinates)])
         yield* tryToFind(search, minimum.place, start);
+      if (round <= TURNING_ROUNDS && (isWell(search, envelope, minimum.place) || minimum.place % stride === 0))
+        for (const start of yield* promising(search, turnedTogetherOrInverted(search, near, minimum.coordinates)))
+          yield* tryToFind(search, minimum.place, start);
       // on a grid without opposite angles the mirror image is turned to the nearest one
       if (search.mirror && !search.map.opposite) yield* tryNearby(search, search.mirror(minimum.coordinates));
       for (const { place, start } of periodSeeds(search, envelope, minimum)) yield* tryToFind(search, place, start);
     }
   }
+}
+
+/** Rotors next to the axis and beyond that are turned several at once; of the geometries so made, those of lowest energy are relaxed. */
+const TURNED_TOGETHER = 5;
+const MOST_PROMISING = 4;
+
+/** Two and three rotors turned at once, and one and two about an inverted nitrogen: what no single turn leads to. */
+function turnedTogetherOrInverted({ scan: { molecule, rotor } }: Search, rotors: readonly OtherRotor[], x: Coordinates): Coordinates[] {
+  const together = (start: Coordinates, counts: readonly number[]): Coordinates[] =>
+    counts.flatMap((count) => turnedTogether(rotors, count, start));
+  return [...together(x, [2, 3]), ...invertedNitrogens(molecule, rotor, x).flatMap((image) => together(image, [1, 2]))];
+}
+
+/** The few of these geometries whose energies, as they stand, are lowest: an energy costs a tenth of a relaxation. */
+function* promising(search: Search, starts: readonly Coordinates[]): Calculation<Coordinates[]> {
+  const { scan } = search;
+  const question = { x: new Float64Array(3 * scan.rotor.atomCount), gradient: new Float64Array(3 * scan.rotor.atomCount) };
+  const judged: { readonly start: Coordinates; readonly energy: number }[] = [];
+  for (const start of starts) {
+    question.x.set(start);
+    const energy = yield question;
+    scan.evaluations++;
+    if (Number.isFinite(energy)) judged.push({ start, energy });
+  }
+  return judged
+    .sort((p, q) => p.energy - q.energy)
+    .slice(0, MOST_PROMISING)
+    .map(({ start }) => start);
 }
 
 /** Whether no neighbour of a point of the envelope lies lower. */

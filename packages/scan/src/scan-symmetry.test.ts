@@ -64,6 +64,20 @@ describe('the same molecule written five ways gives the same profile', () => {
     for (const difference of differences) expect(difference).toBeLessThan(0.01);
   });
 });
+test('a profile does not depend on where the starting geometries lie and how they are turned', () => {
+  const atoms: Torsion = [0, 1, 2, 3];
+  const molecule = moleculeFromSmiles('N[C@@H](C)CO');
+  const potential = mmff94(molecule);
+  const starts = conformers(molecule, potential, { count: 4, seed: 1 }).conformers.map(({ coordinates }) => coordinates);
+  // a turn of 90 degrees about z, one of 180 about x, and a shift
+  const moved = starts.map((x) => x.map((_, k) => [-x[k - (k % 3) + 1] + 17, -x[k - (k % 3)] - 4, -x[k - (k % 3) + 2] + 250][k % 3]));
+  moved.forEach((x, n) => {
+    expect(potential.evaluate(x)).toBeCloseTo(potential.evaluate(starts[n]), 8);
+  });
+  const [p, q] = [starts, moved].map((from) => scanRotor(molecule, potential, atoms, { starts: from, step: 30 }));
+  expect(apart(p, q)).toBeLessThan(1e-4);
+});
+
 describe('mirror images', () => {
   test('have profiles whose angle changes sign', () => {
     const left = scan('N[C@@H](Cc1ccccc1)CO', [0, 1, 2, 3]);

@@ -4,7 +4,7 @@ import { describe, expect, test } from 'vitest';
 import { drivenRotor } from './driven-rotor.js';
 import { relax } from './minimise.js';
 import { invertedNitrogens } from './nitrogen-inversion.js';
-import { otherRotors, turnedRotors } from './turned-rotors.js';
+import { otherRotors, turnedRotors, turnedTogether } from './turned-rotors.js';
 
 describe('inverted nitrogens', () => {
   test('keep their bond lengths and end on the other side of their neighbours', () => {
@@ -42,6 +42,17 @@ describe('other rotors', () => {
     expect(turnsOf(1, 0)).toEqual([60]);
     expect(turnsOf(7, 8)).toEqual([60, 120]);
     expect(turnsOf(5, 4)).toEqual([60, 120, 180, 240, 300]);
+  });
+
+  test('turn several at once by every second turn, each choice of rotors once', () => {
+    const x = embed(molecule);
+    const coarse = rotors.map(({ turns }) => Math.floor(turns.length / 2));
+    const pairs = coarse.reduce((sum, p, n) => sum + coarse.slice(n + 1).reduce((inner, q) => inner + p * q, 0), 0);
+    const turned = turnedTogether(rotors, 2, x);
+    expect(turned).toHaveLength(pairs);
+    for (const y of turned) expect(torsion(y, 4, 5, 6, 7)).toBeCloseTo(torsion(x, 4, 5, 6, 7), 10);
+    expect(new Set(turned.map((y) => y.join())).size).toBe(pairs);
+    expect(turnedTogether(rotors, 0, x)).toEqual([x]);
   });
 
   test('leave the driven torsion as it is and turn their own', () => {

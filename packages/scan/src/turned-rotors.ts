@@ -47,6 +47,15 @@ function stepsFrom(molecule: Molecule, from: readonly number[]): Int32Array {
   return steps;
 }
 
+/** One geometry for each way to turn so many of the rotors at once, each by every second of its turns: by 120 degrees, from well to well. */
+export function turnedTogether(rotors: readonly OtherRotor[], count: number, x: Coordinates): Coordinates[] {
+  if (count === 0) return [x];
+  return rotors.flatMap((rotor, n) => {
+    const coarse = { ...rotor, turns: rotor.turns.filter((_, turn) => turn % 2 === 1) };
+    return turnedRotors([coarse], x).flatMap((turned) => turnedTogether(rotors.slice(n + 1), count - 1, turned));
+  });
+}
+
 /** One geometry for each turn of each rotor. */
 export function turnedRotors(rotors: readonly OtherRotor[], x: Coordinates): Coordinates[] {
   return rotors.flatMap(({ axis, atoms, turns }) =>
