@@ -123,13 +123,13 @@ const FARTHEST_PAST = 90;
 const LEAP = 0.3;
 /** Degrees by which another rotor must differ between two minima to be turned, and the steps it is turned in. */
 const TURNED = 25;
-const TURN_STEP = 10;
+const TURN_STEP = 5;
 /** Saddles that a way between two minima may pass. */
 const MOST_LINKS = 4;
 /** Degrees by which a saddle on the way may stand outside of the arc between the wells. */
 const BESIDE = 30;
 /** Saddles that are tried for one barrier beyond its own before the wells count as not joined. */
-const MOST_TRIES = 8;
+const MOST_TRIES = 12;
 
 interface Proof {
   readonly molecule: Molecule;
@@ -400,9 +400,9 @@ function* startsTowards(work: Proof, from: Bottom, to: Bottom): Calculation<Star
       const own = other.axis.includes(a) && other.axis.includes(b);
       const period = own ? 360 : 360 / other.symmetryNumbers[far];
       const turn = degrees(torsionAngle(to.coordinates, ...other.torsion) - torsionAngle(from.coordinates, ...other.torsion));
-      return { other, period, turn: turn - period * Math.round(turn / period) };
+      return { other, own, period, turn: turn - period * Math.round(turn / period) };
     })
-    .filter(({ turn }) => Math.abs(turn) > TURNED)
+    .filter(({ own, turn }) => Math.abs(turn) > (own ? SAME_ANGLE : TURNED))
     .sort((p, q) => Math.abs(q.turn) - Math.abs(p.turn));
   for (const { other, turn, period } of differing)
     for (const direction of turn > 0 ? ([1, -1] as const) : ([-1, 1] as const)) {
@@ -465,7 +465,8 @@ function* climbed(
     work.evaluations += next.evaluations;
     const trapezoid = (direction * radians(step) * (at.torque + next.torque)) / 2;
     if (Math.abs(next.energy - at.energy - trapezoid) > LEAP) return { x: at.coordinates, follow: null };
-    if (direction * next.torque <= 0 && direction * at.torque > 0) {
+    // a shallow minimum is left within the first step
+    if (direction * next.torque <= 0 && (direction * at.torque > 0 || turned === step)) {
       const top = next.energy > at.energy ? next : at;
       return { x: top.coordinates, follow: turningMotion(top.coordinates, torsion[1], torsion[2], sides.b) };
     }
@@ -613,16 +614,18 @@ function* provedCrossing(
 
   const joined: Link[][] = [];
   const others: ProvedPoint[] = [];
+  if (beside.length > 0 && beside[0] !== beside[1]) {
+    // the way there and the way back climb from different sides
+    const way = (yield* wayBetween(work, beside[0], beside[1], wells)) ?? (yield* wayBetween(work, beside[1], beside[0], wells));
+    if (way && way.length > 0) joined.push(way);
+    work.tries = MOST_TRIES;
+  }
   for (const { x, follow } of starts) {
     const structure = yield* refined(work, x, 1, follow ? [follow] : []);
     const link = yield* linkAt(work, structure);
     const way: Link[] | null = link && beside.length > 0 ? yield* wayOver(work, link, beside, wells) : null;
     if (way) joined.push(way);
     else others.push(link ? ofWay(work, of, candidate, [link], false, wells) : unproved(work, of, candidate, structure));
-  }
-  if (beside.length > 0 && beside[0] !== beside[1]) {
-    const way = yield* wayBetween(work, beside[0], beside[1], wells);
-    if (way && way.length > 0) joined.push(way);
   }
   if (joined.length > 0) {
     const height = (way: readonly Link[]): number => Math.max(...way.map(({ structure }) => structure.energy));
