@@ -1,6 +1,14 @@
 /** Whether a profile can carry the numbers that follow from it. */
 import { TordialError } from '@tordial/geometry';
-import { type BranchEnd, PROFILE_SCHEMA, type ProfileCurve, type ProfileDocument, type ProfilePoint, profileCurve } from '@tordial/scan';
+import {
+  type BranchEnd,
+  isOpen,
+  PROFILE_SCHEMA,
+  type ProfileCurve,
+  type ProfileDocument,
+  type ProfilePoint,
+  profileCurve,
+} from '@tordial/scan';
 import { kcalPer } from './energy-unit.js';
 
 /** Widest gap between neighbouring points, degrees, whatever the step. */
@@ -21,6 +29,11 @@ export type ProfilePoints = Pick<ProfileDocument, 'points' | 'unit'>;
 export function soundCurve(document: ProfileDocument): ProfileCurve {
   if (document.schema !== PROFILE_SCHEMA)
     throw new TordialError('profile/schema', `a document of schema '${document.schema}': this version reads ${PROFILE_SCHEMA}`);
+  if (isOpen(document))
+    throw new TordialError(
+      'profile/not-covered',
+      'the profile covers a range of angles only: what follows from it needs the full turn; its wells and barriers stand in stationaryPoints',
+    );
   const { points } = document;
   for (const { angle, energy, torque } of points)
     if (!Number.isFinite(angle) || !Number.isFinite(energy) || !Number.isFinite(torque))

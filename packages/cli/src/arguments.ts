@@ -54,6 +54,15 @@ export function dielectric(text: string): { model: 'constant' | 'distance'; cons
   return { model, constant: positiveNumber(constant) };
 }
 
+/** Two angles, `FROM:TO`, degrees. */
+export function angleRange(text: string): [number, number] {
+  const words = text.split(':').map((word) => word.trim());
+  const [from, to] = words.map(Number);
+  if (words.length !== 2 || words.includes('') || !Number.isFinite(from) || !Number.isFinite(to) || from >= to)
+    throw new InvalidArgumentError('two angles are meant, the smaller one first, such as -60:60.');
+  return [from, to];
+}
+
 /** Degrees between grid angles: they must close on a full turn. */
 export function gridStep(text: string): number {
   const step = positiveNumber(text);

@@ -20,9 +20,22 @@ const WIDE = 420;
 const TICK_DISTANCE = 50;
 const TITLE_SIZE = 12;
 
-/** Position of an angle in [-180, 180], px. */
-export function angleScale({ left, right }: Pick<Box, 'left' | 'right'>): (angle: number) => number {
-  return (angle) => left + ((angle + 180) / 360) * (right - left);
+/** First and last angle of an axis, degrees. */
+export type AngleDomain = readonly [number, number];
+
+const FULL_TURN: AngleDomain = [-180, 180];
+
+/** Position of an angle within the domain, px. */
+export function angleScale({ left, right }: Pick<Box, 'left' | 'right'>, [from, to] = FULL_TURN): (angle: number) => number {
+  return (angle) => left + ((angle - from) / (to - from)) * (right - left);
+}
+
+/** Round angles within the domain, about as many as the width has room for. */
+function marksOf(plot: Pick<Box, 'left' | 'right'>, [from, to]: AngleDomain): number[] {
+  const most = plot.right - plot.left > WIDE ? 12 : 6;
+  const step = [1, 2, 5, 10, 15, 30, 60].find((one) => (to - from) / one <= most) ?? 60;
+  const first = Math.ceil(from / step - 1e-9);
+  return Array.from({ length: Math.floor(to / step + 1e-9) - first + 1 }, (_, n) => (first + n) * step + 0);
 }
 
 /**
@@ -45,10 +58,14 @@ export function energyScale(lowest: number, highest: number, plot: Pick<Box, 'to
 }
 
 /** Grid lines, frame and ticks. The angles are written below the frame unless `angles` is false. */
-export function frame(plot: Box, { y, ticks }: EnergyScale, theme: FigureTheme, { angles = true } = {}): string[] {
-  const x = angleScale(plot);
-  const step = plot.right - plot.left > WIDE ? 30 : 60;
-  const marked = Array.from({ length: 360 / step + 1 }, (_, n) => -180 + n * step);
+export function frame(
+  plot: Box,
+  { y, ticks }: EnergyScale,
+  theme: FigureTheme,
+  { angles = true, domain = FULL_TURN }: { readonly angles?: boolean; readonly domain?: AngleDomain } = {},
+): string[] {
+  const x = angleScale(plot, domain);
+  const marked = marksOf(plot, domain);
   const lines = [
     ...marked.map((angle) => ({ x1: x(angle), x2: x(angle), y1: plot.top, y2: plot.bottom })),
     ...ticks.map(({ value }) => ({ x1: plot.left, x2: plot.right, y1: y(value), y2: y(value) })),

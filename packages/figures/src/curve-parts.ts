@@ -9,7 +9,7 @@ export interface CurveSegment {
 }
 
 export interface CurveParts {
-  /** Runs over [-180, 180] that are smooth within, each of segments that follow on each other; a new one begins where the branch changes. */
+  /** Runs over the turn or the range that are smooth within, each of segments that follow on each other; a new one begins where the branch changes. */
   readonly smooth: readonly (readonly CurveSegment[])[];
   /** Where a branch is not known beyond its last point: its estimated continuation to the next branch. */
   readonly estimated: readonly CurveSegment[];
@@ -21,12 +21,13 @@ export interface CurveParts {
 const TOUCHING = 1e-3;
 
 /**
- * The curve of a profile cut for drawing over [-180, 180], relative energies. No smooth run goes over a change of branch: each branch ends where
+ * The curve of a profile cut for drawing over [-180, 180], or over the range of an `open` one, relative energies. No smooth run goes over a change of branch: each branch ends where
  * it meets the next one, and branches that do not meet are joined by a straight line. Throws what `profileCurve` throws for points that make no
  * curve.
  */
-export function curveParts(points: ProfileDocument['points']): CurveParts {
-  const { pieces } = profileCurve(points);
+export function curveParts(points: ProfileDocument['points'], { open = false } = {}): CurveParts {
+  const { pieces } = profileCurve(points, { open });
+  const wrapped = (segment: CurveSegment): CurveSegment[] => (open ? [segment] : withinTurn(segment));
   const zero = points[0].energy - points[0].relativeEnergy;
   const smooth: (CurveSegment & { readonly begins: boolean })[] = [];
   const estimated: CurveSegment[] = [];
@@ -47,7 +48,7 @@ export function curveParts(points: ProfileDocument['points']): CurveParts {
       estimated.push(straight(from, start.relativeEnergy, to, next.relativeEnergy));
       return;
     }
-    changes.push({ angle: angle > 180 ? angle - 360 : angle, energy });
+    changes.push({ angle: angle > 180 && !open ? angle - 360 : angle, energy });
     if (piece.to > 0) {
       const left = clipped(whole(piece), 0, piece.to);
       if (start.beyond) smooth.push({ ...left, begins: false });
@@ -108,7 +109,7 @@ function clipped(segment: CurveSegment, from: number, to: number): CurveSegment 
 }
 
 /** A segment that runs over 180 appears at both edges. */
-function wrapped(segment: CurveSegment): CurveSegment[] {
+function withinTurn(segment: CurveSegment): CurveSegment[] {
   if (segment.to <= 180) return [segment];
   if (segment.from >= 180) return [shifted(segment)];
   const [before, after] = split(segment, (180 - segment.from) / (segment.to - segment.from));

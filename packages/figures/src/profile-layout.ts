@@ -1,6 +1,6 @@
 import { atomicNumberOf, createMolecule, type Molecule, TordialError } from '@tordial/geometry';
-import type { DocumentMolecule, ProfileDocument, ProfileStationaryPoint } from '@tordial/scan';
-import { angleScale, type EnergyScale, energyScale } from './axes.js';
+import { type DocumentMolecule, isOpen, type ProfileDocument, type ProfileStationaryPoint } from '@tordial/scan';
+import { type AngleDomain, angleScale, type EnergyScale, energyScale } from './axes.js';
 import type { Box } from './boxes.js';
 import { type CurveParts, type CurveSegment, curveParts, segmentEnergy } from './curve-parts.js';
 import { degreesText, energyText } from './format.js';
@@ -50,6 +50,10 @@ export interface ProfileLayout {
   readonly title: string;
   readonly plot: Box;
   readonly x: (angle: number) => number;
+  /** First and last angle of the axis. */
+  readonly domain: AngleDomain;
+  /** Where an angle stands on the axis: twice where both edges are the same angle. */
+  readonly shown: (angle: number) => number[];
   readonly energies: EnergyScale;
   readonly parts: CurveParts;
   readonly marks: readonly Mark[];
@@ -85,7 +89,10 @@ export interface Projection {
 /** Lays a profile's figure out without drawing it. */
 export function profileLayout(document: ProfileDocument, options: ProfilePlotOptions): ProfileLayout {
   const { theme = LIGHT_THEME, width = 800 } = options;
-  const curve = curveParts(document.points);
+  const open = isOpen(document);
+  const domain: AngleDomain = open ? [document.points[0].angle, document.points[document.points.length - 1].angle] : [-180, 180];
+  const shownAngle = open ? (angle: number) => angle : onRightEdge;
+  const curve = curveParts(document.points, { open });
   const crossings = document.stationaryPoints.filter(({ kind }) => kind === 'crossing');
   // a crossing has a mark of its own
   const parts = {
@@ -94,7 +101,7 @@ export function profileLayout(document: ProfileDocument, options: ProfilePlotOpt
   };
   const segments = [...parts.smooth.flat(), ...parts.estimated];
 
-  const x = angleScale({ left: SIDE.left, right: width - SIDE.right });
+  const x = angleScale({ left: SIDE.left, right: width - SIDE.right }, domain);
   const molecule = moleculeOf(document.molecule);
   const drawable = document.stationaryPoints
     .map((point) => ({ point, layout: newmanLayout(molecule, document.rotor.torsion, point.coordinates) }))
@@ -177,6 +184,8 @@ export function profileLayout(document: ProfileDocument, options: ProfilePlotOpt
     title: options.title ?? (document.molecule.name || document.molecule.smiles),
     plot,
     x,
+    domain,
+    shown: open ? (angle) => [angle] : atBothEdges,
     energies: scale,
     parts,
     leftOut: document.stationaryPoints.length - shown.reduce((sum, { shared }) => sum + (shared ? 2 : 1), 0),
@@ -196,7 +205,7 @@ function moleculeOf({ elements, formalCharges, bonds, name }: DocumentMolecule):
 }
 
 /** -180 and 180 are the same angle; it stands at the right edge. */
-export function shownAngle(angle: number): number {
+function onRightEdge(angle: number): number {
   return angle < -EDGE ? angle + 360 : angle;
 }
 
@@ -232,7 +241,7 @@ function fewer(all: readonly Drawable[]): (Drawable & { readonly shared: boolean
     const half = MOST_PROJECTIONS / 2;
     chosen = [...wells.slice(0, half), ...maxima.slice(0, half)];
   }
-  return chosen.sort((p, q) => shownAngle(p.point.angle) - shownAngle(q.point.angle));
+  return chosen.sort((p, q) => onRightEdge(p.point.angle) - onRightEdge(q.point.angle));
 }
 
 function markBox(x: number, y: number): Box {

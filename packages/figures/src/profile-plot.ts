@@ -2,15 +2,7 @@ import type { ProfileDocument } from '@tordial/scan';
 import { angleTitle, energyTitle, frame } from './axes.js';
 import { curvePath } from './curve-parts.js';
 import { degreesText, energyText } from './format.js';
-import {
-  atBothEdges,
-  LABEL_SIZE,
-  LINE_HEIGHT,
-  type ProfileLayout,
-  type ProfilePlotOptions,
-  profileLayout,
-  SIDE,
-} from './profile-layout.js';
+import { LABEL_SIZE, LINE_HEIGHT, type ProfileLayout, type ProfilePlotOptions, profileLayout, SIDE } from './profile-layout.js';
 import { coordinate, element, escapeXml, svgDocument, textLine } from './svg.js';
 import { ESTIMATED, type LegendEntry, legend, type MarkKind, mark } from './symbols.js';
 import { fitText } from './text-width.js';
@@ -21,7 +13,7 @@ const TITLE_SIZE = 16;
 const VISIBLE = 8;
 
 /**
- * The figure of a torsion profile: the periodic curve over [-180, 180] with its points, wells and barriers with angle and energy, and a Newman
+ * The figure of a torsion profile: the periodic curve over [-180, 180], or an open one over its range, with its points, wells and barriers with angle and energy, and a Newman
  * projection of the actual geometry at each. No smooth curve is drawn across a change of branch; points that did not converge are crossed.
  *
  * Returns an SVG document. Throws `figure/profile` for a size without room, what `profileCurve` throws for points that make no
@@ -36,7 +28,7 @@ export function profilePlot(document: ProfileDocument, options: ProfilePlotOptio
       'g',
       { 'font-family': theme.fontFamily, 'font-size': LABEL_SIZE },
       ...header(document, figure),
-      ...frame(plot, figure.energies, theme),
+      ...frame(plot, figure.energies, theme, { domain: figure.domain }),
       angleTitle(plot, document.molecule, document.rotor.torsion, theme),
       energyTitle(plot, `Relative energy (${document.unit})`, theme),
       ...leaders(figure),
@@ -107,12 +99,12 @@ function curve({ parts, x, energies: { y }, theme }: ProfileLayout): string[] {
   ];
 }
 
-function marksOnCurve({ points }: ProfileDocument, { marks, parts, x, energies: { y }, theme }: ProfileLayout): string[] {
+function marksOnCurve({ points }: ProfileDocument, { marks, parts, x, shown: placesOf, energies: { y }, theme }: ProfileLayout): string[] {
   const scanned = points.flatMap(({ angle, relativeEnergy, converged }) =>
-    atBothEdges(angle).map((shown) => mark(converged ? 'point' : 'unconverged', x(shown), y(relativeEnergy), theme)),
+    placesOf(angle).map((shown) => mark(converged ? 'point' : 'unconverged', x(shown), y(relativeEnergy), theme)),
   );
   const stationary = marks.flatMap(({ point, y: height }) =>
-    atBothEdges(point.angle).flatMap((shown) => [
+    placesOf(point.angle).flatMap((shown) => [
       mark(point.kind, x(shown), height, theme),
       point.converged ? '' : mark('unconverged', x(shown), height, theme),
     ]),

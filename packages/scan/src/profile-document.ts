@@ -41,12 +41,14 @@ export interface DocumentRotor {
   readonly kind: string;
   /** Atoms that turn with the axis's first and second atom, the axis's own included. */
   readonly sides: readonly [readonly number[], readonly number[]];
+  /** Torsions of other rotors that symmetry makes equivalent: this profile is theirs too, at -phi where `mirrored`. */
+  readonly serves?: readonly { readonly torsion: readonly [number, number, number, number]; readonly mirrored: boolean }[];
   /** Torsion terms of the force field on the axis; empty for a potential that has none. */
   readonly parameters: readonly DocumentTorsionTerm[];
 }
 
 export interface ProfilePoint {
-  /** Degrees, ascending in [-180, 180). */
+  /** Degrees, ascending; in [-180, 180) where the profile covers the full turn. */
   readonly angle: number;
   /** Absolute, in the document's unit. */
   readonly energy: number;
@@ -64,6 +66,8 @@ export interface ProfilePoint {
   readonly before: BranchEnd | null;
   /** Slope of the branch that leads on, where two branches of one energy meet at this very angle; the torque when left out. */
   readonly torqueAfter?: number;
+  /** Angle of the point that this one is copied from, where only one period was scanned. */
+  readonly copyOf?: number;
   /** Angstrom, x0 y0 z0 x1 ... */
   readonly coordinates: readonly number[];
 }
@@ -129,6 +133,10 @@ export interface ProfileDocument {
     /** Degrees. */
     readonly step: number;
     readonly startAngle: number;
+    /** First and last angle asked for: the profile is open and covers this range or what of it could be reached. Absent for the full turn. */
+    readonly range?: readonly [number, number];
+    /** Degrees that were scanned; the rest of the turn is copied from them. Absent where all was scanned. */
+    readonly period?: number;
     readonly conformers: number;
     readonly seed: number;
     /** kcal/mol/angstrom. */
@@ -146,6 +154,7 @@ export interface DocumentDetails {
   readonly smiles: string;
   readonly fragments: number;
   readonly kind: string;
+  readonly serves?: DocumentRotor['serves'];
   readonly parameters: readonly DocumentTorsionTerm[];
   readonly unit: EnergyUnit;
   /** Settings beside those the scan itself knows. */
@@ -189,6 +198,7 @@ export function profileDocument(profile: Profile, details: DocumentDetails): Pro
       axis: [profile.torsion[1], profile.torsion[2]],
       kind: details.kind,
       sides: [Array.from(profile.sides.a), Array.from(profile.sides.b)],
+      ...(details.serves && details.serves.length > 0 ? { serves: details.serves } : {}),
       parameters: details.parameters,
     },
     unit,
@@ -199,12 +209,15 @@ export function profileDocument(profile: Profile, details: DocumentDetails): Pro
       beyond: branch(point.beyond),
       before: branch(point.before),
       ...(point.torqueAfter === undefined ? {} : { torqueAfter: absolute(point.torqueAfter) }),
+      ...(point.copyOf === undefined ? {} : { copyOf: rounded(point.copyOf) }),
     })),
     stationaryPoints: stationaryPoints.map((point) => ({ kind: point.kind, ...common(point) })),
     settings: {
       kind: profile.kind,
       step: profile.step,
       startAngle: profile.startAngle,
+      ...(profile.range ? { range: profile.range } : {}),
+      ...(profile.period === null ? {} : { period: profile.period }),
       tolerance: profile.tolerance,
       ...details.settings,
     },
@@ -247,6 +260,11 @@ export function withProvedPoints(
 
 function endOf({ well, angle, energy }: PathEnd, factor: number): PathEnd {
   return { well, angle: rounded(angle), energy: rounded(energy * factor) };
+}
+
+/** Whether a profile ends at its first and last point instead of going round. */
+export function isOpen({ settings }: Pick<ProfileDocument, 'settings'>): boolean {
+  return settings.range !== undefined;
 }
 
 /** To six decimals, without a negative zero. */

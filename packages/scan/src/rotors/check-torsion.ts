@@ -41,7 +41,7 @@ export function checkTorsion(molecule: Molecule, atoms: readonly number[], { rin
   if (!rings && sidesOfBond(molecule, j, k) === null)
     throw new TordialError(
       'torsion/ring',
-      `torsion ${written}: the bond between ${j} and ${k} is part of a ring, so that its sides cannot turn freely; drive it over a range of angles (--range FROM:TO, such as --range=-60:60; \`range\` in the library); ${suggestions(molecule, atoms)}`,
+      `torsion ${written}: the bond between ${j} and ${k} is part of a ring, so that its sides cannot turn freely; drive it over a range of angles (--range FROM:TO, such as --range -60:60; \`range\` in the library); ${suggestions(molecule, atoms)}`,
       { atom: j, bond: bondBetween(molecule, j, k) },
     );
   const linear = [j, k].find((atom) => atomShape(molecule, atom) === 'linear');
