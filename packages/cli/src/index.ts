@@ -3,6 +3,8 @@ export * from '@tordial/figures';
 export * from '@tordial/forcefield';
 export * from '@tordial/geometry';
 export * from '@tordial/scan';
+export * from './profile-analysis.js';
 export { readProfile } from './profile-reader.js';
+export * from './proved-points.js';
 export * from './torsion-profile.js';
 export { VERSION } from './version.js';

@@ -21,6 +21,30 @@ const note = z.object({
 });
 const branchEnd = z.object({ energy: z.number(), torque: z.number() }).nullable();
 
+const pathEnd = z.object({ well: index.nullable(), angle: z.number(), energy: z.number() });
+const provedPoint = z.object({
+  of: index.describe('index among stationaryPoints'),
+  kind: z.enum(['well', 'barrier', 'crossing']),
+  verdict: z
+    .enum(['minimum', 'merged', 'saddle', 'other saddle', 'higher order', 'not found'])
+    .describe('what the point is; minimum and saddle are what a well and a barrier should be'),
+  order: z.int().min(0).describe('negative eigenvalues of the projected Hessian'),
+  angle: z.number(),
+  energy: z.number(),
+  relativeEnergy: z.number().describe('above the lowest proved point'),
+  gradientMax: z.number().describe('kcal/mol/angstrom'),
+  converged: z.boolean(),
+  moved: z.number().describe("root mean square distance from the profile's geometry, angstrom"),
+  overlap: z.number().nullable().describe('of the negative mode with the turn of the rotor, 0 to 1'),
+  motion: z.object({ kind: z.enum(['rotor', 'other rotor', 'inversion', 'other']), atoms: z.array(index), overlap: z.number() }).nullable(),
+  ends: z.tuple([pathEnd, pathEnd]).nullable().describe('where both paths down end'),
+  inverts: z.array(index).describe('nitrogens that turn inside out between the ends'),
+  links: z.int().min(0).describe('saddles on the way between the wells, this one the highest; 0 where they are not joined'),
+  sameAs: index.nullable().describe('first well that is the same minimum with equivalent atoms exchanged'),
+  frequencies: z.array(z.number()).describe('cm-1, imaginary ones negative'),
+  coordinates: z.array(z.number()),
+});
+
 /** The shape of `tordial/profile/1`; docs/schemas/profile-1.json is made from it. */
 export const profileSchema = z.object({
   schema: z.literal(PROFILE_SCHEMA),
@@ -83,6 +107,8 @@ export const profileSchema = z.object({
       coordinates: z.array(z.number()),
     }),
   ),
+  proved: z.array(provedPoint).optional(),
+  analysis: z.record(z.string(), z.unknown()).optional().describe('what followed from the profile when it was written'),
   settings: z.looseObject({
     kind: z.enum(['relaxed', 'rigid']),
     step: z.number().positive(),
@@ -137,7 +163,7 @@ function parseJson(text: string): unknown {
 }
 
 /** What a schema cannot say: every list of the document speaks of the same atoms. */
-function checkSizes({ molecule, rotor, points, stationaryPoints }: ProfileDocument): void {
+function checkSizes({ molecule, rotor, points, stationaryPoints, proved = [] }: ProfileDocument): void {
   const atoms = molecule.elements.length;
   const wrong = (what: string): TordialError =>
     new TordialError('document/field', `the profile document is wrong at ${what}: it does not fit ${atoms} atoms`);
@@ -147,6 +173,10 @@ function checkSizes({ molecule, rotor, points, stationaryPoints }: ProfileDocume
   for (const [name, list] of [
     ['points', points],
     ['stationaryPoints', stationaryPoints],
+    ['proved', proved],
   ] as const)
     for (const [n, { coordinates }] of list.entries()) if (coordinates.length !== 3 * atoms) throw wrong(`${name}.${n}.coordinates`);
+  for (const [n, { of }] of proved.entries())
+    if (!stationaryPoints[of])
+      throw new TordialError('document/field', `the profile document is wrong at proved.${n}.of: there is no stationary point ${of}`);
 }

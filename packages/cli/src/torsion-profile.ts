@@ -12,17 +12,16 @@ import {
 } from '@tordial/geometry';
 import {
   type Abortable,
-  type Calculation,
   checkTorsion,
   conformerSearch,
   type EnergyUnit,
-  type Potential,
   type ProfileDocument,
   profileDocument,
   rotorOfTorsion,
   rotorScan,
   type ScanProgress,
 } from '@tordial/scan';
+import { driveInTurns } from './drive-in-turns.js';
 import { VERSION } from './version.js';
 
 export interface TorsionProfileOptions {
@@ -123,22 +122,4 @@ function severalFragments(count: number): Note[] {
   if (count === 1) return [];
   const message = `the input holds ${count} separate fragments; all of them were kept, and their mutual energy is part of the profile`;
   return [{ code: 'molecule/fragments', message }];
-}
-
-/** Milliseconds of work between two turns of the event loop. */
-const TURN = 40;
-
-/** Runs a calculation on a potential in this thread, giving the event loop a turn now and then. */
-async function driveInTurns<T>(calculation: Calculation<T>, potential: Potential, signal?: Abortable): Promise<T> {
-  let pause = performance.now() + TURN;
-  let step = calculation.next(0);
-  while (!step.done) {
-    if (performance.now() > pause) {
-      await new Promise<void>((resolve) => setTimeout(resolve, 0));
-      signal?.throwIfAborted();
-      pause = performance.now() + TURN;
-    }
-    step = calculation.next(potential.evaluate(step.value.x, step.value.gradient));
-  }
-  return step.value;
 }
