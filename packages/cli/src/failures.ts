@@ -2,7 +2,8 @@
 import { TordialError } from '@tordial/geometry/errors';
 
 /** Codes that tell of a wrong request rather than of a record that cannot be done. */
-const USAGE = /^(usage|file|output|torsion)\/|^scan\/(grid|linear)/;
+const USAGE =
+  /^(usage|file|output|torsion|document|reference)\/|^fit\/(order|input|folds|weights|restraint|type)|^engine\/config|^scan\/(grid|range|period|linear)/;
 
 /** 2 for a wrong request, 1 for a record that could not be done. */
 export function exitCodeOf(error: unknown): 1 | 2 {

@@ -6,6 +6,7 @@ import { Command, CommanderError } from 'commander';
 import { describeAnalyse } from './commands/analyse.js';
 import { describeBuild } from './commands/build.js';
 import { describeEnergy } from './commands/energy.js';
+import { describeFit } from './commands/fit.js';
 import { describeProfile } from './commands/profile.js';
 import { describeRotors } from './commands/rotors.js';
 import { describeStrain } from './commands/strain.js';
@@ -35,7 +36,7 @@ Example:
 
 MMFF94 energies are estimates; decisions about safety, stability or release need experiment and the responsible specialist.`,
     );
-  for (const describe of [describeRotors, describeEnergy, describeBuild, describeProfile, describeAnalyse, describeStrain])
+  for (const describe of [describeRotors, describeEnergy, describeBuild, describeProfile, describeFit, describeAnalyse, describeStrain])
     describe(program, finish);
   for (const command of [program, ...program.commands]) command.exitOverride().showHelpAfterError('(--help lists the options)');
 

@@ -2,23 +2,8 @@
 import { TordialError } from '@tordial/geometry';
 import { PROFILE_SCHEMA, type ProfileDocument } from '@tordial/scan';
 import { z } from 'zod';
+import { documentMolecule, index, note, readDocument, torsion } from './document-parts.js';
 
-const index = z.int().min(0);
-const torsion = z.tuple([index, index, index, index]);
-const note = z.object({
-  code: z.string(),
-  message: z.string(),
-  place: z
-    .object({
-      file: z.string().optional(),
-      record: z.int().optional(),
-      line: z.int().optional(),
-      position: z.int().optional(),
-      atom: index.optional(),
-      bond: index.optional(),
-    })
-    .optional(),
-});
 const branchEnd = z.object({ energy: z.number(), torque: z.number() }).nullable();
 
 const pathEnd = z.object({ well: index.nullable(), angle: z.number(), energy: z.number() });
@@ -48,19 +33,16 @@ const provedPoint = z.object({
 /** The shape of `tordial/profile/1`; docs/schemas/profile-1.json is made from it. */
 export const profileSchema = z.object({
   schema: z.literal(PROFILE_SCHEMA),
-  molecule: z.object({
-    name: z.string(),
-    smiles: z.string().describe('canonical SMILES of what was scanned'),
-    elements: z.array(z.string()).min(4).describe('element symbols in the order of the input, added hydrogens last'),
-    formalCharges: z.array(z.int()),
-    bonds: z.array(z.tuple([index, index, z.int().min(1).max(3)])).describe('rows of atom, atom, order'),
-    fragments: z.int().min(1),
-  }),
+  molecule: documentMolecule,
   rotor: z.object({
     torsion: torsion.describe('the four atoms whose torsion angle is driven, 0-based'),
     axis: z.tuple([index, index]),
     kind: z.string(),
     sides: z.tuple([z.array(index), z.array(index)]).describe('atoms that turn with either axis atom'),
+    serves: z
+      .array(z.object({ torsion, mirrored: z.boolean() }))
+      .optional()
+      .describe('torsions of equivalent rotors, whose profile this is too (at -phi where mirrored)'),
     parameters: z.array(
       z.object({
         atoms: torsion,
@@ -76,7 +58,7 @@ export const profileSchema = z.object({
   points: z
     .array(
       z.object({
-        angle: z.number().min(-180).lt(180).describe('degree'),
+        angle: z.number().min(-360).max(360).describe('degree, ascending; in [-180, 180) for the full turn'),
         energy: z.number().describe('absolute'),
         relativeEnergy: z.number().describe('above the lowest well'),
         torque: z.number().describe('dE/dphi, unit per radian'),
@@ -92,6 +74,7 @@ export const profileSchema = z.object({
           .number()
           .optional()
           .describe('slope of the branch that leads on, where two branches of one energy meet at this very angle'),
+        copyOf: z.number().optional().describe('angle of the point that this one is copied from, where one period was scanned'),
         coordinates: z.array(z.number()).describe('angstrom, x0 y0 z0 x1 ...'),
       }),
     )
@@ -113,6 +96,8 @@ export const profileSchema = z.object({
     kind: z.enum(['relaxed', 'rigid']),
     step: z.number().positive(),
     startAngle: z.number(),
+    range: z.tuple([z.number(), z.number()]).optional().describe('first and last angle asked for, of an open profile'),
+    period: z.number().positive().optional().describe('degrees that were scanned, the rest copied from them'),
     conformers: z.int().min(0),
     seed: z.int().min(0),
     tolerance: z.number().positive(),
@@ -126,44 +111,13 @@ export const profileSchema = z.object({
  * kind of document, `document/version` for a newer major version, `document/field` naming the first field that is wrong.
  */
 export function readProfile(input: unknown): ProfileDocument {
-  const value = typeof input === 'string' ? parseJson(input) : input;
-  const schema = typeof value === 'object' && value !== null && 'schema' in value ? String(value.schema) : '';
-  const match = /^tordial\/profile\/(\d+)$/.exec(schema);
-  if (!match)
-    throw new TordialError(
-      'document/schema',
-      `this is no profile document: its "schema" is ${JSON.stringify(schema)}, not "${PROFILE_SCHEMA}"`,
-    );
-  if (match[1] !== '1')
-    throw new TordialError(
-      'document/version',
-      `the document is of version ${match[1]} and this version of tordial reads version 1; use a newer tordial`,
-    );
-  const result = profileSchema.safeParse(value);
-  if (!result.success) {
-    const [{ path, message }] = result.error.issues;
-    throw new TordialError('document/field', `the profile document is wrong at ${path.join('.') || 'its top'}: ${message}`);
-  }
-  const document: ProfileDocument = result.data;
+  const document: ProfileDocument = readDocument(input, 'profile', profileSchema);
   checkSizes(document);
   return document;
 }
 
-function parseJson(text: string): unknown {
-  try {
-    return JSON.parse(text);
-  } catch (cause) {
-    throw new TordialError(
-      'document/json',
-      `the document is not JSON: ${cause instanceof Error ? cause.message : String(cause)}`,
-      {},
-      { cause },
-    );
-  }
-}
-
 /** What a schema cannot say: every list of the document speaks of the same atoms. */
-function checkSizes({ molecule, rotor, points, stationaryPoints, proved = [] }: ProfileDocument): void {
+function checkSizes({ molecule, rotor, points, stationaryPoints, proved = [], settings }: ProfileDocument): void {
   const atoms = molecule.elements.length;
   const wrong = (what: string): TordialError =>
     new TordialError('document/field', `the profile document is wrong at ${what}: it does not fit ${atoms} atoms`);
@@ -176,6 +130,12 @@ function checkSizes({ molecule, rotor, points, stationaryPoints, proved = [] }: 
     ['proved', proved],
   ] as const)
     for (const [n, { coordinates }] of list.entries()) if (coordinates.length !== 3 * atoms) throw wrong(`${name}.${n}.coordinates`);
+  const outside = points.findIndex(({ angle }) => settings.range === undefined && !(angle >= -180 && angle < 180));
+  if (outside >= 0)
+    throw new TordialError(
+      'document/field',
+      `the profile document is wrong at points.${outside}.angle: a full turn counts angles from -180 up to 180, without it`,
+    );
   for (const [n, { of }] of proved.entries())
     if (!stationaryPoints[of])
       throw new TordialError('document/field', `the profile document is wrong at proved.${n}.of: there is no stationary point ${of}`);

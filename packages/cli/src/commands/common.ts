@@ -8,20 +8,23 @@ export type Finish = (exitCode: number) => void;
 export interface InputFlags {
   largestFragment?: boolean;
   maxAtoms: number;
+  maxRings: number;
+  maxRecord: number;
 }
 
 export function addInputOptions(command: Command): Command {
   return command
     .option('--largest-fragment', 'keep only the largest organic fragment of each record')
-    .addOption(
-      new Option('--max-atoms <n>', 'largest record that is taken, atoms with hydrogens').argParser(positiveInteger).default(1000),
-    );
+    .addOption(new Option('--max-atoms <n>', 'largest record that is taken, atoms with hydrogens').argParser(positiveInteger).default(1000))
+    .addOption(new Option('--max-rings <n>', 'most rings of a record that is taken').argParser(positiveInteger).default(200))
+    .addOption(new Option('--max-record <n>', 'longest record that is taken, characters').argParser(positiveInteger).default(2_000_000));
 }
 
 /** Options that choose the potential, shared by every command that computes an energy. */
 export interface PotentialFlags {
   forceField: 'mmff94' | 'mmff94s';
   dielectric?: { model: 'constant' | 'distance'; constant: number };
+  torsions?: string;
 }
 
 export interface CommonFlags extends PotentialFlags, InputFlags {
@@ -37,7 +40,8 @@ export function addPotentialOptions(command: Command): Command {
       new Option('--dielectric <model:constant>', 'constant:C or distance:C')
         .argParser(dielectric)
         .default({ model: 'constant', constant: 1 }, 'constant:1'),
-    );
+    )
+    .option('--torsions <file>', 'fit.json whose torsion series stand in place of the terms they were fitted to');
 }
 
 export function addCommonOptions(command: Command): Command {

@@ -63,7 +63,7 @@ function structuresOf(molecule: Molecule, flags: BuildFlags): { structures: Stru
   const structures = found.conformers.map(({ coordinates, energy, relativeEnergy }) => ({
     coordinates,
     properties: new Map([
-      [`${potential.variant} energy (${flags.unit})`, (energy * factor).toFixed(6)],
+      [`${potential.label} energy (${flags.unit})`, (energy * factor).toFixed(6)],
       [`relative energy (${flags.unit})`, (relativeEnergy * factor).toFixed(6)],
     ]),
   }));

@@ -1,15 +1,18 @@
 /** `tordial profile`: scans, and the files that show them. */
 import { join } from 'node:path';
+import { type EngineConfig, openEngine } from '@tordial/engines';
 import { geometriesFor, type MolecularRecord, type Molecule, type Note, TordialError } from '@tordial/geometry';
-import { checkTorsion, findRotors, type ProfileDocument, torsionOfAxis } from '@tordial/scan';
+import { checkTorsion, findRotors, isOpen, type ProfileDocument, torsionOfAxis } from '@tordial/scan';
 import type { ProfileFlags } from '../commands/profile.js';
+import { engineProfile } from '../engine-profile.js';
 import { analyseDocument, type DocumentAnalysis } from '../profile-analysis.js';
 import { provedPoints } from '../proved-points.js';
 import { torsionProfile } from '../torsion-profile.js';
 import { eachRecord, tell } from './each-record.js';
+import { readEngineConfig } from './engine-file.js';
 import { readFrames } from './input.js';
 import { prepareFolder, writeFiles } from './output.js';
-import { variantOf } from './potential.js';
+import { overridesOf, variantOf } from './potential.js';
 import { profileFiles } from './profile-files.js';
 import { profileSummary } from './profile-summary.js';
 import { progress } from './progress.js';
@@ -24,6 +27,9 @@ export async function scanProfiles(argument: string, flags: ProfileFlags): Promi
     );
   if (!flags.output && !flags.json)
     throw new TordialError('usage/output', 'say where the profile goes: -o FOLDER for files with the figure, --json for standard output');
+  if (flags.singlePoints && !flags.engine)
+    throw new TordialError('usage/engine', '--single-points says how an engine is used; name one with --engine CONFIG');
+  const config = flags.engine === undefined ? undefined : readEngineConfig(flags.engine);
   if (flags.output) prepareFolder(flags.output);
 
   // each profile gets a folder of its own as soon as there is more than one
@@ -32,7 +38,10 @@ export async function scanProfiles(argument: string, flags: ProfileFlags): Promi
     const torsions = torsionsOf(record.molecule, flags);
     const home = alone ? [] : [folderName(record.molecule, index, folders)];
     for (const torsion of torsions) {
-      const { document, analysis } = await completed(await scan(record, torsion, flags, `${label} ${torsion[1]}-${torsion[2]}`), flags);
+      const { document, analysis } = await completed(
+        await scan(record, torsion, flags, config, `${label} ${torsion[1]}-${torsion[2]}`),
+        flags,
+      );
       tell(document.notes, label);
       if (flags.json) process.stdout.write(`${JSON.stringify(document)}\n`);
       if (!flags.output) continue;
@@ -59,43 +68,63 @@ async function completed(
       return null;
     }
   };
-  const proved = flags.prove && !flags.rigid ? await attempt(() => provedPoints(scanned)) : null;
+  const proved = flags.prove && !flags.rigid && !flags.engine && !isOpen(scanned) ? await attempt(() => provedPoints(scanned)) : null;
   const document = proved ?? scanned;
-  const analysis = await attempt(() => analyseDocument(document));
+  // populations and rates need the full turn
+  const analysis = isOpen(document) ? null : await attempt(() => analyseDocument(document));
   return { document: { ...document, notes: [...document.notes, ...notes], ...(analysis ? { analysis: { ...analysis } } : {}) }, analysis };
 }
 
-async function scan(record: MolecularRecord, torsion: Torsion, flags: ProfileFlags, label: string): Promise<ProfileDocument> {
+async function scan(
+  record: MolecularRecord,
+  torsion: Torsion,
+  flags: ProfileFlags,
+  config: EngineConfig | undefined,
+  label: string,
+): Promise<ProfileDocument> {
   const { molecule } = record;
+  const { overrides, notes } = overridesOf(molecule, flags);
   const given = record.coordinates ? [record.coordinates] : [];
   const shown = progress(label);
   const stop = new AbortController();
   const interrupt = (): void => stop.abort(new TordialError('usage/interrupted', 'interrupted; what was finished before is written'));
   process.once('SIGINT', interrupt);
   try {
-    return await torsionProfile(molecule, torsion, {
+    const profile = await torsionProfile(molecule, torsion, {
       forceField: variantOf(flags),
       dielectric: flags.dielectric,
       step: flags.step,
       startAngle: flags.startAngle,
+      range: flags.range,
+      periodic: flags.periodic,
       conformers: flags.conformers,
       starts: flags.geometry ? geometriesFor(molecule, readFrames(flags.geometry)) : given,
       seed: flags.seed,
       tolerance: flags.tolerance,
       rigid: flags.rigid,
       unit: flags.unit,
-      notes: record.notes,
+      notes: [...record.notes, ...notes],
+      torsionOverrides: overrides,
+      onProgress: ({ done, total }) => shown.update(done, total),
+      signal: stop.signal,
+    });
+    if (!config) return profile;
+    const engine = openEngine(molecule, config, stop.signal);
+    return await engineProfile(profile, engine, config, {
+      singlePoints: flags.singlePoints,
       onProgress: ({ done, total }) => shown.update(done, total),
       signal: stop.signal,
     });
   } finally {
+    // an engine that still works on other angles when one has failed is called off
+    stop.abort(new TordialError('usage/interrupted', 'another angle has failed'));
     process.removeListener('SIGINT', interrupt);
     shown.stop();
   }
 }
 
 function torsionsOf(molecule: Molecule, flags: ProfileFlags): Torsion[] {
-  if (flags.torsion) return [checkTorsion(molecule, flags.torsion)];
+  if (flags.torsion) return [checkTorsion(molecule, flags.torsion, { rings: flags.range !== undefined })];
   if (flags.rotor) return [torsionOfAxis(molecule, ...flags.rotor)];
   const rotors = findRotors(molecule);
   if (rotors.length === 0) throw new TordialError('torsion/none', 'the molecule has no bond that turns');
