@@ -178,7 +178,10 @@ describe.concurrent('tordial profile', () => {
     const { exitCode, stdout, stderr } = await tordial(['profile', 'CO.O', '--rotor', '0-1', '--step', '120', '--json']);
     expect(exitCode).toBe(0);
     expect(stderr).toMatch(/2 separate fragments/);
-    expect(JSON.parse(stdout)).toMatchObject({ molecule: { fragments: 2 }, notes: [{ code: 'molecule/fragments' }] });
+    expect(JSON.parse(stdout)).toMatchObject({
+      molecule: { fragments: 2 },
+      notes: expect.arrayContaining([expect.objectContaining({ code: 'molecule/fragments' })]),
+    });
   });
 
   it('starts from given coordinates, rigid or relaxed', async () => {

@@ -56,3 +56,28 @@ describe('XYZ', () => {
     ).toThrow(/finite/);
   });
 });
+
+describe('geometries of a molecule', () => {
+  it('must have the configuration that it states', () => {
+    const molecule = moleculeFromSmiles('[C@](F)(Cl)(Br)I');
+    const corners = [
+      [0, 0, 0],
+      [1, 1, 1],
+      [1, -1, -1],
+      [-1, 1, -1],
+      [-1, -1, 1],
+    ].flat();
+    const mirrored = corners.map((value, k) => (k % 3 === 0 ? -value : value));
+    const framesOf = (x: number[]) => readXyz(writeXyz(molecule, Float64Array.from(x)));
+    const taken = [corners, mirrored].filter((x) => {
+      try {
+        return geometriesFor(molecule, framesOf(x)).length === 1;
+      } catch (error) {
+        expect(error).toMatchObject({ code: 'xyz/stereo', place: { record: 1, line: 1, atom: 0 } });
+        return false;
+      }
+    });
+    expect(taken).toHaveLength(1);
+    expect(geometriesFor(moleculeFromSmiles('C(F)(Cl)(Br)I'), framesOf(mirrored))).toHaveLength(1);
+  });
+});

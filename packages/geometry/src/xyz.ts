@@ -2,6 +2,7 @@
 import { atomicNumberOf, elementSymbol } from './elements.js';
 import { TordialError } from './errors.js';
 import type { Coordinates, Molecule } from './molecule.js';
+import { perceiveStereo } from './stereo-perception.js';
 
 export interface XyzFrame {
   /** Atomic number of each atom. */
@@ -70,7 +71,8 @@ export function readXyz(text: string): XyzFrame[] {
 
 /**
  * Coordinates of each frame as geometries of a molecule. Throws `xyz/atoms` naming frame and atom where the elements do not follow the
- * molecule's atom order.
+ * molecule's atom order, `xyz/stereo` where a stereocentre or an allene has the opposite of the configuration that the molecule states: that is
+ * another molecule. Double bonds may have turned.
  */
 export function geometriesFor(molecule: Molecule, frames: readonly XyzFrame[]): Coordinates[] {
   return frames.map(({ elements, coordinates, line }, n) => {
@@ -91,6 +93,21 @@ export function geometriesFor(molecule: Molecule, frames: readonly XyzFrame[]): 
           'the atoms must follow the order of the molecule, added hydrogens last',
         { record: n + 1, line: line + 2 + wrong, atom: wrong },
       );
+    checkConfiguration(molecule, coordinates, n, line);
     return coordinates;
   });
+}
+
+function checkConfiguration(molecule: Molecule, coordinates: Coordinates, frame: number, line: number): void {
+  const seen = perceiveStereo(molecule, coordinates);
+  const { tetrahedral, axes } = molecule.stereo;
+  const centre = tetrahedral.find(({ sign }, n) => sign * seen.tetrahedral[n].sign < 0);
+  const axis = axes.find(({ sign }, n) => sign * seen.axes[n].sign < 0);
+  if (!centre && !axis) return;
+  const what = centre ? `atom ${centre.atom}` : `the axis ${axis?.a}-${axis?.b}`;
+  throw new TordialError(
+    'xyz/stereo',
+    `frame ${frame + 1}: ${what} has the opposite of the configuration that the molecule states; mirror the frame or correct the molecule`,
+    { record: frame + 1, line, ...(centre ? { atom: centre.atom } : {}) },
+  );
 }

@@ -21,14 +21,14 @@ export interface RecordPosition {
  */
 export async function eachRecord(
   argument: string,
-  { largestFragment: reduce = false, maxAtoms }: InputFlags,
+  { largestFragment: reduce = false, maxAtoms, maxRings, maxRecord }: InputFlags,
   work: (record: MolecularRecord, position: RecordPosition) => Promise<void> | void,
   failed: (error: TordialError, index: number, name: string) => void = () => undefined,
 ): Promise<number> {
   let index = 0;
   let failures = 0;
   let misfits = 0;
-  const records = readRecords(argument, { atoms: maxAtoms });
+  const records = readRecords(argument, { atoms: maxAtoms, rings: maxRings, recordLength: maxRecord });
   let current = await records.next();
   while (!current.done) {
     const record = current.value;

@@ -1,7 +1,7 @@
 /** What MOLECULE on the command line stands for, as a stream of records; one that cannot be read comes as its error, and the rest goes on. */
 import { createReadStream, existsSync, readFileSync, statSync } from 'node:fs';
 import type { Readable } from 'node:stream';
-import { createGunzip } from 'node:zlib';
+import { createGunzip, gunzipSync } from 'node:zlib';
 import { type Limits, type MolecularRecord, moleculeFromSmiles, readXyz, sdfRecords, smilesRecords, TordialError } from '@tordial/geometry';
 
 /** A record, or what is wrong with it. */
@@ -78,17 +78,30 @@ async function* chunksOf(stream: Readable, file?: string): AsyncGenerator<string
   try {
     for await (const chunk of stream) yield String(chunk);
   } catch (cause) {
-    throw new TordialError(
-      'file/read',
-      `${file ?? 'standard input'} cannot be read (${cause instanceof Error ? cause.message : String(cause)})`,
-      { file },
-      { cause },
-    );
+    throw unreadable(file, cause);
   }
 }
 
-/** The first frame of an XYZ file, in the atom order of the molecule. Throws `file/missing`, and as `readXyz` and `geometriesFor` do. */
+function unreadable(file: string | undefined, cause: unknown): TordialError {
+  const reason = cause instanceof Error ? cause.message : String(cause);
+  return new TordialError('file/read', `${file ?? 'standard input'} cannot be read (${reason})`, { file }, { cause });
+}
+
+/** The frames of an XYZ file, gzipped or not. Throws `file/missing`, `file/read`, and as `readXyz` does. */
 export function readFrames(path: string): ReturnType<typeof readXyz> {
   if (!existsSync(path)) throw new TordialError('file/missing', `there is no file ${path}`, { file: path });
-  return readXyz(readFileSync(path, 'utf8'));
+  let text: string;
+  try {
+    const content = readFileSync(path);
+    text = (path.endsWith('.gz') ? gunzipSync(content) : content).toString('utf8');
+  } catch (cause) {
+    throw unreadable(path, cause);
+  }
+  try {
+    return readXyz(text);
+  } catch (error) {
+    throw error instanceof TordialError
+      ? new TordialError(error.code, error.message, { file: path, ...error.place }, { cause: error })
+      : error;
+  }
 }

@@ -1,4 +1,5 @@
 /** A profile as tables for people: its stationary points, and what follows from them at room temperature. */
+import { rotamerLabel } from '@tordial/analysis';
 import { klynePrelogName, type ProfileDocument } from '@tordial/scan';
 import type { DocumentAnalysis } from '../profile-analysis.js';
 import { analysisTables } from './analysis-tables.js';
@@ -14,5 +15,30 @@ export function profileSummary(document: ProfileDocument, analysis: DocumentAnal
     `${kind === 'well' ? klynePrelogName(angle) : ''}${converged ? '' : ' (not converged)'}`,
   ]);
   const points = table(['point', 'angle (deg)', `energy (${unit})`, 'name'], rows);
-  return `${heading}${points}${analysis ? `\n${analysisTables(document, analysis, unit)}` : ''}`;
+  return `${heading}${served(rotor)}${points}${analysis ? merged(document, analysis) : ''}${analysis ? `\n${analysisTables(document, analysis, unit)}` : ''}`;
+}
+
+/** Which other rotors the profile stands for. */
+function served({ serves = [] }: ProfileDocument['rotor']): string {
+  if (serves.length === 0) return '';
+  const rotors = serves.map(({ torsion, mirrored }) => `${torsion.join('-')}${mirrored ? ' (at the opposite angle)' : ''}`);
+  return `stands for the equivalent ${rotors.length === 1 ? 'rotor' : 'rotors'} ${rotors.join(', ')} too\n`;
+}
+
+/** Wells that are one with equal atoms exchanged, or mirror images, merged with their number. */
+function merged({ stationaryPoints, unit }: ProfileDocument, { electronic: { rotamers } }: DocumentAnalysis): string {
+  const species = new Map<number, (typeof rotamers)[number][]>();
+  for (const well of rotamers) species.set(well.species, [...(species.get(well.species) ?? []), well]);
+  if (species.size === rotamers.length) return '';
+  const rows = [...species.values()].map((wells) => {
+    const [first] = wells;
+    const names = new Set(wells.map((well) => rotamerLabel(well, true)));
+    return [
+      [...names].join(', '),
+      `${wells.length}`,
+      stationaryPoints[first.stationaryPoints[0]].relativeEnergy.toFixed(2),
+      wells.map(({ angle }) => angle.toFixed(1)).join(', '),
+    ];
+  });
+  return `\n${table(['distinct well', 'degeneracy', `energy (${unit})`, 'angles (deg)'], rows)}`;
 }
