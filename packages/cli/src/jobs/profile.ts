@@ -68,7 +68,9 @@ async function completed(
       return null;
     }
   };
-  const proved = flags.prove && !flags.rigid && !flags.engine && !isOpen(scanned) ? await attempt(() => provedPoints(scanned)) : null;
+  // a second fragment wanders on a surface too flat for its minima to be told apart, and a rate of rotation means nothing beside it
+  const provable = !flags.rigid && !flags.engine && !isOpen(scanned) && scanned.molecule.fragments === 1;
+  const proved = flags.prove && provable ? await attempt(() => provedPoints(scanned)) : null;
   const document = proved ?? scanned;
   // populations and rates need the full turn
   const analysis = isOpen(document) ? null : await attempt(() => analyseDocument(document));
