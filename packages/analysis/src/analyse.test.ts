@@ -279,6 +279,7 @@ describe('no number where none is justified', () => {
       {},
       'profile/not-converged',
     ],
+    ['range', { ...document, settings: { ...document.settings, range: [-180, 170] as const } }, {}, 'profile/not-covered'],
     ['gap', { ...document, points: document.points.filter((_, n) => n < 30) }, {}, 'profile/not-covered'],
     ['NaN', { ...document, points: document.points.map((p, n) => (n === 3 ? { ...p, energy: Number.NaN } : p)) }, {}, 'profile/value'],
     [

@@ -121,6 +121,14 @@ it('joins branches that never meet by a straight line', () => {
   ]);
 });
 
-function ranges(runs: readonly (readonly { from: number; to: number }[])[]): [number, number][] {
-  return runs.map((run) => [run[0].from, run[run.length - 1].to]);
-}
+it('keeps an open curve open: one run from its first to its last point, also beyond 180', () => {
+  for (const shift of [0, 240]) {
+    const range = points(10, -180)
+      .slice(6, 19)
+      .map((point) => ({ ...point, angle: point.angle + shift }));
+    const { smooth, estimated, changes } = curveParts(range, { open: true });
+    expect([smooth.length, estimated.length, changes.length]).toEqual([1, 0, 0]);
+    expect([smooth[0][0].from, smooth[0][11].to]).toEqual([-120 + shift, 0 + shift]);
+    expect(smooth[0]).toHaveLength(12);
+  }
+});

@@ -162,3 +162,29 @@ test('refuses points that make no profile', () => {
   expect(() => profileCurve([...points, { ...points[0], angle: 180 }])).toThrow(TordialError);
   expect(() => energyAt(profileCurve(points), Number.NaN)).toThrow(TordialError);
 });
+
+describe('an open curve', () => {
+  const points = pointsOf(energy, torque, 10, -180).filter(({ angle }) => angle >= -60 && angle <= 120);
+  const curve = profileCurve(points, { open: true });
+
+  test('follows the function between its ends and has nothing beyond them', () => {
+    for (let angle = -60; angle <= 120; angle += 1.5) expect(Math.abs(energyAt(curve, angle) - energy(radians(angle)))).toBeLessThan(3e-4);
+    expect(energyAt(curve, 120)).toBe(points[points.length - 1].energy);
+    for (const beyond of [-60.1, 120.1, 299])
+      expect(() => energyAt(curve, beyond)).toThrow(expect.objectContaining({ code: 'profile/angle' }));
+  });
+
+  test('has the extrema of its range, ends and the gap between them left out', () => {
+    const within = profileCurve(pointsOf(energy, torque)).extrema.filter(({ angle }) => angle > -60 && angle < 120);
+    expect(curve.extrema.map(({ kind }) => kind)).toEqual(within.map(({ kind }) => kind));
+    curve.extrema.forEach(({ angle }, n) => {
+      expect(angle).toBeCloseTo(within[n].angle, 9);
+    });
+  });
+
+  test('counts its angles as its points do', () => {
+    const beyond = points.map((point) => ({ ...point, angle: point.angle + 180 }));
+    const shifted = profileCurve(beyond, { open: true });
+    expect(shifted.extrema.map(({ angle }) => angle)).toEqual(curve.extrema.map(({ angle }) => expect.closeTo(angle + 180, 9)));
+  });
+});
