@@ -121,6 +121,10 @@ it('joins branches that never meet by a straight line', () => {
   ]);
 });
 
+function ranges(runs: readonly (readonly { from: number; to: number }[])[]): [number, number][] {
+  return runs.map((run) => [run[0].from, run[run.length - 1].to]);
+}
+
 it('keeps an open curve open: one run from its first to its last point, also beyond 180', () => {
   for (const shift of [0, 240]) {
     const range = points(10, -180)
