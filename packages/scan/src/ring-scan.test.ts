@@ -72,3 +72,11 @@ test('a range out of reach is an error that says why', () => {
   expect(() => ringScan('C1CCCC1', [0, 1, 2, 3], { range: [0, 45] })).toThrow(/do not divide the range/);
   expect(() => ringScan('C1CCCC1', [0, 1, 2, 3], { range: [120, 170] })).toThrow(/would break/);
 });
+
+test('starts from mirror images where those lie within the range: both chairs of cyclohexanol are found', () => {
+  const { profile } = ringScan('OC1CCCCC1', [0, 1, 2, 3], { range: [-180, -40], step: 20 }, 8);
+  const wells = profile.stationaryPoints.filter(({ kind }) => kind === 'well');
+  const [equatorial, axial] = [-175, -70].map((angle) => wells.find((well) => Math.abs(well.angle - angle) < 15)?.energy ?? Number.NaN);
+  // the A value of OH is 0.6 to 1.0 kcal/mol (E. L. Eliel, Stereochemistry of Organic Compounds; from memory), in a vacuum less
+  expect(Math.abs(axial - equatorial)).toBeLessThan(1);
+});

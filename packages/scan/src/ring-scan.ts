@@ -23,7 +23,7 @@ export function* searchInRing(scan: ScanTask, image: Search['mirror']): Calculat
   const search = newSearch(scan, image, guard);
   const starts: Coordinates[] = [];
   let reason = '';
-  for (const start of scan.starts) {
+  for (const start of scan.starts.flatMap((one) => nearestForms(search, one))) {
     try {
       const first = yield* startAt(search, yield* approached(search, start));
       starts.push(first.coordinates);
@@ -51,15 +51,27 @@ export function* searchInRing(scan: ScanTask, image: Search['mirror']): Calculat
   return newSearch(trimmed, image, guard);
 }
 
+/** Of a start and its mirror image those within the range; the start itself where neither is. */
+function nearestForms(search: Search, start: Coordinates): Coordinates[] {
+  const forms = search.mirror ? [start, search.mirror(start)] : [start];
+  const within = forms.filter((x) => Math.abs(restToGrid(search, x)) <= search.scan.step);
+  return within.length > 0 ? within : [start];
+}
+
+/** Degrees from a geometry's angle to the nearest grid angle. */
+function restToGrid(search: Search, x: Coordinates): number {
+  const { rotor, angles } = search.scan;
+  return wrapDegrees(angles[nearestPlace(search, x)] - degrees(rotorAngle(rotor, x)));
+}
+
 /** A start driven to the nearest grid angle, no farther than a step at a time. */
 function* approached(search: Search, start: Coordinates): Calculation<Coordinates> {
-  const { rotor, angles, step } = search.scan;
+  const { rotor, step } = search.scan;
   let x = start;
   for (;;) {
-    const angle = degrees(rotorAngle(rotor, x));
-    const rest = wrapDegrees(angles[nearestPlace(search, x)] - angle);
+    const rest = restToGrid(search, x);
     if (Math.abs(rest) <= step) return x;
-    ({ coordinates: x } = yield* hold(search, radians(angle + Math.sign(rest) * step), x));
+    ({ coordinates: x } = yield* hold(search, rotorAngle(rotor, x) + radians(Math.sign(rest) * step), x));
   }
 }
 
