@@ -193,6 +193,29 @@ describe('the loop of fit, override and scan', () => {
   });
 });
 
+it('goes on relaxing until geometries and terms agree where several torsions share the series', async () => {
+  // isopropanol: both C-C-O-H torsions share the series, and the geometry answers to it; the better curve is invented
+  const molecule = moleculeFromSmiles('CC(C)O');
+  const atoms = [0, 1, 3, 11] as const;
+  const better = usualTerms([2.5, -1.5, 2]);
+  const torsions = [atoms, [2, 1, 3, 11] as const];
+  const profile = await torsionProfile(molecule, atoms, QUICK);
+  const reference = await torsionProfile(molecule, atoms, { ...QUICK, torsionOverrides: [{ torsions, terms: better }] });
+  const table = checkedReference(
+    'angles and energies',
+    reference.points.map(({ angle, energy }) => ({ angle, energy })),
+    [],
+  );
+  const document = torsionFit([{ profile, reference: table }], { order: 3 });
+  expect(document.series[0].torsions).toHaveLength(2);
+  expect(document.quality.selfConsistency?.iterations).toBeGreaterThan(1);
+  expect(document.quality.selfConsistency?.converged).toBe(true);
+  expect(document.quality.rmsdAfter).toBeLessThan(5e-3);
+  document.series[0].terms.forEach(({ v }, n) => {
+    expect(Math.abs(v - better[n].v)).toBeLessThan(0.02);
+  });
+});
+
 it('describes a profile by one series of its angle', async () => {
   const profile = await torsionProfile('OO', [2, 0, 1, 3], QUICK);
   const { quality, settings, series } = torsionFit([{ profile }]);
