@@ -24,7 +24,7 @@ describe('MMFF94 terms', () => {
     const [term] = torsionTermsOn(mmff94(molecule).parameters, atoms[1], atoms[2]).filter((t) => t.atoms.join() === atoms.join());
     const [v1, v2, v3] = term.v;
     const points = profile.points.map(({ angle, coordinates }) => {
-      const phi = torsion(Float64Array.from(coordinates), ...atoms);
+      const phi = torsion(Float64Array.from(coordinates), atoms[0], atoms[1], atoms[2], atoms[3]);
       return { angle, energy: 0.5 * (v1 * (1 + Math.cos(phi)) + v2 * (1 - Math.cos(2 * phi)) + v3 * (1 + Math.cos(3 * phi))) };
     });
     // the profile's own energies replaced by the term's: the document then describes that term
