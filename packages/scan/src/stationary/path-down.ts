@@ -29,7 +29,7 @@ export interface PathDown {
 }
 
 /** Longest step of the path, angstrom amu^(1/2), and the first one off the saddle. */
-const STEP = 0.3;
+const STEP = 0.5;
 const FIRST_STEP = 0.1;
 const MOST_STEPS = 600;
 /** Gradient (kcal/mol/angstrom) below which a minimiser may take over. */

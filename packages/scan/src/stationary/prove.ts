@@ -129,7 +129,9 @@ const MOST_LINKS = 4;
 /** Degrees by which a saddle on the way may stand outside of the arc between the wells. */
 const BESIDE = 30;
 /** Saddles that are tried for one barrier beyond its own before the wells count as not joined. */
-const MOST_TRIES = 12;
+const MOST_TRIES = 4;
+/** Energies and gradients that one barrier may cost before no further way is tried: a flexible molecule has more ways than can be followed. */
+const MOST_EVALUATIONS = 6000;
 
 interface Proof {
   readonly molecule: Molecule;
@@ -142,6 +144,8 @@ interface Proof {
   readonly notes: Note[];
   /** Saddles beyond its own that may still be tried for the barrier at work. */
   tries: number;
+  /** Evaluations beyond which nothing further is tried for it. */
+  limit: number;
   /** Where the barrier at work stands: degrees from the angle of the well before it, and on to the well after it. */
   arc: { readonly from: number; readonly width: number };
   evaluations: number;
@@ -165,6 +169,7 @@ export function* proof(molecule: Molecule, profile: Candidates, options: ProofOp
     same: sameMinimum(molecule),
     notes: [],
     tries: 0,
+    limit: 0,
     arc: { from: 0, width: 360 },
     evaluations: 0,
   };
@@ -182,6 +187,7 @@ export function* proof(molecule: Molecule, profile: Candidates, options: ProofOp
   for (const [of, candidate] of stationaryPoints.entries()) {
     if (candidate.kind === 'well') continue;
     work.tries = MOST_TRIES;
+    work.limit = work.evaluations + MOST_EVALUATIONS;
     const beside = wellsBeside(stationaryPoints, of).flatMap((index) => wells.filter((well) => well.of === index));
     if (beside.length > 0) work.arc = arcBetween(beside[0].angle, beside[1].angle);
     points[of] =
@@ -222,11 +228,11 @@ function angleOf({ rotor: { torsion } }: Proof, x: Coordinates): number {
 }
 
 function* minimumNear(work: Proof, start: Coordinates): Calculation<StationaryStructure> {
-  const rough = yield* minimise(start, work.model, { tolerance: 0.01 });
+  const rough = yield* minimise(start, work.model, { tolerance: work.tolerance });
   work.evaluations += rough.evaluations;
   let found = yield* refined(work, rough.coordinates, 0, []);
   for (let n = 0; n < 4 && found.order > 0; n++) {
-    const again = yield* minimise(displaced(found.coordinates, found.modes.vectors[0], PUSH), work.model, { tolerance: 0.01 });
+    const again = yield* minimise(displaced(found.coordinates, found.modes.vectors[0], PUSH), work.model, { tolerance: work.tolerance });
     work.evaluations += again.evaluations;
     found = yield* refined(work, again.coordinates, 0, []);
   }
@@ -239,7 +245,7 @@ function* refined(work: Proof, start: Coordinates, order: number, follow: readon
     follow,
     tolerance: work.tolerance,
     displacement: work.displacement,
-    maxSteps: 60,
+    maxSteps: 40,
     renewal: 15,
   });
   work.evaluations += found.evaluations;
@@ -367,7 +373,7 @@ function* wayBetween(work: Proof, from: Bottom, to: Bottom, wells: readonly Prov
     if (links.length === MOST_LINKS) return null;
     let onward: Bottom | null = null;
     for (const start of yield* startsTowards(work, at, to)) {
-      if (--work.tries < 0) return null;
+      if (--work.tries < 0 || work.evaluations > work.limit) return null;
       const link: Link | null = yield* linkAt(work, yield* refined(work, start.x, 1, start.follow ? [start.follow] : []));
       if (!link) continue;
       const here = link.bottoms.findIndex((bottom) => isAt(work, bottom, at));
@@ -619,8 +625,10 @@ function* provedCrossing(
     const way = (yield* wayBetween(work, beside[0], beside[1], wells)) ?? (yield* wayBetween(work, beside[1], beside[0], wells));
     if (way && way.length > 0) joined.push(way);
     work.tries = MOST_TRIES;
+    work.limit = work.evaluations + MOST_EVALUATIONS;
   }
   for (const { x, follow } of starts) {
+    if (others.length > 0 && work.evaluations > work.limit) break;
     const structure = yield* refined(work, x, 1, follow ? [follow] : []);
     const link = yield* linkAt(work, structure);
     const way: Link[] | null = link && beside.length > 0 ? yield* wayOver(work, link, beside, wells) : null;
