@@ -6,7 +6,7 @@ import { allExtrema, alternating, type CurveExtremum, type ProfileCurve } from '
 export interface StationaryPoint {
   /**
    * `well` and `barrier` are extrema along the scan, where the torque vanishes; a `crossing` is a maximum of the envelope where two branches
-   * meet: an upper bound to the way from one to the other, and no saddle.
+   * meet: no saddle, and the way from one to the other may lead well above it.
    */
   readonly kind: CurveExtremum['kind'];
   /** Degrees in [-180, 180). */
