@@ -135,6 +135,18 @@ describe('a fit with free phases', () => {
     // 24 equidistant points: sum (cos / 2)^2 = 24 / 8
     expect(series[0][0].standardError).toBeCloseTo((s ?? 0) / Math.sqrt(3), 6);
   });
+  it('holds phases that half a turn leaves open, and says so', () => {
+    const half = setOf(
+      usualTerms([1, -2, 0.5]),
+      Array.from({ length: 13 }, (_, n) => 15 * n),
+      undefined,
+      disturbance(0.02),
+    );
+    const { series, notes } = fitSeries([half], { ...free, order: 3 });
+    expect(series[0].map(({ phase }) => phase)).toEqual([0, 180, 0]);
+    expect(series[0][1].v).toBeCloseTo(-2, 1);
+    expect(notes.map(({ code }) => code)).toContain('fit/phases-held');
+  });
   it('restrains amplitudes and leaves phases free', () => {
     const { series } = fitSeries([setOf(truth)], {
       ...free,

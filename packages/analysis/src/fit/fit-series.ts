@@ -153,32 +153,48 @@ function freePhases(
     return [v * Math.cos((phase * Math.PI) / 180), v * Math.sin((phase * Math.PI) / 180)];
   });
   const linear = observations(points, order, 'free');
-  const solution = solveLinear({
-    ...linear,
-    target: linearTarget,
-    restraint,
-    groups: places.map((_, k) => [2 * k, 2 * k + 1]),
-    leastEffect: LEAST_EFFECT,
-  });
+  const solve = () =>
+    solveLinear({
+      ...linear,
+      target: linearTarget,
+      restraint,
+      groups: places.map((_, k) => [2 * k, 2 * k + 1]),
+      leastEffect: LEAST_EFFECT,
+    });
+  const both = ({ determined }: LinearSolution, k: number): boolean => determined[2 * k] && determined[2 * k + 1];
+  let solution = solve();
+  const held = places.map((_, k) => k).filter((k) => !both(solution, k));
+  if (held.length === places.length && places.length > 0) {
+    // half a turn of a symmetric curve, say: amplitudes are all that can be fitted
+    const fit = fixedPhases(points, setCount, groups, independent, options);
+    return { ...fit, notes: [...fit.notes, phasesHeld(places.map(({ group, n }) => label(groups, group, `${n}`)))] };
+  }
+  if (held.length > 0) {
+    for (const row of linear.design) for (const k of held) row[2 * k + 1] = 0;
+    for (const k of held) linearTarget[2 * k + 1] = 0;
+    solution = solve();
+  }
   const start = places.map(({ n }, k) => amplitudeAndPhase(solution.coefficients[2 * k], solution.coefficients[2 * k + 1], n));
-  const determined = places.map((_, k) => solution.determined[2 * k] && solution.determined[2 * k + 1]);
+  const determined = places.map((_, k) => (held.includes(k) ? solution.determined[2 * k] : both(solution, k)));
   // a phase of nothing, and a term that the points do not tell apart, stay as the linear solution left them
-  const moving = places.map((_, k) => k).filter((k) => determined[k] && Math.abs(start[k].v) > FLAT);
+  const moving = places.map((_, k) => k).filter((k) => both(solution, k) && Math.abs(start[k].v) > FLAT);
   if (moving.length === 0 || restraint.kind === 'lasso') {
     const quality = residualQuality(points, solution, order, 'free', setCount, independent);
     const terms = places.map(({ n }, k) => ({ n, ...start[k], standardError: null, phaseStandardError: null, determined: determined[k] }));
     return assembled(points, terms, groups, order, solution.offsets, quality, [], null, independent);
   }
 
-  const held = solution.coefficients.map((value, k) => (moving.includes(k >> 1) ? 0 : value));
-  const observed = linear.observed.map((value, i) => value - linear.design[i].reduce((sum, x, k) => sum + x * held[k], 0));
+  const still = solution.coefficients.map((value, k) => (moving.includes(k >> 1) ? 0 : value));
+  const observed = linear.observed.map((value, i) => value - linear.design[i].reduce((sum, x, k) => sum + x * still[k], 0));
   const ridge = restraint.kind === 'ridge' ? restraint.strength : 0;
   const pulls = ridge > 0 ? moving.map((k) => signedTarget(targetTerm(options, places[k].group, places[k].n))) : [];
+  // amplitudes beside the moving terms that the points determine too
+  const beside = Math.max(0, solution.rank - 2 * moving.length);
   const fit = levenbergMarquardt({
     observed: [...observed, ...pulls],
     weights: [...linear.weights, ...pulls.map(() => ridge)],
     restraints: pulls.length,
-    independent,
+    independent: independent - beside,
     start: [...moving.flatMap((k) => [start[k].v, (start[k].phase * Math.PI) / 180]), ...solution.offsets],
     model: (parameters, values) => {
       for (let i = 0; i < observed.length; i++) {
@@ -212,14 +228,24 @@ function freePhases(
   const quality = {
     degreesOfFreedom: fit.degreesOfFreedom,
     variance: fit.covariance && fit.residualSumOfSquares / fit.degreesOfFreedom,
-    parameters: fit.parameters.length,
+    parameters: fit.parameters.length + beside,
   };
   const labels = moving.flatMap((k) => [
     label(groups, places[k].group, `V${places[k].n}`),
     label(groups, places[k].group, `phase ${places[k].n}`),
   ]);
   const covariance = fit.covariance?.slice(0, labels.length).map((row) => row.slice(0, labels.length)) ?? null;
-  return assembled(points, terms, groups, order, offsets, quality, labels, covariance, independent);
+  const result = assembled(points, terms, groups, order, offsets, quality, labels, covariance, independent);
+  if (held.length === 0) return result;
+  const names = held.map((k) => label(groups, places[k].group, `${places[k].n}`));
+  return { ...result, notes: [...result.notes, phasesHeld(names)] };
+}
+
+function phasesHeld(names: readonly string[]): Note {
+  return {
+    code: 'fit/phases-held',
+    message: `the points do not determine the phases of the terms ${names.join(', ')} (half a turn does not, nor a symmetric rotor); they are held at 0 and 180 degrees`,
+  };
 }
 
 function termPlaces(groups: number, order: number): { group: number; n: number }[] {
