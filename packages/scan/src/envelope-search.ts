@@ -183,8 +183,8 @@ export function* singleSweep(search: Search): Calculation<void> {
 const MOST_ROUNDS = 4;
 /** Branches up to this far above the envelope (kcal/mol) are followed from both ends. */
 const WINDOW = 2;
-/** The rotors next to the axis are turned on at points this far apart, degrees: what that finds is followed to the points between. */
-const TURN_NEXT_EVERY = 30;
+/** Other rotors are turned on at points this far apart, degrees: what that finds is followed to the points between. */
+const TURN_EVERY = 30;
 /** Rounds of turning other rotors after which only neighbours, mirror images and inversions seed: long chains would fold for ever. */
 const TURNING_ROUNDS = 4;
 
@@ -197,41 +197,58 @@ export function* searchEnvelope(search: Search): Calculation<void> {
   }
   const { molecule, rotor } = search.scan;
   const rotors = otherRotors(molecule, rotor);
-  const neighbours = rotors.filter(({ distance }) => distance === 0);
-  const near = rotors.slice(0, TURNED_TOGETHER);
-  const stride = Math.max(1, Math.round(TURN_NEXT_EVERY / search.scan.step));
+  const stride = Math.max(1, Math.round(TURN_EVERY / search.scan.step));
   const seeded = new Set<HeldMinimum>();
   for (let round = 1; ; round++) {
     yield* close(search);
     const envelope = lowestOnEach(search);
-    const fresh = envelope.filter((minimum) => !seeded.has(minimum));
+    const fresh = [...envelope, ...nearEnvelope(search, envelope, stride)].filter((minimum) => !seeded.has(minimum));
     if (fresh.length === 0) return;
     for (const minimum of fresh) {
       seeded.add(minimum);
-      if (minimum.twin && minimum.twin !== minimum && seeded.has(minimum.twin)) continue;
-      const turning =
-        round > TURNING_ROUNDS ? [] : isWell(search, envelope, minimum.place) ? rotors : minimum.place % stride === 0 ? neighbours : [];
-      for (const start of [...invertedNitrogens(molecule, rotor, minimum.coordinates), ...turnedRotors(turning, minimum.coordinates)])
-        yield* tryToFind(search, minimum.place, start);
-      if (round <= TURNING_ROUNDS && (isWell(search, envelope, minimum.place) || minimum.place % stride === 0))
-        for (const start of yield* promising(search, turnedTogetherOrInverted(search, near, minimum.coordinates)))
-          yield* tryToFind(search, minimum.place, start);
+      const { place, twin, coordinates } = minimum;
+      if (twin && twin !== minimum && seeded.has(twin)) continue;
+      const turns = round <= TURNING_ROUNDS;
+      const onEnvelope = envelope[place] === minimum;
+      const well = onEnvelope && isWell(search, envelope, place);
+      if (onEnvelope) for (const start of invertedNitrogens(molecule, rotor, coordinates)) yield* tryToFind(search, place, start);
+      if (turns && well) for (const start of turnedRotors(rotors, coordinates)) yield* tryToFind(search, place, start);
+      if (turns && (well || place % stride === 0))
+        for (const start of yield* promising(search, rearranged(search, rotors.slice(0, REARRANGED), coordinates)))
+          yield* tryToFind(search, place, start);
       // on a grid without opposite angles the mirror image is turned to the nearest one
-      if (search.mirror && !search.map.opposite) yield* tryNearby(search, search.mirror(minimum.coordinates));
-      for (const { place, start } of periodSeeds(search, envelope, minimum)) yield* tryToFind(search, place, start);
+      if (search.mirror && !search.map.opposite) yield* tryNearby(search, search.mirror(coordinates));
+      for (const seed of periodSeeds(search, envelope, minimum)) yield* tryToFind(search, seed.place, seed.start);
     }
   }
 }
 
-/** Rotors next to the axis and beyond that are turned several at once; of the geometries so made, those of lowest energy are relaxed. */
-const TURNED_TOGETHER = 5;
-const MOST_PROMISING = 4;
+/** Minima this little (kcal/mol) above the envelope are rearranged too, so many at each angle: two changes away may lie a lower branch. */
+const NEAR = 1;
+const MOST_NEAR = 2;
 
-/** Two and three rotors turned at once, and one and two about an inverted nitrogen: what no single turn leads to. */
-function turnedTogetherOrInverted({ scan: { molecule, rotor } }: Search, rotors: readonly OtherRotor[], x: Coordinates): Coordinates[] {
+/** The minima next above the envelope at the angles where other rotors are turned. */
+function nearEnvelope({ map }: Search, envelope: readonly HeldMinimum[], stride: number): HeldMinimum[] {
+  return envelope.flatMap((lowestThere, place) =>
+    place % stride !== 0
+      ? []
+      : map.at[place]
+          .filter((minimum) => minimum !== lowestThere && minimum.energy < lowestThere.energy + NEAR)
+          .sort((p, q) => p.energy - q.energy)
+          .slice(0, MOST_NEAR),
+  );
+}
+
+/** The nearest rotors are turned alone and together; of the geometries so made, the few of lowest energy are relaxed. */
+const REARRANGED = 5;
+const MOST_PROMISING = 5;
+
+/** One, two and three rotors turned, and one and two about an inverted nitrogen. */
+function rearranged({ scan: { molecule, rotor } }: Search, rotors: readonly OtherRotor[], x: Coordinates): Coordinates[] {
   const together = (start: Coordinates, counts: readonly number[]): Coordinates[] =>
     counts.flatMap((count) => turnedTogether(rotors, count, start));
-  return [...together(x, [2, 3]), ...invertedNitrogens(molecule, rotor, x).flatMap((image) => together(image, [1, 2]))];
+  const inverted = invertedNitrogens(molecule, rotor, x);
+  return [...together(x, [1, 2, 3]), ...inverted.flatMap((image) => together(image, [1, 2]))];
 }
 
 /** The few of these geometries whose energies, as they stand, are lowest: an energy costs a tenth of a relaxation. */

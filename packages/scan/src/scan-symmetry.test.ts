@@ -48,6 +48,16 @@ describe('the same molecule written five ways gives the same profile', () => {
       ],
     ],
     [
+      'N-(2-hydroxyethyl)methanesulfonamide',
+      [
+        ['CS(=O)(=O)NCCO', [1, 4, 5, 6]],
+        ['O=S(=O)(C)NCCO', [1, 4, 5, 6]],
+        ['C(O)CNS(C)(=O)=O', [4, 3, 2, 0]],
+        ['S(C)(=O)(=O)NCCO', [0, 4, 5, 6]],
+        ['N(CCO)S(=O)(=O)C', [4, 0, 1, 2]],
+      ],
+    ],
+    [
       '(2S)-2-amino-3-phenylpropan-1-ol',
       [
         ['N[C@@H](Cc1ccccc1)CO', [0, 1, 2, 3]],
