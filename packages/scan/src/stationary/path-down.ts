@@ -10,11 +10,11 @@
  * chapter IV.7, the step.
  */
 import type { Coordinates } from '@tordial/geometry';
-import { CholeskyDecomposition, Matrix } from 'ml-matrix';
 import { largest } from '../minimise.js';
 import type { Calculation, Question } from '../potential.js';
 import { bofillUpdate } from './bofill-update.js';
 import { length } from './projected-modes.js';
+import { solveShifted } from './shifted-solve.js';
 
 export interface PathDown {
   /** Angstrom. */
@@ -55,6 +55,7 @@ export function* pathDown(
   const question: Question = { x: new Float64Array(size), gradient: new Float64Array(size) };
   const g = new Float64Array(size);
   const next = new Float64Array(size);
+  const factor = new Float64Array(size * size);
   let energy = energyOfSaddle;
   let evaluations = 0;
   let residual = Number.POSITIVE_INFINITY;
@@ -75,7 +76,7 @@ export function* pathDown(
     if (!(trial <= energy + ROUNDING)) {
       longest /= 2;
       if (longest < 1e-3) break;
-      step = n === 0 ? step.map((value) => value / 2) : downhill(H, g, longest);
+      step = n === 0 ? step.map((value) => value / 2) : downhill(H, g, longest, factor);
       continue;
     }
     x.set(question.x);
@@ -86,22 +87,16 @@ export function* pathDown(
     if (residual < NEAR && energy < energyOfSaddle - 1e-4 && n > 3 && length(step) < longest / 2)
       return { coordinates: x, energy, gradientMax: residual, arrived: true, evaluations };
     longest = Math.min(STEP, 1.5 * longest);
-    step = downhill(H, g, longest);
+    step = downhill(H, g, longest, factor);
   }
   return { coordinates: x, energy, gradientMax: residual, arrived: false, evaluations };
 }
 
-/** -(H + shift)^-1 g with the least shift that makes it positive definite and the step at most `longest`. */
-function downhill(H: Float64Array, g: Float64Array, longest: number): Float64Array {
-  const size = g.length;
-  const norm = length(g);
-  for (let shift = norm / longest; ; shift *= 2) {
-    const matrix = Matrix.from1DArray(size, size, H);
-    for (let k = 0; k < size; k++) matrix.set(k, k, matrix.get(k, k) + shift);
-    const factor = new CholeskyDecomposition(matrix);
-    if (!factor.isPositiveDefinite()) continue;
-    const solved = factor.solve(Matrix.columnVector(g));
-    const step = Float64Array.from({ length: size }, (_, k) => -solved.get(k, 0));
-    if (length(step) <= 1.01 * longest) return step;
+/** -(H + shift)^-1 g with the least shift that makes it positive definite and the step at most `longest`. `factor` is scratch. */
+function downhill(H: Float64Array, g: Float64Array, longest: number, factor: Float64Array): Float64Array {
+  const step = new Float64Array(g.length);
+  for (let shift = length(g) / longest; ; shift *= 2) {
+    if (!solveShifted(H, shift, g, step, factor) || length(step) > 1.01 * longest) continue;
+    return step.map((value) => -value);
   }
 }
