@@ -44,6 +44,7 @@ describe.concurrent('records that cannot be done end with exit code 1', () => {
     ['boron', 'CCB(O)O', /atom 2 \(B\)/],
     ['a metal bound covalently', 'CC[Zn]CC', /atom 2 \(Zn\)/],
     ['a radical', 'CC[CH2]', /atom 2/],
+    ['an allene whose configuration the force field does not hold', 'CC(Cl)=[C@]=C(C)Br', /lost its configuration/],
   ])('%s', async (_, smiles, words) => {
     const { exitCode, stderr } = await tordial(['energy', smiles]);
     expect(stderr).toMatch(words);

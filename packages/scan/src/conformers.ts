@@ -175,7 +175,7 @@ function withConfiguration(molecule: Molecule, seed: number): Molecule {
 }
 
 /** The stated configurations are all there. */
-function keepsStereo(molecule: Molecule, x: Coordinates): boolean {
+export function keepsStereo(molecule: Molecule, x: Coordinates): boolean {
   const { tetrahedral, doubleBonds, axes } = molecule.stereo;
   const seen: StereoTable = perceiveStereo(molecule, x);
   return (

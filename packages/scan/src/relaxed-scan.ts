@@ -1,6 +1,7 @@
 /** Relaxed scans: from the minima that a search has found to the profile. */
 import { type Coordinates, radians } from '@tordial/geometry';
 import { type Direction, type HeldMinimum, joined, next } from './branches.js';
+import { keepsStereo } from './conformers.js';
 import { goesOn, hold, lowestOnEach, newSearch, type RelaxedHeld, type Search, searchEnvelope, singleSweep } from './envelope-search.js';
 import { copiedPoints, copiedStationaryPoints } from './periodic-copies.js';
 import type { Calculation } from './potential.js';
@@ -30,6 +31,7 @@ export function* relaxedScan(asked: ScanTask): Calculation<Profile> {
         code: 'scan/not-converged',
         message: `the point at ${angle} degrees did not converge: largest gradient component ${residual?.toPrecision(2)} kcal/mol/angstrom`,
       });
+  noteLostConfiguration(scan, points);
   const at = function* (angle: number, start: Coordinates): Calculation<Omit<ScanPoint, 'beyond' | 'before' | 'breakAfter'>> {
     const relaxed = yield* hold(search, radians(angle), start);
     return { angle, ...relaxed, residual: relaxed.gradientMax };
@@ -39,6 +41,18 @@ export function* relaxedScan(asked: ScanTask): Calculation<Profile> {
   if (scan.period === null) return profileOf(scan, points, stationaryPoints);
   noteCopies(scan, scan.period, points);
   return profileOf(scan, copiedPoints(scan, scan.period, points), copiedStationaryPoints(scan, scan.period, points, stationaryPoints));
+}
+
+/** A potential without a term for it, or a ring driven hard, may let a stereocentre or an axis turn over: such a point is of another molecule. */
+function noteLostConfiguration({ molecule, notes }: ScanTask, points: readonly ScanPoint[]): void {
+  // double bonds may be what is driven
+  const held = { ...molecule, stereo: { ...molecule.stereo, doubleBonds: [] } };
+  const lost = points.filter(({ coordinates }) => !keepsStereo(held, coordinates)).map(({ angle }) => angle);
+  if (lost.length > 0)
+    notes.push({
+      code: 'scan/stereo',
+      message: `the potential does not hold the stated configuration: lost at ${lost.join(', ')} degrees, where the points are of another molecule`,
+    });
 }
 
 function noteCopies(scan: ScanTask, period: number, points: readonly ScanPoint[]): void {

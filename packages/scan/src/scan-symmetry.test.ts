@@ -1,6 +1,6 @@
 /** What symmetry and the way a molecule is written must not change, and what it lets a scan copy. */
 import { mmff94 } from '@tordial/forcefield';
-import { degrees, type Molecule, moleculeFromSmiles, perceiveStereo, torsion, wrapDegrees } from '@tordial/geometry';
+import { degrees, embed, type Molecule, moleculeFromSmiles, perceiveStereo, torsion, wrapDegrees } from '@tordial/geometry';
 import { describe, expect, test } from 'vitest';
 import { conformers } from './conformers.js';
 import type { Profile } from './profile.js';
@@ -138,4 +138,17 @@ describe('one period', () => {
     expect(() => scan('CCCC', [0, 1, 2, 3], { period: 120, step: 90 })).toThrow(/do not divide the period/);
     expect(() => scan('CCCC', [0, 1, 2, 3], { period: 120, range: [0, 90] })).toThrow(/exclude each other/);
   });
+});
+
+test('points at which the potential lets a stated axis turn over are named', () => {
+  // MMFF94 has no torsion term about a cumulene: nothing holds an allene's substituents in their planes
+  const molecule = moleculeFromSmiles('CC(Cl)=[C@]=C(C)Br');
+  const profile = scanRotor(molecule, mmff94(molecule), [8, 0, 1, 2], { starts: [embed(molecule)], step: 60 });
+  const lost = profile.points.filter(
+    ({ coordinates }) => perceiveStereo(molecule, coordinates).axes[0].sign !== molecule.stereo.axes[0].sign,
+  );
+  expect(lost.length).toBeGreaterThan(0);
+  expect(profile.notes.find(({ code }) => code === 'scan/stereo')?.message).toContain(
+    `lost at ${lost.map(({ angle }) => angle).join(', ')} degrees`,
+  );
 });

@@ -1,7 +1,16 @@
 /** `tordial energy`: the energy of given or built structures, and its terms. */
 import type { EnergyTerms, Mmff94 } from '@tordial/forcefield';
-import { type Coordinates, embed, geometriesFor, type MolecularRecord, type Note, openStereo } from '@tordial/geometry';
-import { relax } from '@tordial/scan';
+import {
+  type Coordinates,
+  embed,
+  geometriesFor,
+  type MolecularRecord,
+  type Note,
+  openStereo,
+  perceiveStereo,
+  TordialError,
+} from '@tordial/geometry';
+import { keepsStereo, relax } from '@tordial/scan';
 import type { EnergyFlags } from '../commands/energy.js';
 import { eachRecord, tell } from './each-record.js';
 import { readFrames } from './input.js';
@@ -76,6 +85,12 @@ export async function listEnergies(argument: string, flags: EnergyFlags): Promis
     }
     if (flags.relax || !record.coordinates) {
       const relaxed = relax(molecule, potential, x);
+      const stated = record.coordinates ? { ...molecule, stereo: perceiveStereo(molecule, x) } : molecule;
+      if (!keepsStereo(stated, relaxed.coordinates))
+        throw new TordialError(
+          'energy/stereo',
+          'the structure lost its configuration while it relaxed: the potential does not hold it, and this would be the energy of another molecule',
+        );
       x = relaxed.coordinates;
       if (!relaxed.converged)
         notes.push({
