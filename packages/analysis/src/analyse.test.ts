@@ -155,7 +155,7 @@ describe('analysis of an anti/gauche profile', () => {
       },
     };
     const { cautions, barrierError } = analyseProfile(anilide);
-    expect(cautions.map((note) => note.code).slice(4)).toEqual(['caution/fragments', 'caution/anilide']);
+    expect(cautions.map((note) => note.code).slice(4)).toEqual(['caution/fragments', 'caution/anilide', 'caution/unproved']);
     expect(barrierError.error).toBe(3);
     const scale = ({ relativeEnergy, energy, ...rest }: (typeof document.points)[number]) => ({
       ...rest,

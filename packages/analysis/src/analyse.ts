@@ -13,10 +13,12 @@ import {
   hydrogenBondCaution,
   inversionCaution,
   RIGID_CAUTION,
+  refutedCaution,
+  UNPROVED_CAUTION,
 } from './cautions.js';
-import { averagedCouplings, type VicinalCoupling, vicinalCouplings } from './couplings/vicinal-couplings.js';
+import { averagedCouplings, hasVicinalProtons, type VicinalCoupling, vicinalCouplings } from './couplings/vicinal-couplings.js';
 import { moleculeOfDocument } from './document-molecule.js';
-import type { WellNetwork } from './network.js';
+import { barrierRates, type WellNetwork } from './network.js';
 import { invertingNitrogens } from './nitrogen-pyramids.js';
 import { basinPopulations, boltzmannPopulations } from './populations.js';
 import { observableProcesses } from './processes.js';
@@ -33,7 +35,10 @@ export interface AnalysisOptions {
   readonly temperatures?: readonly number[];
   /** Assumed error of a barrier, kcal/mol; by the source of the torsion terms when left out. */
   readonly barrierError?: number;
-  /** Heights of refined saddles above the lowest well, kcal/mol, in the order of `rotamers(document).barriers`; null keeps the envelope's. */
+  /**
+   * Heights of refined saddles above the lowest well, kcal/mol, in the order of `rotamers(document).barriers`; null where none was proved, and
+   * no rate is given over such a barrier. When left out, the profile's own barriers stand, but for crossings.
+   */
   readonly saddles?: readonly (number | null)[];
   /** How many saddles stand for each barrier, in the same order: 2 where a saddle and its mirror image join the same wells; 1 when left out. */
   readonly saddleCounts?: readonly number[];
@@ -43,7 +48,7 @@ export interface AnalysisOptions {
   readonly transmission?: ((temperature: number) => readonly number[]) | null;
   /** Shift difference (ppm) of two signals and spectrometer frequency (MHz): the coalescence temperature of each process is added. */
   readonly coalescence?: CoalescingSignals;
-  /** Add vicinal H-C-C-H couplings over the axis; an error where the axis has none. */
+  /** Vicinal H-C-C-H couplings over the axis: added where it has them when left out; an error where it has none when true. */
   readonly couplings?: boolean;
 }
 
@@ -75,7 +80,9 @@ export interface AnalysisRow {
   readonly temperature: number;
   readonly populations: Populations;
   readonly processes: readonly AnalysedProcess[];
-  /** Averaged over the profile; null where not asked for. */
+  /** Rate constants (1/s) over each barrier in the order of `barriers`, from the well before it to that after it and back; null where none is justified. */
+  readonly barrierRates: readonly ({ readonly forward: number; readonly backward: number } | null)[];
+  /** Averaged over the profile; null where the axis has none. */
   readonly couplings: readonly VicinalCoupling[] | null;
 }
 
@@ -84,7 +91,7 @@ export interface ProfileAnalysis {
   readonly rotamers: readonly AnalysedRotamer[];
   readonly barriers: readonly AnalysedBarrier[];
   readonly barrierError: BarrierError;
-  /** Couplings in each rotamer, in their order; null where not asked for. */
+  /** Couplings in each rotamer, in their order; null where the axis has none. */
   readonly rotamerCouplings: readonly (readonly VicinalCoupling[])[] | null;
   readonly rows: readonly AnalysisRow[];
   readonly cautions: readonly Note[];
@@ -94,7 +101,8 @@ export interface ProfileAnalysis {
  * Rotamers, populations, barriers, rates and half-lives of a profile document.
  *
  * Throws `analysis/temperature` for a temperature of zero or below, and as `soundCurve`, `rotamers` and `pairCouplings` do for a profile that does not
- * close, does not cover its turn or did not converge, or for couplings that the axis has not. Over a crossing of branches no rate is given.
+ * close, does not cover its turn or did not converge, or for couplings that the axis has not. No rate is given over a crossing of branches, nor over
+ * a barrier whose proof failed.
  */
 export function analyseProfile(document: ProfileDocument, options: AnalysisOptions = {}): ProfileAnalysis {
   const { temperatures = [298.15], barrierError, freeEnergies } = options;
@@ -108,7 +116,9 @@ export function analyseProfile(document: ProfileDocument, options: AnalysisOptio
   // '@' in a canonical SMILES is a stereocentre or an axis that the molecule keeps
   const handedAxis = document.molecule.smiles.includes('@') && document.rotor.axis.every((i) => atomShape(molecule, i) === 'planar');
   const networkAt = networkOf(turn, options);
-  const couplingsAt = options.couplings ? profileCouplings(document, molecule, curve) : null;
+  const coupled = options.couplings ?? hasVicinalProtons(molecule, document.rotor.axis);
+  const couplingsAt = coupled ? profileCouplings(document, molecule, curve) : null;
+  const reference = Float64Array.from(document.points[0].coordinates);
 
   return {
     rotamers: wells.map((well) => ({ ...well, label: rotamerLabel(well) })),
@@ -118,9 +128,9 @@ export function analyseProfile(document: ProfileDocument, options: AnalysisOptio
       return { ...barrier, saddle, forward, backward };
     }),
     barrierError: error,
-    rotamerCouplings: options.couplings
+    rotamerCouplings: coupled
       ? wells.map(({ stationaryPoints: [lowest] }) =>
-          vicinalCouplings(molecule, document.rotor.axis, Float64Array.from(document.stationaryPoints[lowest].coordinates)),
+          vicinalCouplings(molecule, document.rotor.axis, Float64Array.from(document.stationaryPoints[lowest].coordinates), reference),
         )
       : null,
     rows: temperatures.map((temperature) => {
@@ -136,6 +146,7 @@ export function analyseProfile(document: ProfileDocument, options: AnalysisOptio
         processes: observableProcesses(network, wells, temperature, handedAxis).map((process) =>
           analysedProcess(process, networkAt, wells, temperature, error.error, options.coalescence),
         ),
+        barrierRates: barrierRates(network, temperature),
         couplings: couplingsAt?.(temperature) ?? null,
       };
     }),
@@ -160,7 +171,7 @@ function networkOf(
     return {
       wells: heights,
       barriers: barriers.map((barrier, i) => {
-        const known = saddles?.[i] ?? (barrier.kind === 'crossing' ? null : barrier.energy);
+        const known = saddles ? saddles[i] : barrier.kind === 'crossing' ? null : barrier.energy;
         const height = free ? free.barriers[i] : known;
         // a low barrier can vanish in free energy: there is no rate over it then
         return height !== null && height >= Math.max(heights[i], heights[(i + 1) % heights.length]) ? height : null;
@@ -211,7 +222,9 @@ function cautionsOf(
 ): Note[] {
   const { rotor, settings, points } = document;
   const geometries = points.map((point) => Float64Array.from(point.coordinates));
-  const crossings = barriers.filter(({ kind }, i) => kind === 'crossing' && (saddles?.[i] ?? null) === null).map(({ angle }) => angle);
+  const unknown = barriers.filter((_, i) => (saddles?.[i] ?? null) === null);
+  const crossings = unknown.filter(({ kind }) => kind === 'crossing').map(({ angle }) => angle);
+  const smooth = unknown.filter(({ kind }) => kind === 'barrier').map(({ angle }) => angle);
   const inverting = invertingNitrogens(molecule, rotor.axis, geometries);
   const wildcard = rotor.parameters.some((term) => term.source === 'wildcard');
   const cautions: (Note | null)[] = [
@@ -223,6 +236,8 @@ function cautionsOf(
     document.molecule.fragments > 1 ? FRAGMENTS_CAUTION : null,
     rotor.kind === 'anilide' && wildcard ? ANILIDE_CAUTION : null,
     crossings.length > 0 ? crossingCaution(crossings) : null,
+    smooth.length > 0 && saddles ? refutedCaution(smooth) : null,
+    smooth.length > 0 && !saddles && settings.kind !== 'rigid' ? UNPROVED_CAUTION : null,
     inverting.length > 0 ? inversionCaution(inverting) : null,
     hydrogenBondCaution(molecule, geometries, settings['dielectric']),
   ];

@@ -77,7 +77,7 @@ export function analysedProcess(
     refused.push({
       code: 'analysis/no-rate',
       message:
-        'no rate: a route passes a crossing of branches where no saddle is known, or a barrier that vanishes in free energy; refine it first',
+        'no rate: a route passes a crossing of branches or a barrier where no saddle was proved, or one that vanishes in free energy; refine it first',
     });
   const coalesced = signals && rates ? coalescenceOf(process, networkAt, rates, temperature, error, signals) : null;
   if (coalesced && 'code' in coalesced) refused.push(coalesced);

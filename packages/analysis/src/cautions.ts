@@ -59,6 +59,21 @@ export function crossingCaution(angles: readonly number[]): Note {
   };
 }
 
+/** Where a smooth maximum of the profile was not proved to be a saddle between its wells. */
+export function refutedCaution(angles: readonly number[]): Note {
+  return {
+    code: 'caution/no-saddle',
+    message: `The barrier at ${angles.map((value) => `${value.toFixed(1)} degrees`).join(', ')} was not proved to be a saddle between the wells beside it: its height is only the profile's, and no rate is given over it.`,
+  };
+}
+
+/** Of barriers that nobody has tried to prove. */
+export const UNPROVED_CAUTION: Note = {
+  code: 'caution/unproved',
+  message:
+    'Barriers are maxima of the profile that were not proved to be saddles: another motion may lead over them, and rates over them are as they stand.',
+};
+
 /** Where a nitrogen beside the axis turns inside out between two branches. */
 export function inversionCaution(atoms: readonly number[]): Note {
   return {
@@ -70,7 +85,7 @@ export function inversionCaution(atoms: readonly number[]): Note {
 const HYDROGEN_BOND_CAUTION: Note = {
   code: 'caution/hydrogen-bond',
   message:
-    'The molecule closes an internal hydrogen bond on the way round. Gas-phase MMFF94 electrostatics overbind it, so wells that have it are too deep; repeat the scan with the distance-dependent dielectric, and trust neither in a protic solvent.',
+    'The molecule closes an internal hydrogen bond on the way round. Gas-phase MMFF94 electrostatics overbind it, so wells that have it are too deep; repeat the scan with the distance-dependent dielectric (--dielectric distance:1), and trust neither in a protic solvent.',
 };
 
 const SCREENED_HYDROGEN_BOND_CAUTION: Note = {

@@ -1,5 +1,6 @@
 /** Free energies and tunnelling of the wells and saddles round one turn, from their frequencies. */
 import { type Coordinates, TordialError } from '@tordial/geometry';
+import { basinThermodynamics, type RotorBasin } from './hindered-rotor/basin.js';
 import { rigidRotorHarmonicOscillator } from './rrho.js';
 import { wignerTransmission } from './wigner.js';
 
@@ -11,6 +12,8 @@ export interface RefinedPoint {
   readonly coordinates: Coordinates;
   /** cm-1, imaginary ones negative: none for a well, exactly one for a saddle. */
   readonly frequencies: ArrayLike<number>;
+  /** Of a well: the mode (index among the frequencies) whose place its basin of the hindered rotor takes; an oscillator when left out. */
+  readonly torsion?: { readonly mode: number; readonly basin: RotorBasin };
 }
 
 /**
@@ -19,6 +22,9 @@ export interface RefinedPoint {
  *
  * Every well of the turn is in the list, copies with equal atoms exchanged among them, so the symmetry is counted by listing and the external symmetry
  * number is left at 1 throughout: rotations of the whole molecule keep the torsion angle, and their number is the same all the way round.
+ *
+ * A hindered rotor comes in well by well: the whole rotor in the place of one well's mode would count its other wells twice. At a saddle its mode is the
+ * imaginary one, and there is nothing to replace.
  *
  * Throws `free-energy/index` for a well with an imaginary frequency or a saddle without exactly one.
  */
@@ -32,11 +38,11 @@ export function freeEnergiesOf(
 } {
   for (const [i, well] of wells.entries()) requireIndex(`well ${i}`, well, 0);
   for (const [i, saddle] of barriers.entries()) if (saddle) requireIndex(`barrier ${i}`, saddle, 1);
-  const gibbs = ({ energy, coordinates, frequencies }: RefinedPoint, temperature: number): number => {
+  const gibbs = ({ energy, coordinates, frequencies, torsion }: RefinedPoint, temperature: number): number => {
     const real = Array.from(frequencies).filter((frequency) => frequency > 0);
-    return (
-      energy + rigidRotorHarmonicOscillator({ coordinates, masses, frequencies: real, symmetryNumber: 1 }, temperature).gibbsCorrection
-    );
+    const replaced = torsion ? [{ mode: torsion.mode, rotor: basinThermodynamics(torsion.basin, temperature) }] : [];
+    const gas = { coordinates, masses, frequencies: real, symmetryNumber: 1 };
+    return energy + rigidRotorHarmonicOscillator(gas, temperature, 1e5, replaced).gibbsCorrection;
   };
   return {
     freeEnergies: (temperature) => ({

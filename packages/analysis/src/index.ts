@@ -23,11 +23,13 @@ export { type SeriesTerm, seriesEnergy, usualPhase, usualTerms } from './fit/ser
 export * from './fit/torsion-smarts.js';
 export * from './free-energies.js';
 export * from './half-life.js';
+export * from './hindered-rotor/basin.js';
 export * from './hindered-rotor/hindered-rotor.js';
 export * from './hindered-rotor/levels.js';
 export * from './hindered-rotor/periodic-series.js';
 export * from './hindered-rotor/reduced-moment.js';
 export * from './hindered-rotor/rotor-of-profile.js';
+export * from './hindered-rotor/rotor-result-of-profile.js';
 export * from './hindered-rotor/thermodynamics.js';
 export * from './hindered-rotor/tunnelling.js';
 export * from './isometries.js';

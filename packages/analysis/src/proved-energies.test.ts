@@ -3,6 +3,7 @@ import { analyseProfile } from './analyse.js';
 import { eyringRate } from './eyring.js';
 import { seriesOfBarriers } from './hindered-rotor/periodic-series.js';
 import { rigidTangent } from './hindered-rotor/reduced-moment.js';
+import { rotorResultOfProfile } from './hindered-rotor/rotor-result-of-profile.js';
 import { geometryAt, PEROXIDE, profileDocument } from './profile.fixture.js';
 import { type ProvedStationaryPoint, provedEnergies } from './proved-energies.js';
 import { vibrations, zeroPointEnergy } from './vibrations.js';
@@ -57,6 +58,33 @@ describe('energies of proved points', () => {
     expect(analysis.rows[0].processes[0].barrier).toBeCloseTo(Math.min(...barriers.map((b) => b ?? 0)) - wells[0], 8);
   });
 
+  it('take the hindered rotor for the torsion of each well on request: its basin against the oscillator of that mode', () => {
+    const oscillators = provedEnergies(document, proof(kinds));
+    const hindered = provedEnergies(document, proof(kinds), MASSES, true);
+    if (!oscillators.freeEnergies || !hindered.freeEnergies) throw new Error('all wells are minima');
+    const [before, after] = [oscillators.freeEnergies(298.15), hindered.freeEnergies(298.15)];
+    expect(after.barriers).toEqual(before.barriers);
+    expect(after.wells[0]).toBeCloseTo(after.wells[1], 6);
+    // both wells together are the rotor of the turn, by Pitzer and Gwinn with the frequency that is replaced
+    const x = Float64Array.from(document.stationaryPoints.find((point) => point.kind === 'well')?.coordinates ?? []);
+    const [frequency] = vibrations(hessianAt(x, 60), x, MASSES).frequencies;
+    const RT = 1.987204259e-3 * 298.15;
+    const [{ classical }] = rotorResultOfProfile(document, [298.15]).rows;
+    const u = (1.438776877 * frequency) / 298.15;
+    const ofBasin = -RT * Math.log((classical.partitionFunction / 2) * (u / 2 / Math.sinh(u / 2)));
+    const ofOscillator = RT * Math.log(2 * Math.sinh(u / 2));
+    expect(rotorResultOfProfile(document, [298.15]).symmetryNumber).toBe(1);
+    expect(after.wells[0] - before.wells[0]).toBeCloseTo(ofBasin - ofOscillator, 3);
+    expect(() =>
+      provedEnergies(
+        document,
+        proof(kinds).map(({ hessian, ...point }) => ({ ...point, frequencies: [frequency, 800, 900, 1000, 1100, 1200] })),
+        MASSES,
+        true,
+      ),
+    ).toThrow(/Hessian/);
+  });
+
   it('count a saddle off the mirror plane twice: its mirror image joins the same wells', () => {
     const turned = (phi: number): Float64Array => Float64Array.from(geometryAt(PEROXIDE, phi));
     const points = proof(kinds).map((point) => {
@@ -81,6 +109,12 @@ describe('energies of proved points', () => {
     expect(odd.saddles.filter((height) => height === null)).toHaveLength(1);
     expect(odd.notes.map((note) => note.code)).toEqual(['proof/saddle']);
     expect(odd.notes[0].message).toMatch(/other saddle/);
+    // the height of the envelope does not take the place of a saddle that was looked for and not found
+    const { rows, cautions } = analyseProfile(document, { saddles: odd.saddles });
+    expect(rows[0].processes[0]).toMatchObject({ barrier: null, forward: null, racemisationHalfLife: null, stabilityClass: null });
+    expect(rows[0].processes[0].refused.map((note) => note.code)).toEqual(['analysis/no-rate']);
+    expect(rows[0].barrierRates.filter((rates) => rates === null)).toHaveLength(1);
+    expect(cautions.map((note) => note.code)).toContain('caution/no-saddle');
     const well = document.stationaryPoints.findIndex((point) => point.kind === 'well');
     const lost = provedEnergies(document, proof(kinds.map((kind, of) => (of === well ? 'merged' : kind))));
     expect(lost.freeEnergies).toBeNull();

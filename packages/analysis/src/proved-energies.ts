@@ -1,11 +1,16 @@
 /** From stationary points that have been proved (wells relaxed without constraint, saddles refined, Hessians at both) to what an analysis takes. */
-import { type Coordinates, type Note, radians, TordialError } from '@tordial/geometry';
-import type { ProfileDocument } from '@tordial/scan';
+import { type Coordinates, degrees, type Note, radians, TordialError } from '@tordial/geometry';
+import { energyAt, type ProfileDocument } from '@tordial/scan';
+import { WAVENUMBER_PER_KCAL } from './constants.js';
 import { massesOfDocument, moleculeOfDocument } from './document-molecule.js';
 import { freeEnergiesOf, type RefinedPoint } from './free-energies.js';
+import { seriesValue } from './hindered-rotor/periodic-series.js';
+import { rigidTangent } from './hindered-rotor/reduced-moment.js';
+import { rotorOfProfile } from './hindered-rotor/rotor-of-profile.js';
 import { isometries } from './isometries.js';
+import { soundCurve } from './profile-checks.js';
 import { rotamers } from './rotamers.js';
-import { vibrations } from './vibrations.js';
+import { modeAlong, vibrations } from './vibrations.js';
 
 /** What a proof says of one stationary point of a profile; scan's `ProvedPoint` is one. */
 export interface ProvedStationaryPoint {
@@ -41,12 +46,14 @@ const ON_MIRROR = 2;
 /**
  * Saddle heights, free energies and transmission coefficients of a profile from its proved points. `masses` in amu, standard weights when left out. A
  * barrier whose saddle joins other wells, has more than one negative mode or was not found stays unknown, so that no rate is taken over it.
- * Throws `proof/points` for points that belong to another document or have neither a Hessian nor frequencies, and as `vibrations` and `freeEnergiesOf` do.
+ * With `hinderedTorsion` the mode of each well that resembles the turn most is replaced by the well's basin of the hindered rotor (`basinThermodynamics`);
+ * that needs the Hessian of every well. Throws `proof/points` for points that belong to another document or have neither a Hessian nor frequencies, and as `vibrations` and `freeEnergiesOf` do.
  */
 export function provedEnergies(
   document: ProfileDocument,
   proved: readonly ProvedStationaryPoint[],
   masses: ArrayLike<number> = massesOfDocument(document.molecule),
+  hinderedTorsion = false,
 ): ProvedEnergies {
   const byPlace = new Map(proved.map((point) => [point.of, point]));
   for (const place of byPlace.keys())
@@ -94,7 +101,7 @@ export function provedEnergies(
   const complete =
     known.length === minima.length
       ? freeEnergiesOf(
-          known.map(refined),
+          hinderedTorsion ? withBasins(document, known, known.map(refined), masses, notes) : known.map(refined),
           saddles.map((point) => point && refined(point)),
           masses,
         )
@@ -106,4 +113,58 @@ export function provedEnergies(
     transmission: complete?.transmission ?? null,
     notes,
   };
+}
+
+/** Cosine between a mode and the turn below which the mode is hardly the rotor's. */
+const RESEMBLES = 0.7;
+
+/** The wells with their basins of the hindered rotor. */
+function withBasins(
+  document: ProfileDocument,
+  minima: readonly ProvedStationaryPoint[],
+  points: readonly RefinedPoint[],
+  masses: ArrayLike<number>,
+  notes: Note[],
+): RefinedPoint[] {
+  const { constant, notes: ofRotor } = rotorOfProfile(document);
+  notes.push(...ofRotor);
+  const curve = soundCurve(document);
+  const { wells, barriers } = rotamers(document);
+  const {
+    axis,
+    sides: [, side],
+  } = document.rotor;
+  return points.map((point, i) => {
+    const { hessian } = minima[i];
+    if (!hessian)
+      throw new TordialError(
+        'proof/points',
+        `the well at ${wells[i].angle.toFixed(1)} degrees has no Hessian: a hindered torsion needs it`,
+      );
+    const modes = vibrations(hessian, point.coordinates, masses);
+    const { mode, overlap } = modeAlong(modes, point.coordinates, masses, rigidTangent(point.coordinates, axis, side));
+    if (overlap < RESEMBLES)
+      notes.push({
+        code: 'rotor/mode',
+        message: `in the well at ${wells[i].angle.toFixed(1)} degrees no vibration is the rotor's own: the nearest, ${modes.frequencies[mode].toFixed(0)} cm-1, overlaps its turn by ${overlap.toFixed(2)}, and a hindered rotor in its place is a rough picture`,
+      });
+    const bottom = energyAt(curve, wells[i].angle);
+    const [before, after] = [barriers[(i - 1 + wells.length) % wells.length].angle, barriers[i].angle];
+    const from = before < wells[i].angle ? before : before - 360;
+    const to = after > wells[i].angle ? after : after + 360;
+    return {
+      ...point,
+      frequencies: modes.frequencies,
+      torsion: {
+        mode,
+        basin: {
+          potential: (phi: number) => (energyAt(curve, degrees(phi)) - bottom) * WAVENUMBER_PER_KCAL,
+          constant: (phi: number) => seriesValue(constant, phi),
+          from: radians(from),
+          to: radians(to),
+          frequency: modes.frequencies[mode],
+        },
+      },
+    };
+  });
 }

@@ -1,7 +1,7 @@
 import { createMolecule, radians } from '@tordial/geometry';
 import { describe, expect, it } from 'vitest';
 import { groupElectronegativity, haasnootCoupling, relativeElectronegativity } from './haasnoot-altona.js';
-import { averagedCouplings, pairCouplings, vicinalCouplings } from './vicinal-couplings.js';
+import { averagedCouplings, hasVicinalProtons, pairCouplings, vicinalCouplings } from './vicinal-couplings.js';
 
 const J = (degrees: number, substituents: Parameters<typeof haasnootCoupling>[1] = []): number =>
   haasnootCoupling(radians(degrees), substituents);
@@ -159,10 +159,30 @@ describe('averages', () => {
     expect(() => averagedCouplings(molecule, [0, 1], [anti], [], 298.15)).toThrow(/one energy for each/);
   });
 
+  it('know the protons of a CH2 again in a geometry that was made by reflection', () => {
+    // X-CH2-CH2-X: gauche one way, and the same atoms mirrored into gauche the other way
+    const molecule = createMolecule({ atomicNumbers: [6, 6, 17, 1, 1, 17, 1, 1], bonds });
+    const gauche = geometry(60);
+    const mirrored = gauche.map((value, n) => (n % 3 === 1 ? -value : value));
+    const turned = geometry(-60);
+    const named = (x: Float64Array) =>
+      new Map(vicinalCouplings(molecule, [0, 1], x, gauche).map(({ protons, coupling }) => [protons.join('-'), coupling]));
+    const [byReflection, byTurning] = [named(mirrored), named(turned)];
+    expect(byReflection.size).toBe(4);
+    for (const [protons, coupling] of byTurning) expect(byReflection.get(protons)).toBeCloseTo(coupling, 8);
+    // both gauche forms together: the two protons of either carbon see the other's alike
+    const mean = averagedCouplings(molecule, [0, 1], [gauche, mirrored], [0, 0], 298.15);
+    const of = (h: number, k: number) => mean.find(({ protons }) => protons[0][0] === h && protons[1][0] === k)?.coupling ?? Number.NaN;
+    expect(of(3, 7)).toBeCloseTo(of(4, 6), 8);
+    expect(of(3, 6)).toBeCloseTo(of(4, 7), 8);
+    expect(Math.abs(of(3, 7) - of(3, 6))).toBeGreaterThan(1);
+  });
+
   it('are refused for other fragments and for missing hydrogens', () => {
     const x = geometry(60);
     const vinyl = createMolecule({ atomicNumbers: [6, 6, 1, 1, 6, 1], bonds: [[0, 1, 1], [0, 2, 1], [0, 3, 1], [0, 4, 1], [1, 5, 2]] }); // biome-ignore format: bonds
     expect(() => pairCouplings(vinyl, [0, 1], x)).toThrow(/not saturated/);
+    expect([vinyl, ethyl(17)].map((molecule) => hasVicinalProtons(molecule, [0, 1]))).toEqual([false, true]);
     const bare = createMolecule({ atomicNumbers: [6, 6], bonds: [[0, 1, 1]] });
     expect(() => pairCouplings(bare, [0, 1], x)).toThrow(/all its hydrogens/);
     const peroxide = createMolecule({ atomicNumbers: [8, 8, 1, 1], bonds: [[0, 1, 1], [0, 2, 1], [1, 3, 1]] }); // biome-ignore format: bonds

@@ -46,10 +46,42 @@ export function pairCouplings(molecule: CouplingMolecule, axis: readonly [number
   );
 }
 
-/** Couplings over `axis` in one geometry, a methyl's protons averaged as they are on the time scale of NMR. Throws as `pairCouplings`. */
-export function vicinalCouplings(molecule: CouplingMolecule, axis: readonly [number, number], x: Coordinates): VicinalCoupling[] {
+/** Whether the axis joins two saturated carbons that both carry protons, so that `vicinalCouplings` has something to give. */
+export function hasVicinalProtons(molecule: CouplingMolecule, axis: readonly [number, number]): boolean {
+  try {
+    axis.forEach((carbon, side) => {
+      substituentsOf(molecule, carbon, axis[1 - side]);
+    });
+    return true;
+  } catch (error) {
+    if (error instanceof TordialError && error.code.startsWith('couplings/')) return false;
+    throw error;
+  }
+}
+
+/**
+ * Couplings over `axis` in one geometry, a methyl's protons averaged as they are on the time scale of NMR. The two protons of a CH2 are told apart by
+ * the side they lie on, as in `reference`: a geometry that was made by reflection has them exchanged. Throws as `pairCouplings`.
+ */
+export function vicinalCouplings(
+  molecule: CouplingMolecule,
+  axis: readonly [number, number],
+  x: Coordinates,
+  reference: Coordinates = x,
+): VicinalCoupling[] {
   const groups = axis.map((carbon, side) => protonGroups(molecule, carbon, axis[1 - side]));
-  const pairs = pairCouplings(molecule, axis, x);
+  const exchanged = new Map<number, number>();
+  groups.forEach((group, side) => {
+    const [p, q] = group.length === 2 ? [group[0][0], group[1][0]] : [0, 0];
+    const centre = [axis[side], axis[1 - side]] as const;
+    if (p === q || handOf(x, ...centre, p, q) * handOf(reference, ...centre, p, q) >= 0) return;
+    exchanged.set(p, q);
+    exchanged.set(q, p);
+  });
+  const pairs = pairCouplings(molecule, axis, x).map(({ protons: [h, k], coupling }) => ({
+    protons: [exchanged.get(h) ?? h, exchanged.get(k) ?? k] as const,
+    coupling,
+  }));
   return groups[0].flatMap((first) =>
     groups[1].map((second) => {
       const members = pairs.filter(({ protons: [h, k] }) => first.includes(h) && second.includes(k));
@@ -60,7 +92,7 @@ export function vicinalCouplings(molecule: CouplingMolecule, axis: readonly [num
 
 /**
  * Couplings averaged over geometries with the Boltzmann weights of their `energies` (kcal/mol) at T, each counted with its `widths` (the share of
- * the turn it stands for; equal when left out). Throws as `pairCouplings`, and `couplings/geometries` when none or of unequal number.
+ * the turn it stands for; equal when left out), the protons of a CH2 as in the first geometry. Throws as `pairCouplings`, and `couplings/geometries` when none or of unequal number.
  */
 export function averagedCouplings(
   molecule: CouplingMolecule,
@@ -78,12 +110,17 @@ export function averagedCouplings(
   const weights = boltzmannPopulations(energies, temperature, widths);
   const sums: { protons: VicinalCoupling['protons']; coupling: number }[] = [];
   geometries.forEach((x, n) => {
-    vicinalCouplings(molecule, axis, x).forEach(({ protons, coupling }, pair) => {
+    vicinalCouplings(molecule, axis, x, geometries[0]).forEach(({ protons, coupling }, pair) => {
       sums[pair] ??= { protons, coupling: 0 };
       sums[pair].coupling += weights[n] * coupling;
     });
   });
   return sums;
+}
+
+/** Sign: on which side of the plane of a carbon, its neighbour on the axis and one proton the other proton lies. */
+function handOf(x: Coordinates, carbon: number, neighbour: number, p: number, q: number): number {
+  return Math.sign(wrapRadians(torsion(x, p, carbon, neighbour, q)));
 }
 
 /** Substituents of an sp3 carbon but for the other carbon of the fragment. */
