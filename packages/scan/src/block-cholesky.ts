@@ -26,25 +26,32 @@ export interface BlockMatrix {
 
 /** The pattern of the factor of a matrix in which `couplings` (pairs of atoms, flat) have a block. */
 export function blockPattern(atomCount: number, couplings: ArrayLike<number>): BlockPattern {
-  const coupled = Array.from({ length: atomCount }, () => new Set<number>());
+  // row i has bit j set while i and j are coupled and neither is eliminated
+  const words = (atomCount + 31) >> 5;
+  const coupled = new Int32Array(atomCount * words);
   for (let n = 0; n < couplings.length; n += 2) {
-    if (couplings[n] === couplings[n + 1]) continue;
-    coupled[couplings[n]].add(couplings[n + 1]);
-    coupled[couplings[n + 1]].add(couplings[n]);
+    const i = couplings[n],
+      j = couplings[n + 1];
+    if (i === j) continue;
+    coupled[i * words + (j >> 5)] |= 1 << (j & 31);
+    coupled[j * words + (i >> 5)] |= 1 << (i & 31);
   }
+  const degree = Int32Array.from({ length: atomCount }, (_, i) => bitCount(coupled, i * words, words));
   const atomAt = new Int32Array(atomCount);
   const positionOf = new Int32Array(atomCount).fill(-1);
-  const columns: Int32Array[] = [];
+  const columns: number[][] = [];
   for (let p = 0; p < atomCount; p++) {
     let least = -1;
-    for (let i = 0; i < atomCount; i++) if (positionOf[i] < 0 && (least < 0 || coupled[i].size < coupled[least].size)) least = i;
+    for (let i = 0; i < atomCount; i++) if (positionOf[i] < 0 && (least < 0 || degree[i] < degree[least])) least = i;
     atomAt[p] = least;
     positionOf[least] = p;
-    const rest = Int32Array.from(coupled[least]);
+    const rest = bitsOf(coupled, least * words, words);
     columns.push(rest);
     for (const i of rest) {
-      coupled[i].delete(least);
-      for (const j of rest) if (j !== i) coupled[i].add(j);
+      for (let w = 0; w < words; w++) coupled[i * words + w] |= coupled[least * words + w];
+      coupled[i * words + (i >> 5)] &= ~(1 << (i & 31));
+      coupled[i * words + (least >> 5)] &= ~(1 << (least & 31));
+      degree[i] = bitCount(coupled, i * words, words);
     }
   }
 
@@ -54,7 +61,7 @@ export function blockPattern(atomCount: number, couplings: ArrayLike<number>): B
   });
   const row = new Int32Array(start[atomCount]);
   columns.forEach((column, p) => {
-    row.set(column.map((i) => positionOf[i]).sort(), start[p]);
+    row.set(Int32Array.from(column, (i) => positionOf[i]).sort(), start[p]);
   });
 
   let pairs = 0;
@@ -75,6 +82,21 @@ export function blockPattern(atomCount: number, couplings: ArrayLike<number>): B
       }
     }
   return { atomCount, atomAt, positionOf, start, row, target };
+}
+
+/** How many bits are set in `words` words of `bits` from `at` on. */
+function bitCount(bits: Int32Array, at: number, words: number): number {
+  let count = 0;
+  for (let w = at; w < at + words; w++) for (let word = bits[w]; word !== 0; word &= word - 1) count++;
+  return count;
+}
+
+/** Which of them are set, ascending. */
+function bitsOf(bits: Int32Array, at: number, words: number): number[] {
+  const set: number[] = [];
+  for (let w = 0; w < words; w++)
+    for (let word = bits[at + w]; word !== 0; word &= word - 1) set.push(32 * w + 31 - Math.clz32(word & -word));
+  return set;
 }
 
 /** A matrix of zeros in the pattern. */

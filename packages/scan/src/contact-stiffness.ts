@@ -43,6 +43,10 @@ const TOUCH = Float64Array.from({ length: KINDS.length ** 2 }, (_, n) => {
   return (low * pair.size) ** 2;
 });
 
+/** Sums of the radii, and what scales the curvature, row by row. */
+const SIZE = Float64Array.from(TOUCH, (_, n) => pairOf(n).size);
+const SCALE = Float64Array.from(TOUCH, (_, n) => pairOf(n).scale);
+
 function pairOf(n: number): { size: number; scale: number } {
   const a = KINDS[Math.floor(n / KINDS.length)];
   const b = KINDS[n % KINDS.length];
@@ -50,11 +54,17 @@ function pairOf(n: number): { size: number; scale: number } {
   return { size, scale: Math.sqrt(a.depth * b.depth) / (size * size) };
 }
 
+/** Atoms j > i that one or two bonds join to each atom i, ascending: `atom[start[i]] .. atom[start[i + 1] - 1]`. */
+export interface BondedRows {
+  readonly start: Int32Array;
+  readonly atom: Int32Array;
+}
+
 /**
- * The pairs i < j of atoms (flat) that touch at x, or would if they were `margin` angstrom closer. Pairs with the key i * atomCount + j in
- * `bonded` are left out.
+ * The pairs i < j of atoms (flat, ascending) that touch at x, or would if they were `margin` angstrom closer, without those that one or two
+ * bonds join.
  */
-export function contactsAt(kinds: Uint8Array, bonded: ReadonlySet<number>, x: Coordinates, margin = 0): number[] {
+export function contactsAt(kinds: Uint8Array, bonded: BondedRows, x: Coordinates, margin = 0): number[] {
   const count = kinds.length;
   const touch = margin === 0 ? TOUCH : TOUCH.map((square) => (square > 0 ? (Math.sqrt(square) + margin) ** 2 : 0));
   const pairs: number[] = [];
@@ -63,11 +73,17 @@ export function contactsAt(kinds: Uint8Array, bonded: ReadonlySet<number>, x: Co
     const xi = x[3 * i],
       yi = x[3 * i + 1],
       zi = x[3 * i + 2];
+    let near = bonded.start[i];
+    const end = bonded.start[i + 1];
     for (let j = i + 1; j < count; j++) {
+      if (near < end && bonded.atom[near] === j) {
+        near++;
+        continue;
+      }
       const dx = xi - x[3 * j],
         dy = yi - x[3 * j + 1],
         dz = zi - x[3 * j + 2];
-      if (dx * dx + dy * dy + dz * dz < touch[row + kinds[j]] && !bonded.has(i * count + j)) pairs.push(i, j);
+      if (dx * dx + dy * dy + dz * dz < touch[row + kinds[j]]) pairs.push(i, j);
     }
   }
   return pairs;
@@ -75,8 +91,8 @@ export function contactsAt(kinds: Uint8Array, bonded: ReadonlySet<number>, x: Co
 
 /** Stiffness along the line between two atoms of these kinds at a distance (angstrom), kcal/mol/angstrom^2. */
 export function contactStiffness(kindI: number, kindJ: number, distance: number): number {
-  const { size, scale } = pairOf(kindI * KINDS.length + kindJ);
-  return Math.min(MOST, scale * bendOfWell(Math.max(0.5, distance / size)));
+  const pair = kindI * KINDS.length + kindJ;
+  return Math.min(MOST, SCALE[pair] * bendOfWell(Math.max(0.5, distance / SIZE[pair])));
 }
 
 /** Second derivative of the buffered 14-7 potential with depth 1 at the distance rho, in units of its minimum's. */

@@ -99,36 +99,35 @@ export function rigidTorque({ torsion: [, a, b], sides }: DrivenRotor, x: Coordi
   return (ax * mx + ay * my + az * mz) / Math.hypot(ax, ay, az);
 }
 
+/** Gradient of the torsion angle at hand. */
+const slope = new Float64Array(12);
+
 /** The rotor held at `angle` (radian). */
 export function heldAt(rotor: DrivenRotor, angle: number): Constraint {
   const [i, a, b, j] = rotor.torsion;
-  const slope = new Float64Array(12);
-  const places = [3 * i, 3 * a, 3 * b, 3 * j];
-  const trial = new Float64Array(3 * rotor.atomCount);
   return {
     retract: (x) => turnTo(rotor, x, angle),
     reduce: (x, gradient) => {
       torsionGradient(x, i, a, b, j, slope);
+      const torque = rigidTorque(rotor, x, gradient);
       let along = 0;
       let square = 0;
-      places.forEach((at, p) => {
-        for (let k = 0; k < 3; k++) {
-          along += gradient[at + k] * slope[3 * p + k];
-          square += slope[3 * p + k] ** 2;
-        }
-      });
-      const torque = rigidTorque(rotor, x, gradient);
-      // E(retract(x)) does not change when side b turns: what is left of the gradient has no torque about the axis
-      trial.set(gradient);
-      places.forEach((at, p) => {
-        for (let k = 0; k < 3; k++) {
-          trial[at + k] -= (along / square) * slope[3 * p + k];
-          gradient[at + k] -= torque * slope[3 * p + k];
-        }
-      });
-      return largest(trial);
+      for (let k = 0; k < 12; k++) {
+        along += gradient[3 * rotor.torsion[Math.trunc(k / 3)] + (k % 3)] * slope[k];
+        square += slope[k] * slope[k];
+      }
+      // first the part tangent to the constraint, to be measured; then the gradient of E(retract(x)), which has no torque about the axis
+      addSlope(rotor.torsion, gradient, -along / square);
+      const residual = largest(gradient);
+      addSlope(rotor.torsion, gradient, along / square - torque);
+      return residual;
     },
   };
+}
+
+/** Adds a multiple of the slope of the torsion angle to a gradient. */
+function addSlope(torsion: Torsion, gradient: Float64Array, by: number): void {
+  for (let p = 0; p < 4; p++) for (let k = 0; k < 3; k++) gradient[3 * torsion[p] + k] += by * slope[3 * p + k];
 }
 
 /**

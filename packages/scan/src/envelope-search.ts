@@ -13,7 +13,7 @@ import type { Calculation } from './potential.js';
 import { predictedStart } from './predicted-start.js';
 import { relaxationAt } from './relax-at.js';
 import type { RingGuard } from './ring-torsion.js';
-import { rotorOfTorsion } from './rotors/rotor.js';
+import { periodAbout } from './rotors/symmetry-number.js';
 import { report, type ScanTask } from './scan-task.js';
 import { forget, type SecantMemory, secantMemory } from './secant-memory.js';
 import { type OtherRotor, otherRotors, turnedRotors, turnedTogether } from './turned-rotors.js';
@@ -41,7 +41,7 @@ export function newSearch(scan: ScanTask, mirror: Search['mirror'], guard: RingG
     map: branches(scan.angles.length, mirror ? oppositePlaces(scan.angles) : null, mirror ?? undefined),
     mirror,
     guard,
-    period: scan.rotor.inRing ? 360 : rotorOfTorsion(scan.molecule, scan.rotor.torsion).periodicity,
+    period: scan.rotor.inRing ? 360 : periodAbout(scan.molecule, scan.rotor.torsion, scan.rotor.sides),
   };
 }
 

@@ -10,7 +10,7 @@
 import { type Coordinates, type Molecule, TordialError } from '@tordial/geometry';
 import { drive } from './drive.js';
 import { modelHessian } from './model-hessian.js';
-import type { Calculation, Potential, Question } from './potential.js';
+import type { Calculation, Potential } from './potential.js';
 import { forget, remember, type SecantMemory, searchDirection, secantMemory } from './secant-memory.js';
 
 /** A symmetric positive definite approximation P of the Hessian. */
@@ -77,13 +77,7 @@ export function* minimise(start: Coordinates, preconditioner: Preconditioner, op
   const memory = options.memory ?? secantMemory(length, MEMORY);
   const x = start.slice();
   const raw = new Float64Array(length);
-  const gradient = new Float64Array(length);
-  const solved = new Float64Array(length);
-  const direction = new Float64Array(length);
-  const work = new Float64Array(length);
-  const trialReduced = new Float64Array(length);
-  const trialSolved = new Float64Array(length);
-  const question: Question = { x: new Float64Array(length), gradient: new Float64Array(length) };
+  const { reduced: gradient, trialReduced, direction, change, question } = memory.work;
 
   constraint?.retract(x);
   question.x.set(x);
@@ -97,18 +91,15 @@ export function* minimise(start: Coordinates, preconditioner: Preconditioner, op
       'scan/energy',
       'the potential gives no finite energy and gradient for the geometry that a relaxation starts from',
     );
-  if (residual > tolerance && preconditioner.follow?.(x)) forget(memory);
+  if (residual > tolerance) preconditioner.follow?.(x);
   let radius = maxStep;
-  let solvedAt = false;
 
   while (residual > tolerance && evaluations < maxEvaluations) {
-    if (!solvedAt) preconditioner.solve(gradient, solved);
-    solvedAt = true;
-    searchDirection(memory, gradient, solved, direction, work);
+    searchDirection(memory, preconditioner, gradient, direction, change);
     let slope = dot(gradient, direction);
     if (!(slope < 0)) {
       forget(memory);
-      searchDirection(memory, gradient, solved, direction, work);
+      searchDirection(memory, preconditioner, gradient, direction, change);
       slope = dot(gradient, direction);
       if (!(slope < 0)) break;
     }
@@ -119,7 +110,7 @@ export function* minimise(start: Coordinates, preconditioner: Preconditioner, op
     let accepted = false;
     let tries = 0;
     for (; tries < 12 && evaluations < maxEvaluations; tries++) {
-      for (let k = 0; k < length; k++) question.x[k] = x[k] + scale * direction[k];
+      stepAlong(x, scale, direction, question.x);
       constraint?.retract(question.x);
       const trial = yield question;
       evaluations++;
@@ -133,18 +124,13 @@ export function* minimise(start: Coordinates, preconditioner: Preconditioner, op
       const decrease = trial - energy;
       const hidden = Math.abs(decrease) <= ROUNDING * (1 + Math.abs(energy)) && trialSlope <= (2 * SUFFICIENT - 1) * slope;
       if (decrease <= SUFFICIENT * scale * slope || hidden || (trialResidual <= tolerance && decrease <= 1e-9)) {
-        preconditioner.solve(trialReduced, trialSolved);
-        // direction becomes the step that was really made, `work` the change of gradient, `solved` that of P^-1 g
-        for (let k = 0; k < length; k++) {
-          direction[k] = question.x[k] - x[k];
-          work[k] = trialReduced[k] - gradient[k];
-          solved[k] = trialSolved[k] - solved[k];
-        }
-        remember(memory, direction, work, solved);
+        // direction becomes the step that was really made, `change` what it did to the gradient
+        difference(question.x, x, direction);
+        difference(trialReduced, gradient, change);
+        remember(memory, direction, change);
         x.set(question.x);
         raw.set(question.gradient);
         gradient.set(trialReduced);
-        solved.set(trialSolved);
         energy = trial;
         residual = trialResidual;
         accepted = true;
@@ -161,10 +147,8 @@ export function* minimise(start: Coordinates, preconditioner: Preconditioner, op
     }
     if (tries > 0) radius = Math.max(0.02, Math.min(radius, scale * reach));
     else if (limited) radius = Math.min(2 * radius, 2 * maxStep);
-    if (preconditioner.follow?.(x)) {
-      forget(memory);
-      solvedAt = false;
-    }
+    // pairs from before the model had to change belong to another part of the surface
+    if (preconditioner.follow?.(x)) forget(memory);
   }
   return { coordinates: x, energy, gradient: raw, gradientMax: residual, converged: residual <= tolerance, evaluations };
 }
@@ -176,6 +160,16 @@ function shorter(change: number, slope: number, trialSlope: number): number {
   const root = Math.sqrt(Math.max(0, b * b - 3 * a * slope));
   const best = Math.abs(a) > 1e-14 * Math.abs(b) ? (root - b) / (3 * a) : -slope / (2 * b);
   return Number.isFinite(best) ? Math.min(Math.max(best, 0.1), 0.5) : 0.25;
+}
+
+/** Writes x + scale d into `out`. */
+function stepAlong(x: Float64Array, scale: number, d: Float64Array, out: Float64Array): void {
+  for (let k = 0; k < x.length; k++) out[k] = x[k] + scale * d[k];
+}
+
+/** Writes u - v into `out`. */
+function difference(u: Float64Array, v: Float64Array, out: Float64Array): void {
+  for (let k = 0; k < u.length; k++) out[k] = u[k] - v[k];
 }
 
 function dot(u: Float64Array, v: Float64Array): number {

@@ -1,19 +1,9 @@
 /** The internal coordinates that a molecule's model Hessian is made of, and how stiff those are that depend on the kind of bond. */
 import { type Molecule, neighboursOf } from '@tordial/geometry';
-import { contactKinds } from './contact-stiffness.js';
+import { type BondedRows, contactKinds } from './contact-stiffness.js';
 import { aromaticAtoms } from './rotors/aromatic-atoms.js';
 import { atomShape } from './rotors/atom-shape.js';
 import type { Torsion } from './rotors/defining-torsion.js';
-
-/** A torsion about the driven one's axis, as the difference of the two. */
-export interface TorsionDifference {
-  readonly torsion: Torsion;
-  /** kcal/mol/radian^2. */
-  readonly force: number;
-  /** The atoms of both torsions, each once, this torsion's own first; and where among them the driven one's stand. */
-  readonly atoms: Int32Array;
-  readonly placeOfDriven: Int32Array;
-}
 
 /** Rows of atoms; made once a molecule and rotor. */
 export interface ModelCoordinates {
@@ -25,28 +15,40 @@ export interface ModelCoordinates {
   readonly torsions: Int32Array;
   /** Force constant of each torsion, kcal/mol/radian^2. */
   readonly torsionForces: Float64Array;
-  /** The torsion that a constraint holds, and the others on its axis: only what they differ by is free to change. */
+  /**
+   * The torsion that a constraint holds, in the direction of its bond, and the others on its axis: only what they differ by is free to change.
+   * Each row has the four atoms of such a torsion, which shares one end with the driven one, and that one's other end.
+   */
   readonly driven: Torsion | null;
-  readonly differences: readonly TorsionDifference[];
+  readonly differences: Int32Array;
+  /** Force constant of each difference, kcal/mol/radian^2. */
+  readonly differenceForce: number;
   /** A planar centre and its three neighbours. */
   readonly planes: Int32Array;
   /** Periods of the table of constants (1, 2, 3) by atom. */
   readonly period: Uint8Array;
-  /** Kinds of atoms as partners in contacts, and the pairs i < j, as i * atomCount + j, that one or two bonds join: no contacts. */
+  /** Kinds of atoms as partners in contacts, and the pairs that one or two bonds join: no contacts. */
   readonly contactKinds: Uint8Array;
-  readonly bonded: ReadonlySet<number>;
+  readonly bonded: BondedRows;
   readonly fragments: number;
 }
 
 /** Stiffness of turning about a bond, kcal/mol/radian^2, shared out among the torsions about it. */
 const TURN = { aromatic: 60, double: 100, amide: 30, conjugated: 10, planarToOther: 2, other: 10 };
 
-/** Lists the coordinates. With `driven`, they are those of the energy minimised with this torsion angle held. */
+/**
+ * Lists the coordinates. With `driven`, they are those of the energy minimised with this torsion angle held.
+ *
+ * Of the torsions about a bond only those count that share an end with one of them, the driven one where there is one: bends hold the other
+ * ends together, and the fewer atoms a coordinate couples, the sparser the matrix.
+ */
 export function modelCoordinates(molecule: Molecule, driven: Torsion | null = null): ModelCoordinates {
   const { atomCount, bonds, neighbours } = molecule;
   const torsions: number[] = [];
   const torsionForces: number[] = [];
-  const differences: TorsionDifference[] = [];
+  const differences: number[] = [];
+  let differenceForce = 0;
+  let drivenAlong: Torsion | null = null;
   const stiffnessOf = turningStiffness(molecule);
   for (let n = 0; n < bonds.count; n++) {
     const b = bonds.a[n];
@@ -54,14 +56,23 @@ export function modelCoordinates(molecule: Molecule, driven: Torsion | null = nu
     const about: Torsion[] = [];
     for (const a of neighboursOf(molecule, b))
       for (const d of neighboursOf(molecule, c)) if (a !== c && d !== b && a !== d) about.push([a, b, c, d]);
-    const force = stiffnessOf(n) / about.length;
+    if (about.length === 0) continue;
     const onDrivenAxis = driven !== null && Math.min(driven[1], driven[2]) === b && Math.max(driven[1], driven[2]) === c;
-    for (const torsion of about)
-      if (onDrivenAxis) differences.push(differenceOf(torsion, driven, force));
-      else {
+    const [front, , , rear]: Torsion = onDrivenAxis && driven[1] === c ? reversed(driven) : onDrivenAxis ? driven : about[0];
+    const sharing = about.filter(([a, , , d]) => a === front || d === rear);
+    const force = stiffnessOf(n) / sharing.length;
+    if (onDrivenAxis) {
+      drivenAlong = [front, b, c, rear];
+      differenceForce = force;
+    }
+    for (const torsion of sharing) {
+      const [a, , , d] = torsion;
+      if (!onDrivenAxis) {
         torsions.push(...torsion);
         torsionForces.push(force);
-      }
+      } else if (a !== front) differences.push(...torsion, front);
+      else if (d !== rear) differences.push(...torsion, rear);
+    }
   }
 
   const angles: number[] = [];
@@ -76,10 +87,6 @@ export function modelCoordinates(molecule: Molecule, driven: Torsion | null = nu
     if (atomShape(molecule, j) === 'planar') planes.push(j, ...neighboursOf(molecule, j));
   }
 
-  const bonded = new Set<number>();
-  const join = (i: number, j: number) => bonded.add(Math.min(i, j) * atomCount + Math.max(i, j));
-  for (let n = 0; n < bonds.count; n++) join(bonds.a[n], bonds.b[n]);
-  for (let n = 0; n < angles.length; n += 3) join(angles[n], angles[n + 2]);
   return {
     atomCount,
     bonds: Int32Array.from({ length: 2 * bonds.count }, (_, n) => (n % 2 === 0 ? bonds.a[n >> 1] : bonds.b[n >> 1])),
@@ -87,24 +94,35 @@ export function modelCoordinates(molecule: Molecule, driven: Torsion | null = nu
     angleBonds: Int32Array.from(angleBonds),
     torsions: Int32Array.from(torsions),
     torsionForces: Float64Array.from(torsionForces),
-    driven,
-    differences,
+    driven: drivenAlong,
+    differences: Int32Array.from(differences),
+    differenceForce,
     planes: Int32Array.from(planes),
     period: molecule.atomicNumbers.map((z) => (z <= 2 ? 1 : z <= 10 ? 2 : 3)),
     contactKinds: contactKinds(molecule),
-    bonded,
+    bonded: bondedRows(molecule),
     fragments: fragmentCount(molecule),
   };
 }
 
-function differenceOf(torsion: Torsion, driven: Torsion, force: number): TorsionDifference {
-  const atoms = [...new Set([...torsion, ...driven])];
-  return {
-    torsion,
-    force,
-    atoms: Int32Array.from(atoms),
-    placeOfDriven: Int32Array.from(driven, (atom) => atoms.indexOf(atom)),
-  };
+function reversed([i, a, b, j]: Torsion): Torsion {
+  return [j, b, a, i];
+}
+
+function bondedRows(molecule: Molecule): BondedRows {
+  const { atomCount } = molecule;
+  const start = new Int32Array(atomCount + 1);
+  const atom: number[] = [];
+  for (let i = 0; i < atomCount; i++) {
+    const reached = new Set<number>();
+    for (const j of neighboursOf(molecule, i)) {
+      reached.add(j);
+      for (const k of neighboursOf(molecule, j)) reached.add(k);
+    }
+    atom.push(...[...reached].filter((j) => j > i).sort((p, q) => p - q));
+    start[i + 1] = atom.length;
+  }
+  return { start, atom: Int32Array.from(atom) };
 }
 
 /** How stiffly the two sides of a bond (by index) resist being turned. */

@@ -51,7 +51,10 @@ const ROOM = 0.4;
 /** So many times the contacts at hand may have room. */
 const IDLE = 3;
 
-/** Coordinates of one kind with the blocks of the matrix that they add to: for atoms p >= q of a row, twice the offset, plus 1 if q is its row. */
+/**
+ * Coordinates of one kind, `width` atoms a row, with the blocks of the matrix that they add to: for each pair p >= q of a row's atoms 64 times
+ * the offset, plus 8 times the place in the row of the atom that is the block's row, plus that of its column's.
+ */
 interface Placed {
   readonly atoms: Int32Array;
   readonly blocks: Int32Array;
@@ -63,41 +66,44 @@ interface Placed {
  */
 export function modelHessian(molecule: Molecule, driven: Torsion | null = null): Required<Preconditioner> {
   const model = modelCoordinates(molecule, driven);
-  const { atomCount, bonds, angles, torsions, differences, planes } = model;
+  const { atomCount, bonds } = model;
   const couplings = couplingsOf(model);
   const shift = model.fragments > 1 ? SHIFT_BETWEEN_FRAGMENTS : SHIFT;
   const work = new Float64Array(3 * atomCount);
   const made = new Float64Array(3 * atomCount);
-  let ready = false;
   const rho = new Float64Array(bonds.length / 2);
-  const room = new Set<number>();
-  let matrix = blockMatrix(blockPattern(atomCount, couplings));
-  let placed = place(matrix.pattern);
+  let ready = false;
+  let room: readonly number[] = [];
+  let layout = layOut();
 
-  function place(pattern: BlockPattern) {
+  /** A matrix with room for the coordinates, and where they stand in it. */
+  function layOut() {
+    const pattern = blockPattern(atomCount, [...couplings, ...room]);
     return {
+      matrix: blockMatrix(pattern),
       bonds: placedIn(pattern, bonds, 2),
-      angles: placedIn(pattern, angles, 3),
-      torsions: placedIn(pattern, torsions, 4),
-      planes: placedIn(pattern, planes, 4),
-      differences: differences.map(({ atoms }) => placedIn(pattern, atoms, atoms.length)),
+      angles: placedIn(pattern, model.angles, 3),
+      torsions: placedIn(pattern, model.torsions, 4),
+      differences: placedIn(pattern, model.differences, 5),
+      planes: placedIn(pattern, model.planes, 4),
+      contacts: placedIn(pattern, room, 2),
     };
   }
 
   function make(x: Coordinates): void {
     made.set(x);
     const contacts = contactsAt(model.contactKinds, model.bonded, x);
-    if (!hasRoom(contacts)) makeRoom(x);
-    const { values, pattern } = matrix;
+    if (!isAmong(contacts, room)) makeRoom(x);
+    const { values } = layout.matrix;
     values.fill(0);
     for (let d = 0; d < 9 * atomCount; d += 9) values[d] = values[d + 4] = values[d + 8] = shift;
-    addContacts(model, placedIn(pattern, Int32Array.from(contacts), 2), x, values);
-    addStretches(model, placed.bonds, x, rho, values);
-    addBends(model, placed.angles, x, rho, values);
-    addTorsions(model, placed.torsions, x, values);
-    addDifferences(model, placed.differences, x, values);
-    addPlanes(placed.planes, x, values);
-    factorise(matrix, 1e-3 * shift);
+    addContacts(model, layout.contacts, contacts, x, values);
+    addStretches(model, layout.bonds, x, rho, values);
+    addBends(model, layout.angles, x, rho, values);
+    addTorsions(model, layout.torsions, x, values);
+    addDifferences(model, layout.differences, x, values);
+    addPlanes(layout.planes, x, values);
+    factorise(layout.matrix, 1e-3 * shift);
   }
 
   function isStale(x: Coordinates): boolean {
@@ -109,23 +115,15 @@ export function modelHessian(molecule: Molecule, driven: Torsion | null = null):
     return false;
   }
 
-  function hasRoom(contacts: readonly number[]): boolean {
-    for (let n = 0; n < contacts.length; n += 2) if (!room.has(contacts[n] * atomCount + contacts[n + 1])) return false;
-    return true;
-  }
-
   /** Contacts come and go along a scan: those met before keep their room, until most of it lies idle. */
   function makeRoom(x: Coordinates): void {
     const near = contactsAt(model.contactKinds, model.bonded, x, ROOM);
-    if (2 * room.size > IDLE * near.length) room.clear();
-    for (let n = 0; n < near.length; n += 2) room.add(near[n] * atomCount + near[n + 1]);
-    const pairs = [...room].flatMap((key) => [Math.floor(key / atomCount), key % atomCount]);
-    matrix = blockMatrix(blockPattern(atomCount, [...couplings, ...pairs]));
-    placed = place(matrix.pattern);
+    room = room.length > IDLE * near.length ? near : merged(near, room, atomCount);
+    layout = layOut();
   }
 
   return {
-    solve: (v, out) => solveFactorised(matrix, v, out, work),
+    solve: (v, out) => solveFactorised(layout.matrix, v, out, work),
     follow: (x) => {
       if (ready && !isStale(x)) return false;
       make(x);
@@ -140,11 +138,29 @@ function couplingsOf({ bonds, angles, torsions, differences }: ModelCoordinates)
   const pairs = [...bonds];
   for (let n = 0; n < angles.length; n += 3) pairs.push(angles[n], angles[n + 2]);
   for (let n = 0; n < torsions.length; n += 4) pairs.push(torsions[n], torsions[n + 3]);
-  for (const { atoms } of differences) for (const i of atoms) for (const j of atoms) if (i < j) pairs.push(i, j);
+  for (let n = 0; n < differences.length; n += 5)
+    for (let p = 1; p < 5; p++) for (let q = 0; q < p; q++) pairs.push(differences[n + q], differences[n + p]);
   return pairs;
 }
 
-function placedIn(pattern: BlockPattern, atoms: Int32Array, width: number): Placed {
+/** Whether each of some pairs (flat, ascending) is one of others. */
+function isAmong(pairs: readonly number[], others: readonly number[]): boolean {
+  let at = 0;
+  for (let n = 0; n < pairs.length; n += 2, at += 2) {
+    while (at < others.length && (others[at] !== pairs[n] || others[at + 1] !== pairs[n + 1])) at += 2;
+    if (at >= others.length) return false;
+  }
+  return true;
+}
+
+/** The pairs (flat, ascending) that are in one of two lists or in both. */
+function merged(pairs: readonly number[], others: readonly number[], atomCount: number): number[] {
+  const keys = new Set<number>();
+  for (const list of [pairs, others]) for (let n = 0; n < list.length; n += 2) keys.add(list[n] * atomCount + list[n + 1]);
+  return [...keys].sort((p, q) => p - q).flatMap((key) => [Math.floor(key / atomCount), key % atomCount]);
+}
+
+function placedIn(pattern: BlockPattern, atoms: ArrayLike<number>, width: number): Placed {
   const rows = atoms.length / width;
   const blocks = new Int32Array((rows * width * (width + 1)) / 2);
   let at = 0;
@@ -152,60 +168,88 @@ function placedIn(pattern: BlockPattern, atoms: Int32Array, width: number): Plac
     for (let p = 0; p < width; p++)
       for (let q = 0; q <= p; q++) {
         const { offset, iIsRow } = blockAt(pattern, atoms[n + p], atoms[n + q]);
-        blocks[at++] = 2 * offset + (iIsRow ? 0 : 1);
+        blocks[at++] = 64 * offset + (iIsRow ? 8 * p + q : 8 * q + p);
       }
-  return { atoms, blocks };
+  return { atoms: Int32Array.from(atoms), blocks };
 }
 
-/** Adds k g g^T for a coordinate with the gradient g at `count` atoms, whose blocks start at `at`. */
-function addCoordinate(values: Float64Array, blocks: Int32Array, at: number, count: number, g: Float64Array, k: number): void {
-  for (let p = 0, n = at; p < count; p++)
-    for (let q = 0; q <= p; q++, n++) {
-      const flipped = blocks[n] & 1;
-      const row = flipped ? 3 * q : 3 * p;
-      const column = flipped ? 3 * p : 3 * q;
-      const o = blocks[n] >> 1;
-      const c0 = k * g[column],
-        c1 = k * g[column + 1],
-        c2 = k * g[column + 2];
-      const r0 = g[row],
-        r1 = g[row + 1],
-        r2 = g[row + 2];
-      values[o] += r0 * c0;
-      values[o + 1] += r0 * c1;
-      values[o + 2] += r0 * c2;
-      values[o + 3] += r1 * c0;
-      values[o + 4] += r1 * c1;
-      values[o + 5] += r1 * c2;
-      values[o + 6] += r2 * c0;
-      values[o + 7] += r2 * c1;
-      values[o + 8] += r2 * c2;
-    }
+/** Adds k g g^T for a coordinate with the gradient g, to the blocks from `at` up to `end`. */
+function addCoordinate(values: Float64Array, blocks: Int32Array, at: number, end: number, g: Float64Array, k: number): void {
+  for (let n = at; n < end; n++) {
+    const code = blocks[n];
+    const o = code >> 6,
+      row = 3 * ((code >> 3) & 7),
+      column = 3 * (code & 7);
+    const c0 = k * g[column],
+      c1 = k * g[column + 1],
+      c2 = k * g[column + 2];
+    const r0 = g[row],
+      r1 = g[row + 1],
+      r2 = g[row + 2];
+    values[o] += r0 * c0;
+    values[o + 1] += r0 * c1;
+    values[o + 2] += r0 * c2;
+    values[o + 3] += r1 * c0;
+    values[o + 4] += r1 * c1;
+    values[o + 5] += r1 * c2;
+    values[o + 6] += r2 * c0;
+    values[o + 7] += r2 * c1;
+    values[o + 8] += r2 * c2;
+  }
 }
 
-/** Gradient of the coordinate at hand; no coordinate has more than eight atoms. */
-const gradient = new Float64Array(24);
+/** Adds k u u^T for a distance along the unit vector u: to the diagonal blocks of both atoms, and its negative to theirs in common. */
+function addDistance(values: Float64Array, blocks: Int32Array, at: number, ux: number, uy: number, uz: number, k: number): void {
+  const i = blocks[at] >> 6,
+    between = blocks[at + 1] >> 6,
+    j = blocks[at + 2] >> 6;
+  const xx = k * ux * ux,
+    xy = k * ux * uy,
+    xz = k * ux * uz,
+    yy = k * uy * uy,
+    yz = k * uy * uz,
+    zz = k * uz * uz;
+  for (const d of [i, j]) {
+    values[d] += xx;
+    values[d + 3] += xy;
+    values[d + 4] += yy;
+    values[d + 6] += xz;
+    values[d + 7] += yz;
+    values[d + 8] += zz;
+  }
+  values[between] -= xx;
+  values[between + 1] -= xy;
+  values[between + 2] -= xz;
+  values[between + 3] -= xy;
+  values[between + 4] -= yy;
+  values[between + 5] -= yz;
+  values[between + 6] -= xz;
+  values[between + 7] -= yz;
+  values[between + 8] -= zz;
+}
+
+/** Gradient of the coordinate at hand; no coordinate has more than five atoms. */
+const gradient = new Float64Array(15);
 const slope = new Float64Array(12);
 
-/** Writes the gradient of the distance of i and j and returns the distance. */
-function stretchGradient(x: Coordinates, i: number, j: number): number {
-  const dx = x[3 * i] - x[3 * j],
-    dy = x[3 * i + 1] - x[3 * j + 1],
-    dz = x[3 * i + 2] - x[3 * j + 2];
-  const r = Math.max(Math.sqrt(dx * dx + dy * dy + dz * dz), 1e-3);
-  gradient[0] = dx / r;
-  gradient[1] = dy / r;
-  gradient[2] = dz / r;
-  gradient[3] = -gradient[0];
-  gradient[4] = -gradient[1];
-  gradient[5] = -gradient[2];
-  return r;
-}
-
-function addContacts({ contactKinds }: ModelCoordinates, { atoms, blocks }: Placed, x: Coordinates, values: Float64Array): void {
-  for (let n = 0; n < atoms.length; n += 2) {
-    const r = stretchGradient(x, atoms[n], atoms[n + 1]);
-    addCoordinate(values, blocks, (3 * n) / 2, 2, gradient, contactStiffness(contactKinds[atoms[n]], contactKinds[atoms[n + 1]], r));
+/** Adds the contacts (flat pairs, ascending) that are at hand, all of which have room. */
+function addContacts(
+  { contactKinds }: ModelCoordinates,
+  { atoms, blocks }: Placed,
+  contacts: readonly number[],
+  x: Coordinates,
+  values: Float64Array,
+): void {
+  let n = 0;
+  for (let m = 0; m < contacts.length; m += 2) {
+    const i = contacts[m],
+      j = contacts[m + 1];
+    while (atoms[n] !== i || atoms[n + 1] !== j) n += 2;
+    const dx = x[3 * i] - x[3 * j],
+      dy = x[3 * i + 1] - x[3 * j + 1],
+      dz = x[3 * i + 2] - x[3 * j + 2];
+    const r = Math.max(Math.sqrt(dx * dx + dy * dy + dz * dz), 1e-3);
+    addDistance(values, blocks, (3 * n) / 2, dx / r, dy / r, dz / r, contactStiffness(contactKinds[i], contactKinds[j], r));
   }
 }
 
@@ -220,12 +264,16 @@ function addStretches(
   for (let n = 0; n < atoms.length; n += 2) {
     const i = atoms[n],
       j = atoms[n + 1];
-    const r = stretchGradient(x, i, j) / BOHR;
+    const dx = x[3 * i] - x[3 * j],
+      dy = x[3 * i + 1] - x[3 * j + 1],
+      dz = x[3 * i + 2] - x[3 * j + 2];
+    const distance = Math.max(Math.sqrt(dx * dx + dy * dy + dz * dz), 1e-3);
+    const r = distance / BOHR;
     const low = Math.min(period[i], period[j]);
     const row = low === 1 ? Math.max(period[i], period[j]) - 1 : period[i] + period[j] - 1;
     const decay = Math.exp(ALPHA[row] * (REFERENCE[row] * REFERENCE[row] - r * r));
     rho[n / 2] = Math.min(Math.max(decay, LEAST_DECAY), MOST_DECAY);
-    addCoordinate(values, blocks, (3 * n) / 2, 2, gradient, STRETCH * rho[n / 2]);
+    addDistance(values, blocks, (3 * n) / 2, dx / distance, dy / distance, dz / distance, STRETCH * rho[n / 2]);
   }
 }
 
@@ -267,7 +315,7 @@ function addBends(
       gradient[7] = (cosine * vy - uy) * perV;
       gradient[8] = (cosine * vz - uz) * perV;
       for (let m = 0; m < 3; m++) gradient[m + 3] = -gradient[m] - gradient[m + 6];
-      addCoordinate(values, blocks, at, 3, gradient, force);
+      addCoordinate(values, blocks, at, at + 6, gradient, force);
       continue;
     }
     // a straight angle bends alike in every plane through it: the sum over two directions is the projector I - u u^T
@@ -279,7 +327,7 @@ function addBends(
         gradient[o + 6] = (-Math.sign(cosine) * across) / rv;
         gradient[o + 3] = -gradient[o] - gradient[o + 6];
       }
-      addCoordinate(values, blocks, at, 3, gradient, force);
+      addCoordinate(values, blocks, at, at + 6, gradient, force);
     }
   }
 }
@@ -292,23 +340,35 @@ function isBent(g: Float64Array): boolean {
 function addTorsions({ torsionForces }: ModelCoordinates, { atoms, blocks }: Placed, x: Coordinates, values: Float64Array): void {
   for (let n = 0, row = 0; n < atoms.length; n += 4, row++) {
     torsionGradient(x, atoms[n], atoms[n + 1], atoms[n + 2], atoms[n + 3], gradient);
-    if (isBent(gradient)) addCoordinate(values, blocks, 10 * row, 4, gradient, torsionForces[row]);
+    if (isBent(gradient)) addCoordinate(values, blocks, 10 * row, 10 * row + 10, gradient, torsionForces[row]);
   }
 }
 
-/** With the driven torsion held, the others about its axis can change only by what they differ from it (a torsion is the same from either end). */
-function addDifferences({ differences, driven }: ModelCoordinates, placed: readonly Placed[], x: Coordinates, values: Float64Array): void {
+/** With the driven torsion held, the others about its axis can change only by what they differ from it. */
+function addDifferences(
+  { driven, differenceForce }: ModelCoordinates,
+  { atoms, blocks }: Placed,
+  x: Coordinates,
+  values: Float64Array,
+): void {
   if (!driven) return;
-  differences.forEach(({ torsion, atoms, placeOfDriven, force }, n) => {
-    gradient.fill(0);
-    torsionGradient(x, torsion[0], torsion[1], torsion[2], torsion[3], gradient);
-    torsionGradient(x, driven[0], driven[1], driven[2], driven[3], slope);
-    if (!isBent(gradient) || !isBent(slope)) return;
-    placeOfDriven.forEach((place, p) => {
-      for (let k = 0; k < 3; k++) gradient[3 * place + k] -= slope[3 * p + k];
-    });
-    addCoordinate(values, placed[n].blocks, 0, atoms.length, gradient, force);
-  });
+  const [front, b, c, rear] = driven;
+  torsionGradient(x, front, b, c, rear, slope);
+  if (!isBent(slope)) return;
+  for (let n = 0, at = 0; n < atoms.length; n += 5, at += 15) {
+    torsionGradient(x, atoms[n], b, c, atoms[n + 3], gradient);
+    if (!isBent(gradient)) continue;
+    const frontAt = atoms[n] === front ? 0 : 12,
+      rearAt = atoms[n + 3] === rear ? 9 : 12;
+    gradient[12] = gradient[13] = gradient[14] = 0;
+    for (let k = 0; k < 3; k++) {
+      gradient[frontAt + k] -= slope[k];
+      gradient[3 + k] -= slope[3 + k];
+      gradient[6 + k] -= slope[6 + k];
+      gradient[rearAt + k] -= slope[9 + k];
+    }
+    addCoordinate(values, blocks, at, at + 15, gradient, differenceForce);
+  }
 }
 
 function addPlanes({ atoms, blocks }: Placed, x: Coordinates, values: Float64Array): void {
@@ -343,6 +403,6 @@ function addPlanes({ atoms, blocks }: Placed, x: Coordinates, values: Float64Arr
       gradient[6 + k] = -weightQ * gradient[k];
       gradient[9 + k] = -weightR * gradient[k];
     }
-    addCoordinate(values, blocks, at, 4, gradient, OUT_OF_PLANE);
+    addCoordinate(values, blocks, at, at + 10, gradient, OUT_OF_PLANE);
   }
 }

@@ -30,10 +30,7 @@ export function* relaxationAt(
 ): Calculation<RelaxedAt> {
   checkBent(rotor, start);
   if (rotor.inRing) return yield* relaxationInRing(rotor, preconditioner, angle, start, options);
-  const constraint = heldAt(rotor, angle);
-  const x = start.slice();
-  constraint.retract(x);
-  const relaxed = yield* minimise(x, preconditioner, { ...options, constraint });
+  const relaxed = yield* minimise(start, preconditioner, { ...options, constraint: heldAt(rotor, angle) });
   checkBent(rotor, relaxed.coordinates);
   return { ...relaxed, torque: rigidTorque(rotor, relaxed.coordinates, relaxed.gradient) };
 }

@@ -31,3 +31,12 @@ export function profilePeriod(first: number, second: number): number {
   while (q > 0) [p, q] = [q, p % q];
   return 360 / ((first * second) / p);
 }
+
+/** Period in degrees of the profile of the bond a-b of a torsion i-a-b-j whose sides have these atoms. */
+export function periodAbout(
+  molecule: Molecule,
+  [, a, b]: readonly [number, number, number, number],
+  sides: { readonly a: Int32Array; readonly b: Int32Array },
+): number {
+  return profilePeriod(symmetryNumberOfSide(molecule, a, b, sides.a), symmetryNumberOfSide(molecule, b, a, sides.b));
+}
