@@ -140,7 +140,7 @@ function coalescenceOf(
       let found: ProcessRates | null = rates;
       // the apparent barrier hardly changes with temperature, so a few rounds settle it; a common shift of all barriers simply adds to it
       for (let round = 0; round < 50 && found; round++) {
-        const target = coalescenceRate(difference, { populations: [found.backward, found.forward], coupling: 0 });
+        const target = coalescenceRate(difference, { populations: equilibrium(found), coupling: 0 });
         const next = temperatureOfRate(target, barrierOfRate(found.forward, T) + shift);
         if (Math.abs(next - T) < 1e-9 * T) return next;
         T = next;
@@ -157,4 +157,9 @@ function coalescenceOf(
       ? { code: 'coalescence/none', message: 'no coalescence: the barrier is too low to slow the exchange to this rate' }
       : { code: problem.code, message: problem.message };
   }
+}
+
+/** Populations of the two sides of a process at equilibrium. */
+function equilibrium({ forward, backward }: ProcessRates): [number, number] {
+  return [backward / (forward + backward), forward / (forward + backward)];
 }

@@ -28,7 +28,7 @@ export function coalescenceRate(difference: number, sites: ExchangingSites): num
   if (!(a > 0 && b > 0 && Math.abs(a - b) <= 0.05 * ((a + b) / 2)))
     throw new TordialError(
       'coalescence/sites',
-      `sites populated ${a} : ${b}: the coalescence formula holds for equal populations only; fit the line shape instead`,
+      `sites populated ${a.toPrecision(3)} : ${b.toPrecision(3)}: the coalescence formula holds for equal populations only; fit the line shape instead`,
     );
   if (sites.coupling !== 0)
     throw new TordialError(

@@ -2,7 +2,7 @@
 import { massesOfDocument, moleculeOfDocument, vibrations } from '@tordial/analysis';
 import { type Mmff94Options, mmff94, type TorsionSeries } from '@tordial/forcefield';
 import { TordialError } from '@tordial/geometry';
-import { type Abortable, type Potential, type ProfileDocument, proof, withProvedPoints } from '@tordial/scan';
+import { type Abortable, drive, numericalHessian, type Potential, type ProfileDocument, proof, withProvedPoints } from '@tordial/scan';
 import { driveInTurns } from './drive-in-turns.js';
 
 export interface ProvedPointsOptions {
@@ -47,6 +47,16 @@ export async function provedPoints(document: ProfileDocument, options: ProvedPoi
   const masses = massesOfDocument(document.molecule);
   const frequencies = points.map(({ hessian, coordinates }) => vibrations(hessian, coordinates, masses).frequencies);
   return withProvedPoints(document, points, frequencies, notes);
+}
+
+/**
+ * Hessians (row-major, kcal/mol/angstrom^2) of the proved minima of a document, by index among its stationary points, calculated again with the potential
+ * that it names. Throws `proof/potential` where it names none.
+ */
+export function hessiansOfWells(document: ProfileDocument): Map<number, Float64Array> {
+  const potential = potentialOf(document);
+  const minima = (document.proved ?? []).filter(({ verdict }) => verdict === 'minimum');
+  return new Map(minima.map(({ of, coordinates }) => [of, drive(numericalHessian(Float64Array.from(coordinates)), potential)]));
 }
 
 /** A document made with torsion series carries them in its provenance, and says so in the potential's name. */

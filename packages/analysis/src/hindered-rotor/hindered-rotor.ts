@@ -2,7 +2,7 @@ import { TordialError } from '@tordial/geometry';
 import { BOLTZMANN_WAVENUMBER } from '../constants.js';
 import { requireTemperature } from '../temperature.js';
 import { bottomOf, torsionalLevels } from './levels.js';
-import { extremaOfSeries, type PeriodicSeries, seriesValue, withoutNoise } from './periodic-series.js';
+import { mainExtrema, type PeriodicSeries, seriesValue, withoutNoise } from './periodic-series.js';
 import {
   classicalThermodynamics,
   type HarmonicWell,
@@ -44,7 +44,7 @@ export interface RotorResult {
   readonly fundamental: number | null;
   /** Splitting of the lowest state, cm-1; null where its wells have no equals. */
   readonly splitting: number | null;
-  /** Every well of the turn as an oscillator, cm-1. */
+  /** Every well of the turn as an oscillator, cm-1; ripples of the potential (`mainExtrema`) are no wells. */
   readonly wells: readonly (HarmonicWell & { readonly angle: number })[];
   readonly periodicity: number;
   /** Highest harmonic of the converged basis. */
@@ -65,7 +65,7 @@ export function hinderedRotor({ potential, constant, symmetryNumber }: HinderedR
   if (!(symmetryNumber >= 1) || !Number.isInteger(symmetryNumber))
     throw new TordialError('rotor/symmetry', `an internal symmetry number of ${symmetryNumber}: give a whole number of 1 or more`);
   const bottom = bottomOf(V);
-  const wells = (V.cosine.length === 1 ? [] : extremaOfSeries(V))
+  const wells = (V.cosine.length === 1 ? [] : mainExtrema(V))
     .filter((extremum) => extremum.kind === 'minimum')
     .map(({ angle, value }) => ({
       angle,

@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import {
   extremaOfSeries,
+  mainExtrema,
   type PeriodicSeries,
   seriesOfBarriers,
   seriesOfFunction,
@@ -69,5 +70,19 @@ describe('periodic series', () => {
     const series = withoutNoise(seriesOfFunction((phi) => 5 + Math.cos(3 * phi), 64));
     expect([...series.cosine]).toEqual([expect.closeTo(5, 12), 0, 0, expect.closeTo(1, 12)]);
     expect([...series.sine]).toEqual([0, 0, 0, 0]);
+  });
+
+  it('has its ripples taken out of its extrema, whatever point the turn begins at', () => {
+    // a twofold potential whose wells are rippled by half a percent, and a sixfold one that is nothing but its ripples
+    for (const begin of [0, 0.4, 1.7, 3]) {
+      const rippled = seriesOfFunction((phi) => 1000 * Math.cos(2 * (phi - begin)) + 8 * Math.cos(24 * (phi - begin)));
+      expect(extremaOfSeries(rippled).length).toBeGreaterThan(4);
+      const main = mainExtrema(rippled);
+      expect(main.map(({ kind }) => kind).sort()).toEqual(['maximum', 'maximum', 'minimum', 'minimum']);
+      const kinds = main.map(({ kind }) => kind);
+      expect(kinds[0]).not.toBe(kinds[1]);
+      expect(kinds[2]).toBe(kinds[0]);
+    }
+    expect(mainExtrema(seriesOfFunction((phi) => 5 * Math.cos(6 * phi)))).toHaveLength(12);
   });
 });

@@ -125,3 +125,25 @@ export function extremaOfSeries(series: PeriodicSeries): SeriesExtremum[] {
   // -180 and 180 are one angle; rounding decides on which side it fell, and it is written as -180
   return found.map((e) => (e.angle > Math.PI - 1e-9 ? { ...e, angle: -Math.PI } : e)).sort((a, b) => a.angle - b.angle);
 }
+
+/** Share of a potential's height that a well must be deep to count: kinks of an envelope leave ripples in its series. */
+const RIPPLE = 0.01;
+
+/**
+ * The extrema of a potential without its ripples: neighbouring extrema that differ by less than a hundredth of the potential's height are taken out in pairs,
+ * the shallowest first. At least one well and one maximum stay.
+ */
+export function mainExtrema(series: PeriodicSeries): SeriesExtremum[] {
+  const kept = extremaOfSeries(series);
+  const values = kept.map(({ value }) => value);
+  const least = RIPPLE * (Math.max(...values) - Math.min(...values));
+  const step = (n: number): number => Math.abs(kept[(n + 1) % kept.length].value - kept[n].value);
+  while (kept.length > 2) {
+    const n = kept.reduce((best, _, at) => (step(at) < step(best) ? at : best), 0);
+    if (step(n) >= least) break;
+    // the pair may lie across the end of the turn
+    kept.splice(n, 1);
+    kept.splice(n === kept.length ? 0 : n, 1);
+  }
+  return kept;
+}

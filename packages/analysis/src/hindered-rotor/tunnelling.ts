@@ -2,7 +2,7 @@
  * Which levels belong together: the copies of one torsional state in equivalent wells, split by tunnelling between them.
  */
 import { occupancy, type TorsionalLevels } from './levels.js';
-import { extremaOfSeries, type PeriodicSeries, type SeriesExtremum, seriesValue, withoutNoise } from './periodic-series.js';
+import { mainExtrema, type PeriodicSeries, type SeriesExtremum, seriesValue, withoutNoise } from './periodic-series.js';
 
 /** One torsional state in a set of equivalent wells: as many levels as wells. */
 export interface Multiplet {
@@ -41,7 +41,7 @@ export function equivalentWells(potential: PeriodicSeries, constant: PeriodicSer
   const { periodicity, even } = torsionalSymmetry(potential, constant);
   if (periodicity === 0) return [];
   const sets: number[][] = [];
-  const wells = extremaOfSeries(withoutNoise(potential)).filter((extremum) => extremum.kind === 'minimum');
+  const wells = mainExtrema(withoutNoise(potential)).filter((extremum) => extremum.kind === 'minimum');
   for (const { angle } of wells) {
     const images = (other: number): boolean => {
       const period = (2 * Math.PI) / periodicity;
@@ -63,7 +63,7 @@ export function equivalentWells(potential: PeriodicSeries, constant: PeriodicSer
 export function multiplets(levels: TorsionalLevels, potential: PeriodicSeries, constant: PeriodicSeries): Multiplet[] {
   const sets = equivalentWells(potential, constant);
   if (sets.length === 0) return [];
-  const tops = extremaOfSeries(withoutNoise(potential)).filter((extremum) => extremum.kind === 'maximum');
+  const tops = mainExtrema(withoutNoise(potential)).filter((extremum) => extremum.kind === 'maximum');
   const highest = Math.max(...tops.map((top) => top.value));
   const above = levels.energies.findIndex((energy) => energy > highest);
   const bound = above < 0 ? levels.energies.length : above;

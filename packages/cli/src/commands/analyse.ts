@@ -8,6 +8,7 @@ export interface AnalyseFlags {
   field?: number;
   barrierError?: number;
   couplings?: boolean;
+  hinderedTorsion?: boolean;
   prove?: boolean;
   unit: 'kcal/mol' | 'kJ/mol';
   json?: boolean;
@@ -17,7 +18,7 @@ export function describeAnalyse(program: Command, finish: Finish): void {
   program
     .command('analyse')
     .argument('<profile>', 'a profile.json, or - for standard input')
-    .description('rotamers, populations, barriers, rates and half-lives of a profile, without scanning again')
+    .description('rotamers, populations, barriers, rates, half-lives, hindered rotor and couplings of a profile, without scanning again')
     .addOption(
       new Option(
         '--temperature <K>',
@@ -27,7 +28,8 @@ export function describeAnalyse(program: Command, finish: Finish): void {
     .addOption(new Option('--shift <ppm>', 'shift difference of two signals, 0.35ppm: adds where they coalesce').argParser(quantity('ppm')))
     .addOption(new Option('--field <MHz>', 'spectrometer frequency of their nucleus, 400MHz').argParser(quantity('MHz')))
     .addOption(new Option('--barrier-error <kcal/mol>', 'assumed error of a barrier').argParser(nonNegativeNumber))
-    .option('--couplings', 'add vicinal H-C-C-H couplings')
+    .option('--couplings', 'insist on vicinal H-C-C-H couplings: an error where the axis has none')
+    .option('--hindered-torsion', 'free energies with the hindered rotor in place of the torsional vibration of each well')
     .option('--prove', 'prove wells and saddles first, where the document does not hold them')
     .addOption(new Option('--unit <unit>', 'unit of energies').choices(['kcal/mol', 'kJ/mol']).default('kcal/mol'))
     .option('--json', 'print the result as JSON on standard output')

@@ -23,6 +23,7 @@ export async function analyseFile(path: string, flags: AnalyseFlags): Promise<nu
     temperatures: flags.temperature ?? USUAL_TEMPERATURES,
     barrierError: flags.barrierError,
     couplings: flags.couplings,
+    hinderedTorsion: flags.hinderedTorsion,
     coalescence: shift !== undefined && field !== undefined ? { shiftDifference: shift, spectrometerFrequency: field } : undefined,
   });
   if (flags.json) {

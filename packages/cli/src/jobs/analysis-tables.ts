@@ -1,27 +1,51 @@
 /** An analysis as tables for people: rotamers and populations, barriers and what was proved of them, processes at each temperature, cautions. */
-import { type AnalysedProcess, durationInWords, type ProfileAnalysis, type Range } from '@tordial/analysis';
+import { type AnalysedProcess, durationInWords, type ProfileAnalysis, type ProfileRotorResult, type Range } from '@tordial/analysis';
+import { degrees } from '@tordial/geometry';
 import type { ProfileDocument, ProfileProvedPoint } from '@tordial/scan';
 import type { DocumentAnalysis } from '../profile-analysis.js';
 import { unitFactor } from './potential.js';
+import { shownAngle } from './shown-angle.js';
 import { table } from './table.js';
 
 type Unit = ProfileDocument['unit'];
 
-/** Everything, every temperature. */
-export function analysisTables(document: ProfileDocument, { electronic, freeEnergy, notes }: DocumentAnalysis, unit: Unit): string {
+/** What stands under a figure: rotamers, barriers, processes, cautions. */
+export function shortTables(document: ProfileDocument, { electronic, freeEnergy, notes }: DocumentAnalysis, unit: Unit): string {
   const best = freeEnergy ?? electronic;
+  return [...firstTables(document, electronic, best, unit), cautionLines([...notes, ...best.cautions])].join('\n');
+}
+
+/** Everything, every temperature. */
+export function analysisTables(
+  document: ProfileDocument,
+  { electronic, freeEnergy, hinderedRotor, notes }: DocumentAnalysis,
+  unit: Unit,
+): string {
+  const best = freeEnergy ?? electronic;
+  return [
+    ...firstTables(document, electronic, best, unit),
+    ...(best.rows.length > 1 ? [populationTable(best)] : []),
+    rateTable(best),
+    ...(hinderedRotor ? [rotorTables(hinderedRotor)] : []),
+    ...(best.rotamerCouplings ? [couplingTable(best)] : []),
+    cautionLines([...notes, ...best.cautions, ...(hinderedRotor?.notes ?? [])]),
+  ].join('\n');
+}
+
+function firstTables(document: ProfileDocument, electronic: ProfileAnalysis, best: ProfileAnalysis, unit: Unit): string[] {
+  const free = best !== electronic;
   return [
     rotamerTable(best, unit),
     barrierTable(document, electronic, unit),
-    ...best.rows.map(({ temperature, processes }) => processTable(processes, temperature, freeEnergy !== null)),
-    ...(best.rotamerCouplings ? [couplingTable(best)] : []),
-    cautionLines([...notes, ...best.cautions]),
-  ].join('\n');
+    ...best.rows.map(({ temperature, processes }) => processTable(processes, temperature, free)),
+  ];
 }
 
 function rotamerTable({ rotamers, rows }: ProfileAnalysis, unit: Unit): string {
   const [{ temperature, populations }] = rows;
   const free = populations.byFreeEnergy;
+  const relations = rotamers.map((_, i) => relationInWords(rotamers, i));
+  const related = relations.some((words) => words !== '');
   const columns = [
     'rotamer',
     'angle (deg)',
@@ -29,16 +53,142 @@ function rotamerTable({ rotamers, rows }: ProfileAnalysis, unit: Unit): string {
     `% at ${temperature} K by energy`,
     'by profile',
     ...(free ? ['by free energy'] : []),
+    ...(related ? ['relation'] : []),
   ];
   return table(
     columns,
     rotamers.map(({ label, angle, energy }, i) => [
       label,
-      angle.toFixed(1),
+      shownAngle(angle),
       (energy * unitFactor(unit)).toFixed(2),
       ...[populations.byEnergy, populations.byProfile, ...(free ? [free] : [])].map((shares) => (100 * shares[i]).toFixed(1)),
+      ...(related ? [relations[i]] : []),
     ]),
   );
+}
+
+/** Which other wells are the same molecule, and which its mirror image; a well that is both has no hand. */
+function relationInWords(rotamers: ProfileAnalysis['rotamers'], i: number): string {
+  const { identical, mirrorImages } = rotamers[i];
+  const at = (wells: readonly number[]): string => wells.map((j) => shownAngle(rotamers[j].angle)).join(', ');
+  const mirrored = mirrorImages.filter((j) => j !== i && !identical.includes(j));
+  const handed = mirrored.length > 0 && !mirrorImages.includes(i);
+  return [...(identical.length > 0 ? [`the same as ${at(identical)}`] : []), ...(handed ? [`enantiomer of ${at(mirrored)}`] : [])].join(
+    ', ',
+  );
+}
+
+/** Populations at every temperature, in percent: by free energy where it is known, else by the energies of the wells. */
+function populationTable({ rotamers, rows }: ProfileAnalysis): string {
+  const [{ populations }] = rows;
+  return table(
+    [
+      `T (K), by ${populations.byFreeEnergy ? 'free ' : ''}energy`,
+      ...rotamers.map(({ label, angle }) => `% ${label} ${shownAngle(angle)}`),
+    ],
+    rows.map(({ temperature, populations: { byFreeEnergy, byEnergy } }) => [
+      `${temperature}`,
+      ...(byFreeEnergy ?? byEnergy).map((share) => (100 * share).toFixed(1)),
+    ]),
+  );
+}
+
+/** Rates over each barrier, both ways, at every temperature. */
+function rateTable({ rotamers, barriers, rows }: ProfileAnalysis): string {
+  return table(
+    ['T (K)', 'barrier (deg)', 'from', 'to', 'k (1/s)', 'k back (1/s)'],
+    rows.flatMap(({ temperature, barrierRates }) =>
+      barrierRates.map((rates, i) => {
+        const [from, to] = barriers[i].wells.map((well) => rotamers[well].label);
+        return [
+          `${temperature}`,
+          shownAngle(barriers[i].angle),
+          from,
+          to,
+          rates ? rates.forward.toExponential(2) : 'no rate',
+          rates ? rates.backward.toExponential(2) : '',
+        ];
+      }),
+    ),
+  );
+}
+
+/** Levels in the list and states in the table below it. */
+const MOST_LEVELS = 12;
+const MOST_STATES = 8;
+
+function rotorTables({
+  momentKind,
+  momentsAtWell,
+  symmetryNumber,
+  zeroPoint,
+  fundamental,
+  splitting,
+  transitions,
+  states,
+  rows,
+}: ProfileRotorResult): string {
+  const { rigid, path, eastRadom, pitzerGwinn } = momentsAtWell;
+  const moments = [
+    `rigid ${rigid.toFixed(2)}`,
+    `relaxed path ${path.toFixed(2)}`,
+    `I(2,3) ${eastRadom.toFixed(2)}`,
+    ...(pitzerGwinn === null ? [] : [`symmetric top ${pitzerGwinn.toFixed(2)}`]),
+  ].join(', ');
+  const heading = [
+    `hindered rotor: reduced moment in the lowest well ${moments} amu angstrom^2 (levels by ${momentKind}), symmetry number ${symmetryNumber}`,
+    `  zero point ${zeroPoint.toFixed(1)} cm-1, fundamental ${fundamental === null ? 'not told from the levels' : `${fundamental.toFixed(1)} cm-1`}, tunnelling splitting ${splitting === null ? (states.length > 0 ? 'none (no equal well)' : 'not told from the levels') : shownSplitting(splitting)} (cm-1)`,
+  ].join('\n');
+  const list = `  levels above the lowest (cm-1): ${transitions
+    .slice(0, MOST_LEVELS)
+    .map((energy) => energy.toFixed(2))
+    .join(', ')} ...\n`;
+  const levels =
+    states.length === 0
+      ? ''
+      : table(
+          ['v', 'wells (deg)', 'above the lowest (cm-1)', 'splitting (cm-1)'],
+          states
+            .slice(0, MOST_STATES)
+            .map(({ quantumNumber, wells, energy, splitting: split }) => [
+              `${quantumNumber}`,
+              wells.map((phi) => shownAngle(degrees(phi))).join(', '),
+              (energy - states[0].energy).toFixed(2),
+              wells.length > 1 ? shownSplitting(split) : '',
+            ]),
+        );
+  const functions = table(
+    ['T (K)', 'values', 'Q', 'S (J/mol/K)', 'Cp (J/mol/K)', 'H-H0 (kcal/mol)'],
+    rows.flatMap(({ temperature, quantum, harmonic, classical, pitzerGwinn: corrected }) =>
+      (
+        [
+          ['quantum', quantum],
+          ['harmonic', harmonic],
+          ['classical', classical],
+          ['Pitzer-Gwinn', corrected],
+        ] as const
+      ).flatMap(([name, values]) =>
+        values
+          ? [
+              [
+                `${temperature}`,
+                name,
+                values.partitionFunction.toPrecision(5),
+                values.entropy.toFixed(2),
+                values.heatCapacity.toFixed(2),
+                values.enthalpy.toFixed(3),
+              ],
+            ]
+          : [],
+      ),
+    ),
+  );
+  return `${heading}\n${list}${levels}\n${functions}  classical H-H0 counts from the bottom of the potential, the others from the lowest level\n`;
+}
+
+function shownSplitting(value: number): string {
+  if (value === 0) return 'below rounding';
+  return value >= 0.001 ? value.toFixed(3) : value.toExponential(1);
 }
 
 function barrierTable(document: ProfileDocument, { barriers, rotamers }: ProfileAnalysis, unit: Unit): string {
@@ -48,7 +198,7 @@ function barrierTable(document: ProfileDocument, { barriers, rotamers }: Profile
     ['barrier between', 'angle (deg)', 'profile', `height (${unit})`, `(${other})`, 'proof'],
     barriers.map(({ wells, angle, kind, energy, saddle, stationaryPoint }) => [
       `${rotamers[wells[0]].label} and ${rotamers[wells[1]].label}`,
-      angle.toFixed(1),
+      shownAngle(angle),
       kind,
       shown(saddle ?? energy, unit),
       shown(saddle ?? energy, other),
@@ -67,7 +217,11 @@ function proofInWords(point: ProfileProvedPoint | undefined): string {
         ? `turn about ${point.motion.atoms.join('-')}`
         : 'this rotor';
   const detour = point.links > 1 ? `, highest of ${point.links} saddles` : '';
-  return `saddle at ${point.angle.toFixed(1)}, ${motion}, overlap ${(point.overlap ?? 0).toFixed(2)}, ${(-point.frequencies[0]).toFixed(0)}i cm-1${detour}`;
+  const inverting =
+    point.inverts.length > 0
+      ? `, ${point.inverts.length === 1 ? 'nitrogen' : 'nitrogens'} ${point.inverts.join(', ')} turned inside out`
+      : '';
+  return `saddle at ${shownAngle(point.angle)}, ${motion}${inverting}, overlap ${(point.overlap ?? 0).toFixed(2)}, ${(-point.frequencies[0]).toFixed(0)}i cm-1${detour}`;
 }
 
 function processTable(processes: readonly AnalysedProcess[], temperature: number, free: boolean): string {
@@ -118,7 +272,7 @@ function couplingTable({ rotamers, rotamerCouplings, rows }: ProfileAnalysis): s
   const [{ couplings, temperature }] = rows;
   if (!rotamerCouplings || !couplings) return '';
   return table(
-    ['3J(H,H) (Hz)', ...rotamers.map(({ label, angle }) => `${label} ${angle.toFixed(0)}`), `averaged at ${temperature} K`],
+    ['3J(H,H) (Hz)', ...rotamers.map(({ label, angle }) => `${label} ${shownAngle(angle)}`), `averaged at ${temperature} K`],
     couplings.map(({ protons, coupling }, n) => [
       protons.map((side) => side.join('/')).join(' '),
       ...rotamerCouplings.map((row) => row[n].coupling.toFixed(1)),

@@ -2,7 +2,8 @@
 import { rotamerLabel } from '@tordial/analysis';
 import { klynePrelogName, type ProfileDocument } from '@tordial/scan';
 import type { DocumentAnalysis } from '../profile-analysis.js';
-import { analysisTables } from './analysis-tables.js';
+import { shortTables } from './analysis-tables.js';
+import { shownAngle } from './shown-angle.js';
 import { table } from './table.js';
 
 export function profileSummary(document: ProfileDocument, analysis: DocumentAnalysis | null): string {
@@ -10,12 +11,12 @@ export function profileSummary(document: ProfileDocument, analysis: DocumentAnal
   const heading = `${molecule.name || molecule.smiles}  torsion ${rotor.torsion.join('-')}  ${rotor.kind}  ${provenance.potential}\n`;
   const rows = stationaryPoints.map(({ kind, angle, relativeEnergy, converged }) => [
     kind,
-    angle.toFixed(1),
+    shownAngle(angle),
     relativeEnergy.toFixed(2),
-    `${kind === 'well' ? klynePrelogName(angle) : ''}${converged ? '' : ' (not converged)'}`,
+    `${kind === 'well' ? klynePrelogName(Number(shownAngle(angle))) : ''}${converged ? '' : ' (not converged)'}`,
   ]);
   const points = table(['point', 'angle (deg)', `energy (${unit})`, 'name'], rows);
-  return `${heading}${served(rotor)}${points}${analysis ? merged(document, analysis) : ''}${analysis ? `\n${analysisTables(document, analysis, unit)}` : ''}`;
+  return `${heading}${served(rotor)}${points}${analysis ? merged(document, analysis) : ''}${analysis ? `\n${shortTables(document, analysis, unit)}` : ''}`;
 }
 
 /** Which other rotors the profile stands for. */
@@ -37,7 +38,7 @@ function merged({ stationaryPoints, unit }: ProfileDocument, { electronic: { rot
       [...names].join(', '),
       `${wells.length}`,
       stationaryPoints[first.stationaryPoints[0]].relativeEnergy.toFixed(2),
-      wells.map(({ angle }) => angle.toFixed(1)).join(', '),
+      wells.map(({ angle }) => shownAngle(angle)).join(', '),
     ];
   });
   return `\n${table(['distinct well', 'degeneracy', `energy (${unit})`, 'angles (deg)'], rows)}`;

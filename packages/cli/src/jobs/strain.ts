@@ -9,6 +9,7 @@ import { eachRecord, tell } from './each-record.js';
 import { readFrames } from './input.js';
 import { unitFactor, variantOf } from './potential.js';
 import { progress } from './progress.js';
+import { shownAngle } from './shown-angle.js';
 import { table } from './table.js';
 
 const ESTIMATE: Note = {
@@ -23,7 +24,7 @@ export function listStrains(argument: string, flags: StrainFlags): Promise<numbe
       const documents = await profilesOf(record, x, flags, label);
       tell(record.notes, label);
       const strain = torsionalStrain(x, documents);
-      const hydrogenBond = hydrogenBondCaution(record.molecule, [x]);
+      const hydrogenBond = hydrogenBondCaution(record.molecule, [x], flags.dielectric);
       const notes = [ESTIMATE, ...strain.notes, ...(hydrogenBond ? [hydrogenBond] : [])];
       if (flags.json)
         process.stdout.write(`${JSON.stringify(inUnit(strain, flags, { name: record.molecule.name, index, frame, notes }))}\n`);
@@ -73,6 +74,6 @@ function inUnit({ rotors, total }: TorsionalStrain, { unit }: StrainFlags, about
 
 function strainTable(label: string, { rotors, total }: TorsionalStrain, { unit }: StrainFlags): string {
   const factor = unitFactor(unit);
-  const rows = rotors.map(({ torsion, kind, angle, energy }) => [torsion.join(','), kind, angle.toFixed(1), (energy * factor).toFixed(2)]);
+  const rows = rotors.map(({ torsion, kind, angle, energy }) => [torsion.join(','), kind, shownAngle(angle), (energy * factor).toFixed(2)]);
   return `${label}: torsional strain ${(total * factor).toFixed(2)} ${unit}\n${table(['torsion', 'kind', 'angle (deg)', `strain (${unit})`], rows)}`;
 }
