@@ -2,8 +2,8 @@
 
 Each point starts from the one before, is minimised with a torsion constraint (forceTol 1e-4, energyTol 1e-6) until the minimiser says that it
 has converged, and its energy is that without the constraint. With `turn`, its torsion is turned to the angle first; without, the constraint
-alone pulls it there. The force constant, 100 kcal/mol/degree^2, keeps angles within 0.001 degree; stiffer ones make the minimiser stop short
-of the minimum. `seconds` is processor time.
+alone pulls it there. `force` is the constraint's force constant, kcal/mol/degree^2. `seconds` is processor time, `off` the largest distance
+of an angle from the one asked for, degrees.
 """
 import json
 import sys
@@ -34,15 +34,17 @@ properties = helpers.MMFFGetMoleculeProperties(molecule, mmffVariant="MMFF94s")
 torsion = data["torsion"]
 begin = time.process_time()
 energies, geometries = [], []
+off = 0.0
 for angle in data["angles"]:
     if data["turn"]:
         rdMolTransforms.SetDihedralDeg(conformer, *torsion, angle)
     field = helpers.MMFFGetMoleculeForceField(molecule, properties)
     field.Initialize()
-    field.MMFFAddTorsionConstraint(*torsion, False, angle, angle, 100.0)
+    field.MMFFAddTorsionConstraint(*torsion, False, angle, angle, data["force"])
     for _ in range(50):
         if field.Minimize(maxIts=200, forceTol=1e-4, energyTol=1e-6) == 0:
             break
+    off = max(off, abs((rdMolTransforms.GetDihedralDeg(conformer, *torsion) - angle + 180) % 360 - 180))
     energies.append(helpers.MMFFGetMoleculeForceField(molecule, properties).CalcEnergy())
     geometries.append([value for point in conformer.GetPositions().tolist() for value in point])
-print(json.dumps({"seconds": time.process_time() - begin, "energies": energies, "geometries": geometries}))
+print(json.dumps({"seconds": time.process_time() - begin, "off": off, "energies": energies, "geometries": geometries}))
