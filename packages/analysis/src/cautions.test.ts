@@ -27,7 +27,7 @@ describe('cautions', () => {
     const open = closed.slice();
     open.set([-0.9, -0.3, 0], 15);
     expect(hydrogenBondCaution(molecule, [open, closed])?.code).toBe('caution/hydrogen-bond');
-    expect(hydrogenBondCaution(molecule, [closed])?.message).toMatch(/overbind.*distance-dependent dielectric/);
+    expect(hydrogenBondCaution(molecule, [closed])?.message).toMatch(/overbind.*distance-dependent dielectric \(--dielectric distance:1\)/);
     for (const dielectric of [
       { model: 'distance', constant: 1 },
       { model: 'constant', constant: 4 },
