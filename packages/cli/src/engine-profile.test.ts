@@ -63,7 +63,9 @@ describe('a profile of a potential that answers later', () => {
 });
 
 const COMMAND = ['qcengine', 'run', 'psi4', '-'];
-const installed = ['psi4', 'qcengine'].every((program) => spawnSync(program, ['--version'], { stdio: 'ignore', cwd: tmpdir() }).status === 0);
+const installed = ['psi4', 'qcengine'].every(
+  (program) => spawnSync(program, ['--version'], { stdio: 'ignore', cwd: tmpdir() }).status === 0,
+);
 if (!installed)
   process.stderr.write(
     'engine tests are skipped: psi4 and qcengine are not installed (Debian: apt-get install -y psi4 python3-qcengine)\n',
