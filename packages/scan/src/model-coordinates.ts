@@ -34,7 +34,7 @@ export interface ModelCoordinates {
 }
 
 /** Stiffness of turning about a bond, kcal/mol/radian^2, shared out among the torsions about it. */
-const TURN = { aromatic: 60, double: 100, amide: 30, conjugated: 10, planarToOther: 2, other: 10 };
+const TURN = { aromatic: 60, double: 100, amide: 30, conjugated: 15, planarToOther: 2, other: 10 };
 
 /**
  * Lists the coordinates. With `driven`, they are those of the energy minimised with this torsion angle held.

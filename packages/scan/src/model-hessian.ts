@@ -22,9 +22,9 @@ import type { Torsion } from './rotors/defining-torsion.js';
 const BOHR = 0.529177210903;
 /** kcal/mol/angstrom^2 and kcal/mol/radian^2 where rho is 1. */
 const STRETCH = 650;
-const BEND = 75;
+const BEND = 85;
 /** Resistance of a planar centre to leaving the plane of its neighbours, kcal/mol/angstrom^2. */
-const OUT_OF_PLANE = 100;
+const OUT_OF_PLANE = 160;
 /** Motions that no internal coordinate resists (the whole molecule's) get this much, kcal/mol/angstrom^2; more where fragments are not held together. */
 const SHIFT = 0.01;
 const SHIFT_BETWEEN_FRAGMENTS = 1;
@@ -34,7 +34,7 @@ const ALPHA = [1.0, 0.3949, 0.3949, 0.28, 0.28, 0.28];
 const REFERENCE = [1.35, 2.1, 2.53, 2.87, 3.4, 3.4];
 /** How far a stretched or squeezed geometry may move rho from 1: an embedded start is no reason for a wild model. */
 const LEAST_DECAY = 0.3;
-const MOST_DECAY = 2;
+const MOST_DECAY = 3;
 
 /** Sine of an angle below which it counts as straight: it bends in two directions, and torsions over it are left out. */
 const STRAIGHT = 0.17;
