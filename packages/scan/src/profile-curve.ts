@@ -102,13 +102,31 @@ function piecesAfter(points: readonly CurvePoint[], n: number, open: boolean): C
   const width = widthAfter(points, n);
   if (!left.breakAfter) return [{ point: n, coefficients: hermite(left, right, width), from: 0, to: 1, side: 'both' }];
 
-  const l = hermite(left, left.beyond ?? continued(points, n, width, 1, open), width);
-  const r = hermite(right.before ?? continued(points, (n + 1) % count, width, -1, open), right, width);
+  const l = hermite(left, left.beyond ?? alongside(right, left, right.before) ?? continued(points, n, width, 1, open), width);
+  const r = hermite(
+    right.before ?? alongside(left, right, left.beyond) ?? continued(points, (n + 1) % count, width, -1, open),
+    right,
+    width,
+  );
   const at = crossing(l, r);
   return [
     { point: n, coefficients: l, from: 0, to: at, side: 'left' },
     { point: n, coefficients: r, from: at, to: 1, side: 'right' },
   ];
+}
+
+/** Branches whose energies differ by less than this across an interval run alongside each other, in the unit of the energies. */
+const CLOSE = 0.2;
+
+/**
+ * Where the branch of `there` would be at the point `here`, given the branch of `here` at `there`: the two are taken to run alongside each other when
+ * they are close. It is not below `here`, which is on the lower one. Undefined when the branch of `here` is unknown or far.
+ */
+function alongside(here: BranchEnd, there: BranchEnd, hereAtThere: BranchEnd | null): BranchEnd | undefined {
+  if (!hereAtThere) return undefined;
+  const gap = there.energy - hereAtThere.energy;
+  if (Math.abs(gap) > CLOSE) return undefined;
+  return { energy: here.energy + Math.max(0, gap), torque: here.torque + there.torque - hereAtThere.torque };
 }
 
 /** Where the branch of point n would be after `width` radian: with the curvature it has between n and its neighbour on the other side. */
@@ -211,7 +229,50 @@ export function allExtrema({ points, pieces, open }: Pick<ProfileCurve, 'points'
     const falls = within ? derivative(following.coefficients, piece.to) : derivative(following.coefficients, 0);
     if (derivative(piece.coefficients, piece.to) > 0 && falls < 0) add('crossing', within ? piece : following, within ? piece.to : 0, 0);
   });
-  return found.sort((p, q) => p.angle - q.angle);
+  return completed(
+    found.sort((p, q) => p.angle - q.angle),
+    points,
+    open,
+  );
+}
+
+/**
+ * Two wells have a maximum between them and two maxima a well. Where the curve does not show it, because it jumps from branch to branch, the
+ * highest or lowest point between the two stands for it.
+ */
+function completed(extrema: readonly CurveExtremum[], points: readonly CurvePoint[], open: boolean): CurveExtremum[] {
+  const missing: CurveExtremum[] = [];
+  extrema.forEach((extremum, n) => {
+    const m = (n + 1) % extrema.length;
+    const other = extrema[m];
+    const isWell = extremum.kind === 'well';
+    if ((open && m === 0) || isWell !== (other.kind === 'well')) return;
+    const wraps = m <= n;
+    const between = [...points.keys()].filter((k) => {
+      const { angle } = points[k];
+      return wraps ? angle > extremum.angle || angle < other.angle : angle > extremum.angle && angle < other.angle;
+    });
+    const sign = isWell ? 1 : -1;
+    const best = between.reduce((p, q) => (sign * points[q].energy > sign * points[p].energy ? q : p), between[0]);
+    if (best === undefined || sign * points[best].energy <= Math.max(sign * extremum.energy, sign * other.energy) + FLAT) return;
+    missing.push(isWell ? { ...standIn(points, best), kind: 'crossing' } : nearWell(points, best, open));
+  });
+  return [...extrema, ...missing].sort((p, q) => p.angle - q.angle);
+}
+
+function standIn(points: readonly CurvePoint[], point: number): CurveExtremum {
+  const { angle, energy } = points[point];
+  return { kind: 'well', angle, energy, curvature: 0, point, fraction: 0, side: 'both' };
+}
+
+/** A well beside a grid point, on the side that its torque points away from. */
+function nearWell(points: readonly CurvePoint[], n: number, open: boolean): CurveExtremum {
+  const { torque } = points[n];
+  const before = torque > 0;
+  const point = before ? (n - 1 + points.length) % points.length : n;
+  if (torque === 0 || (open && (before ? n === 0 : n === points.length - 1))) return standIn(points, n);
+  const width = widthAfter(points, point);
+  return { ...standIn(points, n), point, fraction: before ? 0.9 : 0.1, curvature: Math.abs(torque) / (0.1 * width) };
 }
 
 /** Real roots of a t^2 + b t + c, ascending. */

@@ -93,7 +93,9 @@ export function* stationaryPoint(start: Coordinates, options: SaddleOptions = {}
       age = 0;
     }
     const modes = projectedModes(hessian, taken(x));
-    const chosen = chooseModes(modes, climbed, order);
+    // where the surface already curves down along as many modes as are climbed, those are the ones, whatever the first guess was
+    const settled = n === 0 && negative(modes.eigenvalues) === order;
+    const chosen = chooseModes(modes, settled ? [] : climbed, order);
     const step = rationalStep(modes, chosen, gradient);
     const reach = length(step);
     const scale = reach > radius ? radius / reach : 1;
