@@ -17,8 +17,9 @@ export interface DocumentAnalysis {
   readonly electronic: ProfileAnalysis;
   /** From free energies (rigid rotor, harmonic oscillators, 1 bar) with Wigner tunnelling; null where a well was not proved. */
   readonly freeEnergy: ProfileAnalysis | null;
-  /** The torsion as a hindered rotor; null where the profile cannot be one, with the reason in the notes. */
+  /** The torsion as a hindered rotor; null where the profile cannot be one or is too heavy to be one unasked, with the reason. */
   readonly hinderedRotor: ProfileRotorResult | null;
+  readonly noHinderedRotor: Note | null;
   /** Points that could not be used. */
   readonly notes: readonly Note[];
 }
@@ -26,6 +27,8 @@ export interface DocumentAnalysis {
 export interface DocumentAnalysisOptions extends Pick<AnalysisOptions, 'temperatures' | 'barrierError' | 'coalescence' | 'couplings'> {
   /** In the free energies, the hindered rotor in place of the torsional vibration of each well. Needs proved points and a potential that the document names. */
   readonly hinderedTorsion?: boolean;
+  /** Calculate the levels of a heavy rotor too, which may take minutes; when left out, of those that take no more than a second or two. */
+  readonly hinderedRotor?: boolean;
 }
 
 /**
@@ -38,8 +41,7 @@ export function analyseDocument(document: ProfileDocument, options: DocumentAnal
     if (options.hinderedTorsion)
       throw new TordialError('proof/points', 'a hindered torsion in the free energies needs proved points: add --prove');
     const electronic = analyseProfile(document, options);
-    const { hinderedRotor, refused } = rotorOf(document, options.temperatures);
-    return { electronic, freeEnergy: null, hinderedRotor, notes: refused };
+    return { electronic, freeEnergy: null, ...rotorOf(document, options), notes: [] };
   }
   const factor = kcalPer(document.unit);
   const hessians = options.hinderedTorsion ? hessiansOfWells(document) : null;
@@ -57,23 +59,25 @@ export function analyseDocument(document: ProfileDocument, options: DocumentAnal
     options.hinderedTorsion,
   );
   const electronic = analyseProfile(document, { ...options, saddles, saddleCounts });
-  const { hinderedRotor, refused } = rotorOf(document, options.temperatures);
   return {
     electronic,
     freeEnergy: freeEnergies ? analyseProfile(document, { ...options, saddles, saddleCounts, freeEnergies, transmission }) : null,
-    hinderedRotor,
-    notes: [...notes, ...refused],
+    ...rotorOf(document, options),
+    notes,
   };
 }
 
+/** Largest rotor that is calculated unasked. */
+const LIGHT = 300;
+
 function rotorOf(
   document: ProfileDocument,
-  temperatures: readonly number[] = [298.15],
-): { hinderedRotor: ProfileRotorResult | null; refused: Note[] } {
+  { temperatures = [298.15], hinderedRotor: asked }: DocumentAnalysisOptions,
+): Pick<DocumentAnalysis, 'hinderedRotor' | 'noHinderedRotor'> {
   try {
-    return { hinderedRotor: rotorResultOfProfile(document, temperatures), refused: [] };
+    return { hinderedRotor: rotorResultOfProfile(document, temperatures, { largest: asked ? undefined : LIGHT }), noHinderedRotor: null };
   } catch (error) {
     if (!(error instanceof TordialError)) throw error;
-    return { hinderedRotor: null, refused: [{ code: error.code, message: `no hindered rotor: ${error.message}` }] };
+    return { hinderedRotor: null, noHinderedRotor: { code: error.code, message: `no hindered rotor: ${error.message}` } };
   }
 }

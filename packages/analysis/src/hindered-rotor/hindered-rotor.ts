@@ -52,6 +52,19 @@ export interface RotorResult {
   readonly rows: readonly RotorRow[];
 }
 
+/** Energies that count in a partition function, in kT: what lies beyond adds less than 1e-7. */
+const REACH = 18;
+
+/**
+ * How large a rotor is: about as many levels of one symmetry, sqrt(18 kT / B) of them or twice that where phi and -phi differ, shared by the identical
+ * positions, lie within reach at the highest temperature (K). The work of `hinderedRotor` grows with its cube: a tenth of a second at 100.
+ */
+export function rotorSize({ potential, constant }: HinderedRotor, temperatures: readonly number[]): number {
+  const { periodicity, even } = torsionalSymmetry(potential, constant);
+  const levels = Math.sqrt((REACH * BOLTZMANN_WAVENUMBER * Math.max(...temperatures)) / constant.cosine[0]);
+  return ((even ? 1 : 2) * levels) / Math.max(1, periodicity);
+}
+
 /**
  * Levels, splittings and thermodynamic functions of a hindered rotor at the temperatures given (K), side by side with the harmonic, the
  * classical and the Pitzer-Gwinn values. The quantum of a well is sqrt(2 B V''). Throws as `torsionalLevels` does, and `rotor/symmetry` when
@@ -76,7 +89,7 @@ export function hinderedRotor({ potential, constant, symmetryNumber }: HinderedR
   // what lies beyond 18 kT adds less than 1e-7, and an error of 1e-4 cm-1 up there even less, while the lowest levels come out far better; at low temperatures the lowest torsional states are wanted all the same
   const hottest = Math.max(...temperatures, 1);
   const softest = Math.max(0, ...wells.filter((well) => well.energy < 1e-6).map((well) => well.quantum));
-  const upTo = Math.max(softest / 2 + 18 * BOLTZMANN_WAVENUMBER * hottest, 3 * softest);
+  const upTo = Math.max(softest / 2 + REACH * BOLTZMANN_WAVENUMBER * hottest, 3 * softest);
   const solved = torsionalLevels(V, B, { upTo, tolerance: 1e-4 });
   const levels = solved.energies.map((energy) => energy - bottom);
   const states = multiplets(solved, V, B).map((state) => ({ ...state, energy: state.energy - bottom }));

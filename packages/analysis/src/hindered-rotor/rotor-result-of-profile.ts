@@ -1,8 +1,8 @@
 /** A profile's rotor solved, as plain data: moments, levels, splittings and thermodynamic functions, what a table or a JSON document shows. */
-import type { Note } from '@tordial/geometry';
+import { type Note, TordialError } from '@tordial/geometry';
 import type { ProfileDocument } from '@tordial/scan';
 import { rotamers } from '../rotamers.js';
-import { hinderedRotor, type RotorRow } from './hindered-rotor.js';
+import { hinderedRotor, type RotorRow, rotorSize } from './hindered-rotor.js';
 import { type MomentKind, type ReducedMoments, rotorOfProfile } from './rotor-of-profile.js';
 import type { HarmonicWell } from './thermodynamics.js';
 import type { Multiplet } from './tunnelling.js';
@@ -35,13 +35,30 @@ export interface ProfileRotorResult {
   readonly notes: readonly Note[];
 }
 
-/** The hindered rotor of a profile at the temperatures given (K). Throws as `rotorOfProfile` and `hinderedRotor` do. */
+/** What `rotorResultOfProfile` may be told. */
+export interface RotorResultOptions {
+  /** Which of the moments the levels are calculated with; `rigid` when left out. */
+  readonly momentKind?: MomentKind;
+  /** Largest `rotorSize` that is calculated; no limit when left out. */
+  readonly largest?: number;
+}
+
+/**
+ * The hindered rotor of a profile at the temperatures given (K). Throws `rotor/heavy` for one that is larger than `largest`, and as `rotorOfProfile` and
+ * `hinderedRotor` do.
+ */
 export function rotorResultOfProfile(
   document: ProfileDocument,
   temperatures: readonly number[],
-  momentKind: MomentKind = 'rigid',
+  { momentKind = 'rigid', largest = Number.POSITIVE_INFINITY }: RotorResultOptions = {},
 ): ProfileRotorResult {
   const rotor = rotorOfProfile(document, momentKind);
+  const size = rotorSize(rotor, temperatures);
+  if (size > largest)
+    throw new TordialError(
+      'rotor/heavy',
+      `about ${Math.round(size)} levels of one symmetry lie within reach of ${Math.max(...temperatures)} K, which takes a while: ask for the hindered rotor to have them (--hindered-rotor)`,
+    );
   const { levels, transitions, multiplets, zeroPoint, fundamental, splitting, wells, basis, rows } = hinderedRotor(rotor, temperatures);
   const { angle } = rotamers(document).wells.reduce((best, well) => (well.energy < best.energy ? well : best));
   const away = (other: number): number => Math.abs(((other - angle + 540) % 360) - 180);

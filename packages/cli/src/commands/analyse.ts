@@ -9,6 +9,7 @@ export interface AnalyseFlags {
   barrierError?: number;
   couplings?: boolean;
   hinderedTorsion?: boolean;
+  hinderedRotor?: boolean;
   prove?: boolean;
   unit: 'kcal/mol' | 'kJ/mol';
   json?: boolean;
@@ -29,6 +30,7 @@ export function describeAnalyse(program: Command, finish: Finish): void {
     .addOption(new Option('--field <MHz>', 'spectrometer frequency of their nucleus, 400MHz').argParser(quantity('MHz')))
     .addOption(new Option('--barrier-error <kcal/mol>', 'assumed error of a barrier').argParser(nonNegativeNumber))
     .option('--couplings', 'insist on vicinal H-C-C-H couplings: an error where the axis has none')
+    .option('--hindered-rotor', 'levels and thermodynamic functions of a heavy rotor too, which may take minutes')
     .option('--hindered-torsion', 'free energies with the hindered rotor in place of the torsional vibration of each well')
     .option('--prove', 'prove wells and saddles first, where the document does not hold them')
     .addOption(new Option('--unit <unit>', 'unit of energies').choices(['kcal/mol', 'kJ/mol']).default('kcal/mol'))

@@ -24,6 +24,7 @@ export async function analyseFile(path: string, flags: AnalyseFlags): Promise<nu
     barrierError: flags.barrierError,
     couplings: flags.couplings,
     hinderedTorsion: flags.hinderedTorsion,
+    hinderedRotor: flags.hinderedRotor,
     coalescence: shift !== undefined && field !== undefined ? { shiftDifference: shift, spectrometerFrequency: field } : undefined,
   });
   if (flags.json) {

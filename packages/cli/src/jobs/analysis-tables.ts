@@ -18,7 +18,7 @@ export function shortTables(document: ProfileDocument, { electronic, freeEnergy,
 /** Everything, every temperature. */
 export function analysisTables(
   document: ProfileDocument,
-  { electronic, freeEnergy, hinderedRotor, notes }: DocumentAnalysis,
+  { electronic, freeEnergy, hinderedRotor, noHinderedRotor, notes }: DocumentAnalysis,
   unit: Unit,
 ): string {
   const best = freeEnergy ?? electronic;
@@ -27,6 +27,7 @@ export function analysisTables(
     ...(best.rows.length > 1 ? [populationTable(best)] : []),
     rateTable(best),
     ...(hinderedRotor ? [rotorTables(hinderedRotor)] : []),
+    ...(noHinderedRotor ? [`${noHinderedRotor.message}\n`] : []),
     ...(best.rotamerCouplings ? [couplingTable(best)] : []),
     cautionLines([...notes, ...best.cautions, ...(hinderedRotor?.notes ?? [])]),
   ].join('\n');
