@@ -47,9 +47,9 @@ const STEEP = 36;
  */
 const STALE = 0.03;
 /** Pairs this much (angstrom) too far apart to touch get room in the matrix as well, so that its pattern need not change at each step. */
-const ROOM = 0.4;
+const ROOM = 0.2;
 /** So many times the contacts at hand may have room. */
-const IDLE = 3;
+const IDLE = 1.5;
 
 /**
  * Coordinates of one kind, `width` atoms a row, with the blocks of the matrix that they add to: for each pair p >= q of a row's atoms 64 times
