@@ -37,6 +37,9 @@ const NO_TORQUE = 2e-3;
 const LITTLE_TORQUE = 2e-2;
 const MEET = 1e-3;
 const MOST_STEPS = 8;
+/** Degrees to the maximum that makes a well a step of the envelope, and the height (kcal/mol) up to which it does. */
+const NEAR = 20;
+const STEP = 0.5;
 
 /**
  * Refines each extremum of the curve: wells and barriers by the secant method on the torque, crossings by Newton steps on the difference of the two
@@ -59,9 +62,18 @@ export function* refinedExtrema(
       refined.push(onCurve(curve, { ...point, angle: -point.angle, torque: -point.torque, coordinates: mirror(point.coordinates) }));
   }
   return alternating(
-    refined.sort((p, q) => p.angle - q.angle),
+    refined.filter((point) => !isStep(point, refined)).sort((p, q) => p.angle - q.angle),
     curve.open,
   );
+}
+
+/**
+ * Whether what looked like a well is a step of the envelope: no branch has its minimum there, and the maxima of the profile stand hardly above it.
+ */
+function isStep(point: StationaryPoint, all: readonly StationaryPoint[]): boolean {
+  if (point.kind !== 'well' || Math.abs(point.torque) <= LITTLE_TORQUE) return false;
+  const apart = (other: StationaryPoint): number => Math.abs(wrapDegrees(other.angle - point.angle));
+  return all.some((other) => other.kind !== 'well' && apart(other) < NEAR && other.energy - point.energy < STEP);
 }
 
 /** A stationary point with its angle as the curve counts angles: within the turn, or within the range of an open one. */

@@ -18,6 +18,7 @@ import {
   torsion as torsionAngle,
   wrapDegrees,
 } from '@tordial/geometry';
+import { mirrored } from '../branches.js';
 import { type DrivenRotor, drivenRotor } from '../driven-rotor.js';
 import { minimise, type Preconditioner } from '../minimise.js';
 import { modelHessian } from '../model-hessian.js';
@@ -114,6 +115,8 @@ export interface ProvedPoints {
 const PUSH = 0.15;
 /** A free relaxation that turns the rotor by more than this, degrees, has left its well. */
 const LEFT = 20;
+/** Overlap with the turn of the rotor below which a saddle is another bond's. */
+const TAKES_PART = 0.1;
 /** Two minima whose rotor stands within this, degrees, are at one angle. */
 const SAME_ANGLE = 5;
 /** Degrees between the geometries of a branch that is followed past a crossing, and how far. */
@@ -358,8 +361,15 @@ function* linkAt(work: Proof, structure: StationaryStructure): Calculation<Link 
   return { structure, motion, overlap, bottoms: [bottoms[0], bottoms[1]] };
 }
 
+/**
+ * Whether a path's bottom is a well: the same minimum at the same angle, or one beside it that differs only by the mirror image or by an exchange of
+ * equivalent atoms, such as the other gauche arrangement of a group that the rotor's position does not depend on.
+ */
 function isAt(work: Proof, p: Bottom, q: Bottom): boolean {
-  return Math.abs(wrapDegrees(p.angle - q.angle)) < SAME_ANGLE && work.same(p, q);
+  const apart = Math.abs(wrapDegrees(p.angle - q.angle));
+  if (apart >= LEFT) return false;
+  if (work.same(p, q)) return true;
+  return work.same(p, { energy: q.energy, coordinates: mirrored(q.coordinates) });
 }
 
 /**
@@ -549,14 +559,16 @@ function ofWay(
     return { well: well ? well.of : null, angle: bottom.angle, energy: bottom.energy };
   };
   const [p, q] = top.bottoms;
+  // wells that only another bond's turn joins are not parted by this rotor
+  const own = top.overlap >= TAKES_PART || top.motion.kind === 'inversion';
   return {
     ...plain(work, top.structure, of, candidate.kind, candidate.coordinates),
-    verdict: joined ? 'saddle' : 'other saddle',
+    verdict: joined && own ? 'saddle' : 'other saddle',
     overlap: top.overlap,
     motion: top.motion,
     ends: [end(p), end(q)],
     inverts: invertedBetween(work.molecule, p.coordinates, q.coordinates),
-    links: joined ? way.length : 0,
+    links: joined && own ? way.length : 0,
     sameAs: null,
   };
 }
