@@ -48,4 +48,5 @@ export * from './strain.js';
 export * from './symmetry-number.js';
 export * from './uncertainty.js';
 export * from './vibrations.js';
+export * from './well-thermodynamics.js';
 export * from './wigner.js';

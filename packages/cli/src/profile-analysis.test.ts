@@ -50,6 +50,23 @@ describe('butane', () => {
       expect(Math.abs((pitzerGwinn?.partitionFunction ?? 0) / quantum.partitionFunction - 1)).toBeLessThan(0.02);
   });
 
+  it('has wells whose external symmetry is that of their point groups, C2h and C2', () => {
+    expect(analysis.wells?.map((well) => [well?.symmetryNumber, well?.chiral])).toEqual([
+      [2, false],
+      [2, true],
+      [2, true],
+    ]);
+    // S of the gas mixture at 298.15 K, 310.1 J/mol/K (API tables, from memory): shares of each well with their entropy of mixing
+    const { byFreeEnergy } = analysis.freeEnergy?.rows[1].populations ?? {};
+    const entropy = (byFreeEnergy ?? []).reduce(
+      (sum, share, i) => sum + share * ((analysis.wells?.[i]?.rows[1].entropy ?? Number.NaN) - 8.314462618 * Math.log(share)),
+      0,
+    );
+    // harmonic torsions, of a force field that is stiffer than the molecule, fall short of it
+    expect(entropy).toBeLessThan(310.1);
+    expect(entropy).toBeGreaterThan(310.1 - 9);
+  });
+
   it('has saddles whose rates obey detailed balance with the populations', () => {
     for (const { barrierRates, populations } of analysis.freeEnergy?.rows ?? []) {
       expect(barrierRates).toHaveLength(3);

@@ -7,6 +7,8 @@ import {
   type ProfileRotorResult,
   provedEnergies,
   rotorResultOfProfile,
+  type WellThermodynamics,
+  wellThermodynamics,
 } from '@tordial/analysis';
 import { type Note, TordialError } from '@tordial/geometry';
 import type { ProfileDocument } from '@tordial/scan';
@@ -17,6 +19,8 @@ export interface DocumentAnalysis {
   readonly electronic: ProfileAnalysis;
   /** From free energies (rigid rotor, harmonic oscillators, 1 bar) with Wigner tunnelling; null where a well was not proved. */
   readonly freeEnergy: ProfileAnalysis | null;
+  /** Each well as an ideal gas (rigid rotor, harmonic oscillators), in the order of the rotamers; null without proved points. */
+  readonly wells: readonly (WellThermodynamics | null)[] | null;
   /** The torsion as a hindered rotor; null where the profile cannot be one or is too heavy to be one unasked, with the reason. */
   readonly hinderedRotor: ProfileRotorResult | null;
   readonly noHinderedRotor: Note | null;
@@ -41,7 +45,7 @@ export function analyseDocument(document: ProfileDocument, options: DocumentAnal
     if (options.hinderedTorsion)
       throw new TordialError('proof/points', 'a hindered torsion in the free energies needs proved points: add --prove');
     const electronic = analyseProfile(document, options);
-    return { electronic, freeEnergy: null, ...rotorOf(document, options), notes: [] };
+    return { electronic, freeEnergy: null, wells: null, ...rotorOf(document, options), notes: [] };
   }
   const factor = kcalPer(document.unit);
   const hessians = options.hinderedTorsion ? hessiansOfWells(document) : null;
@@ -62,6 +66,7 @@ export function analyseDocument(document: ProfileDocument, options: DocumentAnal
   return {
     electronic,
     freeEnergy: freeEnergies ? analyseProfile(document, { ...options, saddles, saddleCounts, freeEnergies, transmission }) : null,
+    wells: wellThermodynamics(document, options.temperatures ?? [298.15]),
     ...rotorOf(document, options),
     notes,
   };

@@ -1,5 +1,12 @@
 /** An analysis as tables for people: rotamers and populations, barriers and what was proved of them, processes at each temperature, cautions. */
-import { type AnalysedProcess, durationInWords, type ProfileAnalysis, type ProfileRotorResult, type Range } from '@tordial/analysis';
+import {
+  type AnalysedProcess,
+  durationInWords,
+  type ProfileAnalysis,
+  type ProfileRotorResult,
+  type Range,
+  type WellThermodynamics,
+} from '@tordial/analysis';
 import { degrees } from '@tordial/geometry';
 import type { ProfileDocument, ProfileProvedPoint } from '@tordial/scan';
 import type { DocumentAnalysis } from '../profile-analysis.js';
@@ -18,7 +25,7 @@ export function shortTables(document: ProfileDocument, { electronic, freeEnergy,
 /** Everything, every temperature. */
 export function analysisTables(
   document: ProfileDocument,
-  { electronic, freeEnergy, hinderedRotor, noHinderedRotor, notes }: DocumentAnalysis,
+  { electronic, freeEnergy, wells, hinderedRotor, noHinderedRotor, notes }: DocumentAnalysis,
   unit: Unit,
 ): string {
   const best = freeEnergy ?? electronic;
@@ -26,6 +33,7 @@ export function analysisTables(
     ...firstTables(document, electronic, best, unit),
     ...(best.rows.length > 1 ? [populationTable(best)] : []),
     rateTable(best),
+    ...(wells ? [wellTable(best, wells)] : []),
     ...(hinderedRotor ? [rotorTables(hinderedRotor)] : []),
     ...(noHinderedRotor ? [`${noHinderedRotor.message}\n`] : []),
     ...(best.rotamerCouplings ? [couplingTable(best)] : []),
@@ -110,6 +118,26 @@ function rateTable({ rotamers, barriers, rows }: ProfileAnalysis): string {
           rates ? rates.backward.toExponential(2) : '',
         ];
       }),
+    ),
+  );
+}
+
+/** Each well as an ideal gas at 1 bar. */
+function wellTable({ rotamers }: ProfileAnalysis, wells: readonly (WellThermodynamics | null)[]): string {
+  return table(
+    ['T (K)', 'well by vibrations', 'sigma', 'zero point (kcal/mol)', 'H-H0 (kcal/mol)', 'S (J/mol/K)', 'Cp (J/mol/K)'],
+    wells.flatMap((well, i) =>
+      well
+        ? well.rows.map(({ temperature, zeroPoint, enthalpy, entropy, heatCapacity }) => [
+            `${temperature}`,
+            `${rotamers[i].label} ${shownAngle(rotamers[i].angle)}`,
+            `${well.symmetryNumber}`,
+            zeroPoint.toFixed(3),
+            enthalpy.toFixed(3),
+            entropy.toFixed(2),
+            heatCapacity.toFixed(2),
+          ])
+        : [],
     ),
   );
 }
