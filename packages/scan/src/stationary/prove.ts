@@ -115,6 +115,8 @@ export interface ProvedPoints {
 const PUSH = 0.15;
 /** A free relaxation that turns the rotor by more than this, degrees, has left its well. */
 const LEFT = 20;
+/** Degrees from a well within which another conformer of the other rotors still stands on its side of the barrier. */
+const BASIN = 30;
 /** Overlap with the turn of the rotor below which a saddle is another bond's. */
 const TAKES_PART = 0.1;
 /** Two minima whose rotor stands within this, degrees, are at one angle. */
@@ -539,9 +541,30 @@ function* provedBarrier(
     );
   const link = yield* linkAt(work, found);
   const way: Link[] | null = link && beside.length > 0 ? yield* wayOver(work, link, beside, wells) : null;
-  const point = link ? ofWay(work, of, candidate, way ?? [link], way !== null, wells) : unproved(work, of, candidate, found);
-  if (!way) say(work, 'stationary/barrier', `the barrier at ${candidate.angle.toFixed(1)} degrees ${inWords(point)}`);
+  const assumed = link !== null && way === null && crossesOver(link, beside);
+  const point = link ? ofWay(work, of, candidate, way ?? [link], way !== null || assumed, wells) : unproved(work, of, candidate, found);
+  if (assumed) sayAssumed(work, candidate, point);
+  else if (!way) say(work, 'stationary/barrier', `the barrier at ${candidate.angle.toFixed(1)} degrees ${inWords(point)}`);
   return point;
+}
+
+/**
+ * Whether a saddle of this rotor leads from one well's side to the other's, though its paths end in other conformers there. That these and the wells
+ * interconvert faster than the rotor turns is then an assumption, which is told.
+ */
+function crossesOver({ bottoms: [p, q], overlap }: Link, beside: readonly ProvedPoint[]): boolean {
+  if (overlap < TAKES_PART || beside.length === 0 || beside[0] === beside[1]) return false;
+  const near = (bottom: Bottom, well: ProvedPoint): boolean => Math.abs(wrapDegrees(bottom.angle - well.angle)) < BASIN;
+  return (near(p, beside[0]) && near(q, beside[1])) || (near(q, beside[0]) && near(p, beside[1]));
+}
+
+function sayAssumed(work: Proof, { angle }: Candidate, point: ProvedPoint): void {
+  const ends = (point.ends ?? []).map((end) => end.angle.toFixed(1)).join(' and ');
+  say(
+    work,
+    'stationary/other-conformers',
+    `the saddle taken for the maximum at ${angle.toFixed(1)} degrees joins other conformers of the wells beside it, at ${ends} degrees; that these interconvert with the wells faster than the rotor turns is assumed, not proved`,
+  );
 }
 
 /** The highest saddle of a way, as the point that stands for it. */
@@ -631,6 +654,7 @@ function* provedCrossing(
   ].flatMap((start) => (start ? [start] : []));
 
   const joined: Link[][] = [];
+  const crossing: Link[] = [];
   const others: ProvedPoint[] = [];
   if (beside.length > 0 && beside[0] !== beside[1]) {
     // the way there and the way back climb from different sides
@@ -640,11 +664,12 @@ function* provedCrossing(
     work.limit = work.evaluations + MOST_EVALUATIONS;
   }
   for (const { x, follow } of starts) {
-    if (others.length > 0 && work.evaluations > work.limit) break;
+    if (others.length + crossing.length > 0 && work.evaluations > work.limit) break;
     const structure = yield* refined(work, x, 1, follow ? [follow] : []);
     const link = yield* linkAt(work, structure);
     const way: Link[] | null = link && beside.length > 0 ? yield* wayOver(work, link, beside, wells) : null;
     if (way) joined.push(way);
+    else if (link && crossesOver(link, beside)) crossing.push(link);
     else others.push(link ? ofWay(work, of, candidate, [link], false, wells) : unproved(work, of, candidate, structure));
   }
   if (joined.length > 0) {
@@ -657,6 +682,12 @@ function* provedCrossing(
       true,
       wells,
     );
+  }
+  if (crossing.length > 0) {
+    const lowest = crossing.reduce((p, q) => (q.structure.energy < p.structure.energy ? q : p));
+    const point = ofWay(work, of, candidate, [lowest], true, wells);
+    sayAssumed(work, candidate, point);
+    return point;
   }
   const best =
     others.find(({ verdict }) => verdict === 'other saddle') ??
