@@ -78,7 +78,8 @@ export async function torsionProfile(
   options: TorsionProfileOptions = {},
 ): Promise<ProfileDocument> {
   const { conformers = 8, starts: given = [], seed = 1, unit = 'kcal/mol', rigid = false, notes = [], signal, range } = options;
-  const molecule = typeof input === 'string' ? moleculeFromSmiles(input) : input;
+  // atoms are counted as the input writes them, so a nameless molecule goes by its input and not by its canonical SMILES
+  const molecule = typeof input === 'string' ? { ...moleculeFromSmiles(input), name: input } : input;
   const torsion = checkTorsion(molecule, atoms, { rings: range !== undefined });
   const rotor = rotorOfTorsion(molecule, torsion);
   const period = options.periodic && !rigid && rotor.periodicity < 360 ? rotor.periodicity : undefined;

@@ -102,9 +102,9 @@ function piecesAfter(points: readonly CurvePoint[], n: number, open: boolean): C
   const width = widthAfter(points, n);
   if (!left.breakAfter) return [{ point: n, coefficients: hermite(left, right, width), from: 0, to: 1, side: 'both' }];
 
-  const l = hermite(left, left.beyond ?? alongside(right, left, right.before) ?? continued(points, n, width, 1, open), width);
+  const l = hermite(left, left.beyond ?? alongside(right, left, right.before, width) ?? continued(points, n, width, 1, open), width);
   const r = hermite(
-    right.before ?? alongside(left, right, left.beyond) ?? continued(points, (n + 1) % count, width, -1, open),
+    right.before ?? alongside(left, right, left.beyond, width) ?? continued(points, (n + 1) % count, width, -1, open),
     right,
     width,
   );
@@ -122,10 +122,11 @@ const CLOSE = 0.2;
  * Where the branch of `there` would be at the point `here`, given the branch of `here` at `there`: the two are taken to run alongside each other when
  * they are close. It is not below `here`, which is on the lower one. Undefined when the branch of `here` is unknown or far.
  */
-function alongside(here: BranchEnd, there: BranchEnd, hereAtThere: BranchEnd | null): BranchEnd | undefined {
+function alongside(here: BranchEnd, there: BranchEnd, hereAtThere: BranchEnd | null, width: number): BranchEnd | undefined {
   if (!hereAtThere) return undefined;
   const gap = there.energy - hereAtThere.energy;
-  if (Math.abs(gap) > CLOSE) return undefined;
+  // branches of different slopes cross and part
+  if (Math.abs(gap) + Math.abs(there.torque - hereAtThere.torque) * width > CLOSE) return undefined;
   return { energy: here.energy + Math.max(0, gap), torque: here.torque + there.torque - hereAtThere.torque };
 }
 

@@ -43,6 +43,8 @@ export async function eachRecord(
       report(placed);
       failed(placed, index, record instanceof TordialError ? '' : record.molecule.name);
       failures++;
+      // whoever interrupts means the rest of the list too
+      if (error.code === 'usage/interrupted') return 1;
       if (exitCodeOf(error) === 2) misfits++;
     }
     index++;

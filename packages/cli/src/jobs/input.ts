@@ -12,8 +12,17 @@ const FORMAT = /\.(smi|smiles|mol|sdf|sd|xyz)(\.gz)?$/i;
 /** Records of a SMILES, a file or standard input. Throws `file/missing` and `file/format` before the first record. */
 export async function* readRecords(argument: string, limits: Partial<Limits>): AsyncGenerator<InputRecord> {
   if (argument === '-') return yield* fromText(chunksOf(process.stdin), undefined, limits);
-  if (existsSync(argument) && statSync(argument).isFile()) {
+  // a folder that bears the name of a molecule does not stand in the way of its SMILES
+  if (existsSync(argument) && (statSync(argument).isFile() || /[./\\]/.test(argument))) {
     const format = FORMAT.exec(argument)?.[1].toLowerCase();
+    if (format === undefined || !statSync(argument).isFile())
+      throw new TordialError(
+        'file/format',
+        `${argument} is no file that can be read: its name must end in .smi, .mol or .sdf (or in these and .gz)`,
+        {
+          file: argument,
+        },
+      );
     const stream = createReadStream(argument);
     const unpacked = argument.endsWith('.gz') ? stream.pipe(createGunzip()) : stream;
     stream.on('error', (error) => unpacked.destroy(error));

@@ -11,6 +11,7 @@ import { torsionProfile } from '../torsion-profile.js';
 import { eachRecord, tell } from './each-record.js';
 import { readEngineConfig } from './engine-file.js';
 import { readFrames } from './input.js';
+import { interruptible } from './interruptible.js';
 import { prepareFolder, writeFiles } from './output.js';
 import { overridesOf, variantOf } from './potential.js';
 import { profileFiles } from './profile-files.js';
@@ -34,21 +35,24 @@ export async function scanProfiles(argument: string, flags: ProfileFlags): Promi
 
   // each profile gets a folder of its own as soon as there is more than one
   const folders = new Set<string>();
-  return eachRecord(argument, flags, async (record, { index, alone, label }) => {
+  return eachRecord(argument, flags, async (read, { index, alone, label }) => {
+    // a nameless molecule goes by its input, whose order counts its atoms
+    const record = read.molecule.name === '' ? { ...read, molecule: { ...read.molecule, name: label } } : read;
     const torsions = torsionsOf(record.molecule, flags);
-    const home = alone ? [] : [folderName(record.molecule, index, folders)];
+    const home = alone ? [] : [folderName(read.molecule, index, folders)];
     for (const torsion of torsions) {
-      const { document, analysis } = await completed(
-        await scan(record, torsion, flags, config, `${label} ${torsion[1]}-${torsion[2]}`),
-        flags,
-      );
+      const name = `${label} ${torsion[1]}-${torsion[2]}`;
+      const { document, analysis } = await completed(await scan(record, torsion, flags, config, name), flags, name);
       tell(document.notes, label);
       if (flags.json) process.stdout.write(`${JSON.stringify(document)}\n`);
-      if (!flags.output) continue;
-      const folder = join(flags.output, ...home, flags.all ? `rotor-${torsion[1]}-${torsion[2]}` : '');
-      prepareFolder(folder);
-      writeFiles(folder, profileFiles(record.molecule, document));
-      process.stderr.write(`${profileSummary(document, analysis)}written to ${folder}\n`);
+      if (flags.output) {
+        const folder = join(flags.output, ...home, flags.all ? `rotor-${torsion[1]}-${torsion[2]}` : '');
+        prepareFolder(folder);
+        writeFiles(folder, profileFiles(record.molecule, document));
+        process.stderr.write(`${profileSummary(document, analysis)}written to ${folder}\n`);
+      }
+      const interruption = document.notes.find(({ code }) => code === 'usage/interrupted');
+      if (interruption) throw new TordialError(interruption.code, interruption.message);
     }
   });
 }
@@ -57,6 +61,7 @@ export async function scanProfiles(argument: string, flags: ProfileFlags): Promi
 async function completed(
   scanned: ProfileDocument,
   flags: ProfileFlags,
+  label: string,
 ): Promise<{ document: ProfileDocument; analysis: DocumentAnalysis | null }> {
   const notes: Note[] = [];
   const attempt = async <T>(work: () => T | Promise<T>): Promise<T | null> => {
@@ -70,7 +75,10 @@ async function completed(
   };
   // a second fragment wanders on a surface too flat for its minima to be told apart, and a rate of rotation means nothing beside it
   const provable = !flags.rigid && !flags.engine && !isOpen(scanned) && scanned.molecule.fragments === 1;
-  const proved = flags.prove && provable ? await attempt(() => provedPoints(scanned)) : null;
+  const shown = progress(`${label} proof`);
+  const prove = (): Promise<ProfileDocument> =>
+    interruptible((signal) => provedPoints(scanned, { signal, onProgress: (done, total) => shown.update(done, total) }));
+  const proved = flags.prove && provable ? await attempt(prove).finally(() => shown.stop()) : null;
   const document = proved ?? scanned;
   // populations and rates need the full turn
   const analysis = isOpen(document) ? null : await attempt(() => analyseDocument(document));
@@ -88,10 +96,7 @@ async function scan(
   const { overrides, notes } = overridesOf(molecule, flags);
   const given = record.coordinates ? [record.coordinates] : [];
   const shown = progress(label);
-  const stop = new AbortController();
-  const interrupt = (): void => stop.abort(new TordialError('usage/interrupted', 'interrupted; what was finished before is written'));
-  process.once('SIGINT', interrupt);
-  try {
+  return interruptible(async (signal) => {
     const profile = await torsionProfile(molecule, torsion, {
       forceField: variantOf(flags),
       dielectric: flags.dielectric,
@@ -108,21 +113,16 @@ async function scan(
       notes: [...record.notes, ...notes],
       torsionOverrides: overrides,
       onProgress: ({ done, total }) => shown.update(done, total),
-      signal: stop.signal,
+      signal,
     });
     if (!config) return profile;
-    const engine = openEngine(molecule, config, stop.signal);
+    const engine = openEngine(molecule, config, signal);
     return await engineProfile(profile, engine, config, {
       singlePoints: flags.singlePoints,
       onProgress: ({ done, total }) => shown.update(done, total),
-      signal: stop.signal,
+      signal,
     });
-  } finally {
-    // an engine that still works on other angles when one has failed is called off
-    stop.abort(new TordialError('usage/interrupted', 'another angle has failed'));
-    process.removeListener('SIGINT', interrupt);
-    shown.stop();
-  }
+  }).finally(() => shown.stop());
 }
 
 function torsionsOf(molecule: Molecule, flags: ProfileFlags): Torsion[] {

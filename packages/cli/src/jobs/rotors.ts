@@ -29,7 +29,7 @@ export function listRotors(argument: string, flags: RotorsFlags): Promise<number
       process.stdout.write(`${JSON.stringify(line)}\n`);
       return;
     }
-    const heading = `${molecule.name || canonicalSmiles(molecule)}: ${rotors.length === 0 ? 'no bond that turns' : `${rotors.length} rotor${rotors.length === 1 ? '' : 's'}`}\n`;
+    const heading = `${label}: ${rotors.length === 0 ? 'no bond that turns' : `${rotors.length} rotor${rotors.length === 1 ? '' : 's'}`}\n`;
     const rows = rotors.map(({ axis, torsion, kind, symmetryNumbers, periodicity, equivalenceClass }) => [
       axis.join('-'),
       torsion.join(','),
