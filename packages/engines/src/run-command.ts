@@ -1,5 +1,8 @@
 /** Runs a program by its argument list, without a shell, feeds it text and collects what it prints. */
 import { spawn } from 'node:child_process';
+import { existsSync, mkdtempSync, rmSync } from 'node:fs';
+import { tmpdir } from 'node:os';
+import { resolve as absolute, join } from 'node:path';
 import { TordialError } from '@tordial/geometry';
 
 export interface CommandOutcome {
@@ -16,10 +19,23 @@ const LONGEST_ANSWER = 64 * 1024 * 1024;
  * it takes longer than `timeout` seconds (it is killed, its children with it), `engine/answer` when it prints without end.
  */
 export function runCommand(command: readonly string[], input: string, timeout: number, signal?: AbortSignal): Promise<CommandOutcome> {
-  const [program, ...args] = command;
+  // programs leave files where they run: each run has a folder of its own, and words that name files here still name them there
+  const [program, ...args] = command.map((word) => (existsSync(word) ? absolute(word) : word));
+  const folder = mkdtempSync(join(tmpdir(), 'tordial-run-'));
+  return run(program, args, folder, input, timeout, signal).finally(() => rmSync(folder, { recursive: true, force: true, maxRetries: 3 }));
+}
+
+function run(
+  program: string,
+  args: readonly string[],
+  folder: string,
+  input: string,
+  timeout: number,
+  signal: AbortSignal | undefined,
+): Promise<CommandOutcome> {
   return new Promise((resolve, reject) => {
     // a group of its own, so that ending it ends what it started
-    const child = spawn(program, args, { detached: process.platform !== 'win32', stdio: ['pipe', 'pipe', 'pipe'] });
+    const child = spawn(program, args, { cwd: folder, detached: process.platform !== 'win32', stdio: ['pipe', 'pipe', 'pipe'] });
     let stdout = '';
     let stderr = '';
     const kill = (): void => {
