@@ -15,6 +15,8 @@ import type { ProfileDocument } from '@tordial/scan';
 import { hessiansOfWells } from './proved-points.js';
 
 export interface DocumentAnalysis {
+  /** Of every energy in the analysis, whatever the unit of the profile. */
+  readonly unit: 'kcal/mol';
   /** From electronic energies: of the proved saddles where they are known, of the profile elsewhere. */
   readonly electronic: ProfileAnalysis;
   /** From free energies (rigid rotor, harmonic oscillators, 1 bar) with Wigner tunnelling; null where a well was not proved. */
@@ -45,7 +47,7 @@ export function analyseDocument(document: ProfileDocument, options: DocumentAnal
     if (options.hinderedTorsion)
       throw new TordialError('proof/points', 'a hindered torsion in the free energies needs proved points: add --prove');
     const electronic = analyseProfile(document, options);
-    return { electronic, freeEnergy: null, wells: null, ...rotorOf(document, options), notes: [] };
+    return { unit: 'kcal/mol', electronic, freeEnergy: null, wells: null, ...rotorOf(document, options), notes: [] };
   }
   const factor = kcalPer(document.unit);
   const hessians = options.hinderedTorsion ? hessiansOfWells(document) : null;
@@ -64,6 +66,7 @@ export function analyseDocument(document: ProfileDocument, options: DocumentAnal
   );
   const electronic = analyseProfile(document, { ...options, saddles, saddleCounts });
   return {
+    unit: 'kcal/mol',
     electronic,
     freeEnergy: freeEnergies ? analyseProfile(document, { ...options, saddles, saddleCounts, freeEnergies, transmission }) : null,
     wells: wellThermodynamics(document, options.temperatures ?? [298.15]),

@@ -91,7 +91,10 @@ export const profileSchema = z.object({
     }),
   ),
   proved: z.array(provedPoint).optional(),
-  analysis: z.record(z.string(), z.unknown()).optional().describe('what followed from the profile when it was written'),
+  analysis: z
+    .record(z.string(), z.unknown())
+    .optional()
+    .describe('what followed from the profile when it was written; energies in its own unit, kcal/mol'),
   settings: z.looseObject({
     kind: z.enum(['relaxed', 'rigid']),
     step: z.number().positive(),

@@ -29,9 +29,7 @@ export async function analyseFile(path: string, flags: AnalyseFlags): Promise<nu
   });
   if (flags.json) {
     const { molecule, rotor, provenance } = document;
-    process.stdout.write(
-      `${JSON.stringify({ molecule: molecule.smiles, rotor: rotor.torsion, unit: 'kcal/mol', ...result, provenance })}\n`,
-    );
+    process.stdout.write(`${JSON.stringify({ molecule: molecule.smiles, rotor: rotor.torsion, ...result, provenance })}\n`);
     return 0;
   }
   const { molecule, rotor, provenance } = document;
