@@ -157,6 +157,8 @@ describe('analysis of an anti/gauche profile', () => {
     const { cautions, barrierError } = analyseProfile(anilide);
     expect(cautions.map((note) => note.code).slice(4)).toEqual(['caution/fragments', 'caution/anilide', 'caution/unproved']);
     expect(barrierError.error).toBe(3);
+    const doubleBond = { ...document, rotor: { ...document.rotor, kind: 'double bond' } };
+    expect(analyseProfile(doubleBond).cautions.map((note) => note.code)).toContain('caution/double-bond');
     const scale = ({ relativeEnergy, energy, ...rest }: (typeof document.points)[number]) => ({
       ...rest,
       relativeEnergy: relativeEnergy * 4.184,

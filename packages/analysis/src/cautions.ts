@@ -59,6 +59,13 @@ export function crossingCaution(angles: readonly number[]): Note {
   };
 }
 
+/** Of a double bond that was turned because its atoms were named. */
+export const DOUBLE_BOND_CAUTION: Note = {
+  code: 'caution/double-bond',
+  message:
+    'Turning a double bond breaks its pi bond, which a force field does not describe: barriers are far too low, and so are half-lives; take none from here.',
+};
+
 /** Where a smooth maximum of the profile was not proved to be a saddle between its wells. */
 export function refutedCaution(angles: readonly number[]): Note {
   return {
