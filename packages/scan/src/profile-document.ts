@@ -3,7 +3,7 @@ import { type Coordinates, elementSymbol, type Molecule, type Note, TordialError
 import type { Profile } from './profile.js';
 import type { BranchEnd } from './profile-curve.js';
 import type { Motion } from './stationary/motion.js';
-import type { PathEnd, ProvedPoint, Verdict } from './stationary/prove.js';
+import type { PathEnd, ProvedPoint, Verdict } from './stationary/proof-task.js';
 
 export const PROFILE_SCHEMA = 'tordial/profile/1';
 
