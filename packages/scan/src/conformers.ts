@@ -21,9 +21,10 @@ import {
   TordialError,
 } from '@tordial/geometry';
 import { drive } from './drive.js';
-import { checkSizes, minimise, type Preconditioner, type Relaxed } from './minimise.js';
+import { checkSizes, minimise, type Relaxed } from './minimise.js';
 import { modelHessian } from './model-hessian.js';
 import type { Calculation, Potential } from './potential.js';
+import type { Preconditioner } from './preconditioner.js';
 import { findRotors } from './rotors/index.js';
 import { movableRotors, torsionMove } from './torsion-moves.js';
 

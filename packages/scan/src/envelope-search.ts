@@ -6,10 +6,11 @@
 import { type Coordinates, degrees, radians, TordialError, wrapDegrees } from '@tordial/geometry';
 import { type Branches, branches, type Direction, enter, type HeldMinimum, lead, lowest, next } from './branches.js';
 import { intoRotorFrame, rotorAngle, turnTo } from './driven-rotor.js';
-import { MEMORY, type Preconditioner } from './minimise.js';
+import { MEMORY } from './minimise.js';
 import { modelHessian } from './model-hessian.js';
 import { invertedNitrogens } from './nitrogen-inversion.js';
 import type { Calculation } from './potential.js';
+import type { Preconditioner } from './preconditioner.js';
 import { predictedStart } from './predicted-start.js';
 import { relaxationAt } from './relax-at.js';
 import type { RingGuard } from './ring-torsion.js';

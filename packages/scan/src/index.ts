@@ -1,9 +1,10 @@
 export * from './conformers.js';
 export * from './drive.js';
 export { type DrivenRotor, drivenRotor } from './driven-rotor.js';
-export { type Constraint, type MinimiseOptions, minimise, type Preconditioner, type Relaxed, relax } from './minimise.js';
+export { type Constraint, type MinimiseOptions, minimise, type Relaxed, relax } from './minimise.js';
 export { modelHessian } from './model-hessian.js';
 export * from './potential.js';
+export type { Preconditioner } from './preconditioner.js';
 export type { Profile, ScanPoint } from './profile.js';
 export {
   type BranchEnd,

@@ -11,15 +11,8 @@ import { type Coordinates, type Molecule, TordialError } from '@tordial/geometry
 import { drive } from './drive.js';
 import { modelHessian } from './model-hessian.js';
 import type { Calculation, Potential } from './potential.js';
+import type { Preconditioner } from './preconditioner.js';
 import { forget, remember, type SecantMemory, searchDirection, secantMemory } from './secant-memory.js';
-
-/** A symmetric positive definite approximation P of the Hessian. */
-export interface Preconditioner {
-  /** Writes P^-1 v into `out`; all of the length of the coordinates. */
-  solve(v: Float64Array, out: Float64Array): void;
-  /** Adapts P to the geometry x if that has moved far from where P was made; says whether P changed. */
-  follow?(x: Coordinates): boolean;
-}
 
 /** A set of geometries that the minimiser may not leave. */
 export interface Constraint {

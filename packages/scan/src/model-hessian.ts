@@ -15,8 +15,8 @@
 import { type Coordinates, type Molecule, torsionGradient } from '@tordial/geometry';
 import { type BlockPattern, blockAt, blockMatrix, blockPattern, factorise, solveFactorised } from './block-cholesky.js';
 import { contactStiffness, contactsAt } from './contact-stiffness.js';
-import type { Preconditioner } from './minimise.js';
 import { type ModelCoordinates, modelCoordinates } from './model-coordinates.js';
+import type { Preconditioner } from './preconditioner.js';
 import type { Torsion } from './rotors/defining-torsion.js';
 
 const BOHR = 0.529177210903;

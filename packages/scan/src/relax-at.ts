@@ -2,9 +2,10 @@
 import { type Coordinates, degrees, type Molecule, radians, TordialError, wrapRadians } from '@tordial/geometry';
 import { drive } from './drive.js';
 import { checkBent, type DrivenRotor, drivenRotor, heldAt, rigidTorque, rotorAngle } from './driven-rotor.js';
-import { checkSizes, type MinimiseOptions, minimise, type Preconditioner, type Relaxed } from './minimise.js';
+import { checkSizes, type MinimiseOptions, minimise, type Relaxed } from './minimise.js';
 import { modelHessian } from './model-hessian.js';
 import type { Calculation, Potential } from './potential.js';
+import type { Preconditioner } from './preconditioner.js';
 import { heldInRing } from './ring-torsion.js';
 import type { Torsion } from './rotors/defining-torsion.js';
 

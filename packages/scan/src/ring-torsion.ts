@@ -17,7 +17,8 @@ import {
   wrapRadians,
 } from '@tordial/geometry';
 import { type DrivenRotor, rotorAngle } from './driven-rotor.js';
-import { type Constraint, largest, type Preconditioner } from './minimise.js';
+import { type Constraint, largest } from './minimise.js';
+import type { Preconditioner } from './preconditioner.js';
 
 /** Radian: the angle counts as held within this. */
 const HELD = 1e-10;

@@ -2,8 +2,9 @@
 
 import { type Coordinates, degrees, leastRmsd, type Molecule, type Note, torsion as torsionAngle, wrapDegrees } from '@tordial/geometry';
 import type { DrivenRotor } from '../driven-rotor.js';
-import { minimise, type Preconditioner } from '../minimise.js';
+import { minimise } from '../minimise.js';
 import type { Calculation } from '../potential.js';
+import type { Preconditioner } from '../preconditioner.js';
 import type { Torsion } from '../rotors/defining-torsion.js';
 import type { Motion } from './motion.js';
 import { type StationaryStructure, stationaryPoint } from './saddle.js';
