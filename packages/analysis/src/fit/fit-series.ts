@@ -115,7 +115,7 @@ function fixedPhases(
   const places = termPlaces(groups, order);
   const target = places.map(({ group, n }) => {
     const { v, phase } = targetTerm(options, group, n);
-    return Math.abs(((phase - usualPhase(n)) % 360) + 0) === 180 ? -v : v * Math.cos(((phase - usualPhase(n)) * Math.PI) / 180);
+    return v * Math.cos(((phase - usualPhase(n)) * Math.PI) / 180);
   });
   const solution = solveLinear({
     ...observations(points, order, 'fixed'),
