@@ -4,6 +4,7 @@
  * h, k, N_A, c and the calorie are exact (SI brochure, 9th edition 2019; thermochemical calorie 4.184 J); the atomic mass
  * constant is CODATA 2018 (Tiesinga, Mohr, Newell and Taylor, Rev. Mod. Phys. 93, 025010 (2021)).
  */
+import { perKcal } from '@tordial/scan';
 
 /** Planck constant, J s. */
 export const PLANCK = 6.62607015e-34;
@@ -17,7 +18,7 @@ export const SPEED_OF_LIGHT = 299792458;
 export const ATOMIC_MASS = 1.6605390666e-27;
 
 /** Joule in a thermochemical calorie, and so kJ in a kcal. */
-export const JOULE_PER_CALORIE = 4.184;
+export const JOULE_PER_CALORIE = perKcal('kJ/mol');
 /** Molar gas constant, J/mol/K. */
 export const GAS_CONSTANT = BOLTZMANN * AVOGADRO;
 /** Molar gas constant, kcal/mol/K. */

@@ -12,8 +12,10 @@ import {
   type ProfileDocument,
   type ProfilePoint,
   type ProfileStationaryPoint,
+  perKcal,
   profileCurve,
   relaxationAt,
+  rounded,
 } from '@tordial/scan';
 import { VERSION } from './version.js';
 
@@ -102,7 +104,7 @@ export async function engineProfile(
     }),
   );
 
-  const factor = profile.unit === 'kJ/mol' ? 4.184 : 1;
+  const factor = perKcal(profile.unit);
   const lowest = Math.min(...joined.map(({ energy }) => energy), ...stationaryPoints.map(({ energy }) => energy));
   const common = (point: EnginePoint) => ({
     angle: rounded(point.angle),
@@ -216,9 +218,4 @@ function slopeAtFirst(x: readonly number[], y: readonly number[]): number {
     slope += y[j] * weight;
   }
   return slope;
-}
-
-/** To six decimals, without a negative zero. */
-function rounded(value: number): number {
-  return Math.round(value * 1e6) / 1e6 + 0;
 }

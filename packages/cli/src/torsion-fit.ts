@@ -27,7 +27,7 @@ import {
 } from '@tordial/analysis';
 import { type Mmff94, mmff94, type TorsionSeries, type TorsionTerm } from '@tordial/forcefield';
 import { type Coordinates, type Molecule, type Note, radians, TordialError, torsion as torsionAngle, wrapDegrees } from '@tordial/geometry';
-import { drive, drivenRotor, type EnergyUnit, modelHessian, type ProfileDocument, relaxationAt } from '@tordial/scan';
+import { drive, drivenRotor, type EnergyUnit, modelHessian, type ProfileDocument, perKcal, relaxationAt } from '@tordial/scan';
 import { allTorsionTerms, typeKey } from './torsion-overrides.js';
 import { VERSION } from './version.js';
 
@@ -401,7 +401,7 @@ function assemble({
   selfConsistency,
 }: Parts): FitDocument {
   const { unit } = settings;
-  const factor = unit === 'kJ/mol' ? 4.184 : 1;
+  const factor = perKcal(unit);
   const compared = sets.map(({ reference, before, after, torsions }, n): DocumentFitSet => {
     const { profile } = inputs[n];
     const lowest = Math.min(...reference.points.map(({ energy }) => energy));

@@ -1,13 +1,13 @@
 /** The result of a one-dimensional scan as a plain JSON document; the JSON Schema stands in docs/schemas/profile-1.json. */
 import { type Coordinates, elementSymbol, type Molecule, type Note, TordialError } from '@tordial/geometry';
+import { type EnergyUnit, perKcal } from './energy-unit.js';
 import type { Profile } from './profile.js';
 import type { BranchEnd } from './profile-curve.js';
+import { rounded } from './rounded.js';
 import type { Motion } from './stationary/motion.js';
 import type { PathEnd, ProvedPoint, Verdict } from './stationary/proof-task.js';
 
 export const PROFILE_SCHEMA = 'tordial/profile/1';
-
-export type EnergyUnit = 'kcal/mol' | 'kJ/mol';
 
 /** Input atoms in their order, enough to draw and to rebuild the molecule without any other file. */
 export interface DocumentMolecule {
@@ -164,13 +164,10 @@ export interface DocumentDetails {
   readonly provenance: ProfileDocument['provenance'];
 }
 
-/** Exact: 1 cal = 4.184 J (thermochemical calorie). */
-const KJ_PER_KCAL = 4.184;
-
 /** The document of a scan. Energies, torques, angles and coordinates are rounded to 1e-6, below what a scan resolves. */
 export function profileDocument(profile: Profile, details: DocumentDetails): ProfileDocument {
   const { molecule, unit } = details;
-  const factor = unit === 'kJ/mol' ? KJ_PER_KCAL : 1;
+  const factor = perKcal(unit);
   const { points, stationaryPoints } = profile;
   const lowest = Math.min(...points.map(({ energy }) => energy), ...stationaryPoints.map(({ energy }) => energy));
   const absolute = (energy: number): number => rounded(energy * factor);
@@ -237,7 +234,7 @@ export function withProvedPoints(
 ): ProfileDocument {
   if (points.length !== document.stationaryPoints.length || frequencies.length !== points.length)
     throw new TordialError('proof/points', `${points.length} proved points for ${document.stationaryPoints.length} stationary points`);
-  const factor = document.unit === 'kJ/mol' ? KJ_PER_KCAL : 1;
+  const factor = perKcal(document.unit);
   const lowest = Math.min(...points.map(({ energy }) => energy));
   return {
     ...document,
@@ -265,9 +262,4 @@ function endOf({ well, angle, energy }: PathEnd, factor: number): PathEnd {
 /** Whether a profile ends at its first and last point instead of going round. */
 export function isOpen({ settings }: Pick<ProfileDocument, 'settings'>): boolean {
   return settings.range !== undefined;
-}
-
-/** To six decimals, without a negative zero. */
-function rounded(value: number): number {
-  return Math.round(value * 1e6) / 1e6 + 0;
 }

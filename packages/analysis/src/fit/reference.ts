@@ -41,7 +41,12 @@ export const ENERGY_UNITS = ['kcal/mol', 'kJ/mol', 'hartree', 'eV'] as const;
 export type ReferenceUnit = (typeof ENERGY_UNITS)[number];
 
 /** kcal/mol in one of each unit: CODATA 2018 (E. Tiesinga et al., Rev. Mod. Phys. 93, 025010 (2021)); thermochemical calorie. */
-const KCAL: Readonly<Record<ReferenceUnit, number>> = { 'kcal/mol': 1, 'kJ/mol': 1 / 4.184, hartree: 627.5094740631, eV: 23.060547830619 };
+const KCAL: Readonly<Record<ReferenceUnit, number>> = {
+  'kcal/mol': 1,
+  'kJ/mol': kcalPer('kJ/mol'),
+  hartree: 627.5094740631,
+  eV: 23.060547830619,
+};
 
 const UNIT_PATTERN = /kcal\s*(?:\/|\s+per\s+)\s*mol|kJ\s*(?:\/|\s+per\s+)\s*mol|hartree|\bE_?h\b|\ba\.?u\.?\b|\beV\b/i;
 

@@ -7,9 +7,8 @@
  * k / n / phase form: sum k_n (1 + cos(n phi - delta_n)) with k_n = V_n / 2 at least 0.
  */
 import { TordialError } from '@tordial/geometry';
+import { perKcal } from '@tordial/scan';
 import { type SeriesTerm, usualTerms, withPositiveAmplitude } from './series-term.js';
-
-const KJ_PER_KCAL = 4.184;
 
 /** Coefficients of cos^k in the Chebyshev polynomials T_0 ... T_6, where T_n(cos phi) = cos n phi. */
 const CHEBYSHEV = [[1], [0, 1], [-1, 0, 2], [0, -3, 0, 4], [1, 0, -8, 0, 8], [0, 5, 0, -20, 0, 16], [-1, 0, 18, 0, -48, 0, 32]];
@@ -68,7 +67,7 @@ const CONVENTION = 'E = sum C_k cos^k(psi), psi = phi - 180 degrees (0 at trans)
 
 /** All forms of a series (amplitudes in kcal/mol) in one unit. */
 export function seriesForms(terms: readonly SeriesTerm[], unit: 'kcal/mol' | 'kJ/mol'): SeriesForms {
-  const factor = unit === 'kJ/mol' ? KJ_PER_KCAL : 1;
+  const factor = perKcal(unit);
   const scaled = terms.map((term) => ({ ...term, v: term.v * factor }));
   const positive = scaled.map(withPositiveAmplitude);
   const usual = scaled.every(({ phase }) => phase === 0 || phase === 180);

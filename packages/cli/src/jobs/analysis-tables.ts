@@ -8,9 +8,8 @@ import {
   type WellThermodynamics,
 } from '@tordial/analysis';
 import { degrees } from '@tordial/geometry';
-import type { ProfileDocument, ProfileProvedPoint } from '@tordial/scan';
+import { type ProfileDocument, type ProfileProvedPoint, perKcal } from '@tordial/scan';
 import type { DocumentAnalysis } from '../profile-analysis.js';
-import { unitFactor } from './potential.js';
 import { shownAngle } from './shown-angle.js';
 import { table } from './table.js';
 
@@ -69,7 +68,7 @@ function rotamerTable({ rotamers, rows }: ProfileAnalysis, unit: Unit): string {
     rotamers.map(({ label, angle, energy }, i) => [
       label,
       shownAngle(angle),
-      (energy * unitFactor(unit)).toFixed(2),
+      (energy * perKcal(unit)).toFixed(2),
       ...[populations.byEnergy, populations.byProfile, ...(free ? [free] : [])].map((shares) => (100 * shares[i]).toFixed(1)),
       ...(related ? [relations[i]] : []),
     ]),
@@ -222,7 +221,7 @@ function shownSplitting(value: number): string {
 
 function barrierTable(document: ProfileDocument, { barriers, rotamers }: ProfileAnalysis, unit: Unit): string {
   const other = unit === 'kcal/mol' ? 'kJ/mol' : 'kcal/mol';
-  const shown = (energy: number, in_: Unit): string => (energy * unitFactor(in_)).toFixed(2);
+  const shown = (energy: number, in_: Unit): string => (energy * perKcal(in_)).toFixed(2);
   return table(
     ['barrier between', 'angle (deg)', 'profile', `height (${unit})`, `(${other})`, 'proof'],
     barriers.map(({ wells, angle, kind, energy, saddle, stationaryPoint }) => [
@@ -278,7 +277,7 @@ function processTable(processes: readonly AnalysedProcess[], temperature: number
           process.label,
           process.kind,
           barrier === null ? '' : barrier.toFixed(2),
-          barrier === null ? '' : (barrier * unitFactor('kJ/mol')).toFixed(1),
+          barrier === null ? '' : (barrier * perKcal('kJ/mol')).toFixed(1),
           forward ? forward.value.toExponential(2) : 'no rate',
           time ? timeInWords(time) : '',
           process.timeTo99Percent ? durationInWords(process.timeTo99Percent.value) : '',

@@ -11,11 +11,11 @@ import {
   writeSdf,
   writeXyz,
 } from '@tordial/geometry';
-import { conformers } from '@tordial/scan';
+import { conformers, perKcal } from '@tordial/scan';
 import type { BuildFlags } from '../commands/build.js';
 import { eachRecord, tell } from './each-record.js';
 import { prepareFile, writeWhole } from './output.js';
-import { potentialOf, unitFactor } from './potential.js';
+import { potentialOf } from './potential.js';
 
 interface Structure {
   readonly coordinates: Coordinates;
@@ -59,7 +59,7 @@ function structuresOf(molecule: Molecule, flags: BuildFlags): { structures: Stru
   }
   const potential = potentialOf(molecule, flags);
   const found = conformers(molecule, potential, { count: flags.conformers, seed: flags.seed });
-  const factor = unitFactor(flags.unit);
+  const factor = perKcal(flags.unit);
   const structures = found.conformers.map(({ coordinates, energy, relativeEnergy }) => ({
     coordinates,
     properties: new Map([

@@ -10,11 +10,11 @@ import {
   perceiveStereo,
   TordialError,
 } from '@tordial/geometry';
-import { keepsStereo, relax } from '@tordial/scan';
+import { keepsStereo, perKcal, relax, rounded } from '@tordial/scan';
 import type { EnergyFlags } from '../commands/energy.js';
 import { eachRecord, tell } from './each-record.js';
 import { readFrames } from './input.js';
-import { potentialOf, unitFactor } from './potential.js';
+import { potentialOf } from './potential.js';
 import { table } from './table.js';
 
 const TERMS = ['bondStretching', 'angleBending', 'stretchBend', 'outOfPlane', 'torsion', 'vanDerWaals', 'electrostatic'] as const;
@@ -43,7 +43,7 @@ interface Given extends Pick<MolecularRecord, 'molecule' | 'coordinates' | 'note
 
 export async function listEnergies(argument: string, flags: EnergyFlags): Promise<number> {
   const rows: string[][] = [];
-  const factor = unitFactor(flags.unit);
+  const factor = perKcal(flags.unit);
   const frames = flags.geometry === undefined ? null : readFrames(flags.geometry);
   const exitCode = await eachRecord(
     argument,
@@ -127,9 +127,4 @@ export async function listEnergies(argument: string, flags: EnergyFlags): Promis
       process.stdout.write(`${label}\n${table(['atom', 'type', 'number', 'charge (e)'], types)}`);
     }
   }
-}
-
-/** To 1e-6, without a negative zero. */
-function rounded(value: number): number {
-  return Math.round(value * 1e6) / 1e6 + 0;
 }

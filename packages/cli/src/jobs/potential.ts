@@ -21,8 +21,3 @@ export function potentialOf(molecule: Molecule, flags: PotentialFlags): Mmff94 {
 export function overridesOf(molecule: Molecule, { torsions }: PotentialFlags): ResolvedOverrides {
   return torsions === undefined ? { overrides: [], notes: [] } : torsionOverridesFor(readFrom(torsions, readFit), molecule);
 }
-
-/** From kcal/mol into the unit asked for (thermochemical calorie). */
-export function unitFactor(unit: 'kcal/mol' | 'kJ/mol'): number {
-  return unit === 'kJ/mol' ? 4.184 : 1;
-}

@@ -1,13 +1,13 @@
 /** `tordial strain`: what the angles of given geometries cost. */
 import { hydrogenBondCaution, type TorsionalStrain, torsionalStrain } from '@tordial/analysis';
 import { type Coordinates, geometriesFor, type MolecularRecord, type Note, TordialError } from '@tordial/geometry';
-import { findRotors, type ProfileDocument } from '@tordial/scan';
+import { findRotors, type ProfileDocument, perKcal } from '@tordial/scan';
 import type { StrainFlags } from '../commands/strain.js';
 import { torsionProfile } from '../torsion-profile.js';
 import { cautionLines } from './analysis-tables.js';
 import { eachRecord, tell } from './each-record.js';
 import { readFrames } from './input.js';
-import { unitFactor, variantOf } from './potential.js';
+import { variantOf } from './potential.js';
 import { progress } from './progress.js';
 import { shownAngle } from './shown-angle.js';
 import { table } from './table.js';
@@ -68,12 +68,12 @@ async function profilesOf({ molecule }: MolecularRecord, x: Coordinates, flags: 
 }
 
 function inUnit({ rotors, total }: TorsionalStrain, { unit }: StrainFlags, about: object): object {
-  const factor = unitFactor(unit);
+  const factor = perKcal(unit);
   return { ...about, unit, total: total * factor, rotors: rotors.map((rotor) => ({ ...rotor, energy: rotor.energy * factor })) };
 }
 
 function strainTable(label: string, { rotors, total }: TorsionalStrain, { unit }: StrainFlags): string {
-  const factor = unitFactor(unit);
+  const factor = perKcal(unit);
   const rows = rotors.map(({ torsion, kind, angle, energy }) => [torsion.join(','), kind, shownAngle(angle), (energy * factor).toFixed(2)]);
   return `${label}: torsional strain ${(total * factor).toFixed(2)} ${unit}\n${table(['torsion', 'kind', 'angle (deg)', `strain (${unit})`], rows)}`;
 }
