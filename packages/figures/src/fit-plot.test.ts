@@ -30,6 +30,25 @@ describe('fitPlot', () => {
     expect(pixels(svg, true).equals(pixels(svg, false))).toBe(!FONTS_INSTALLED);
   });
 
+  it('draws no curve over angles where nothing is known', () => {
+    const half = angles.flatMap((angle, n) => (angle >= 0 ? [n] : []));
+    const kept = (curve: FitFigure['after']) => ({ ...curve, energies: half.map((n) => curve.energies[n]) });
+    const { reference, before, after } = figure;
+    const svg = fitPlot({
+      ...figure,
+      angles: half.map((n) => angles[n]),
+      reference: kept(reference),
+      before: kept(before),
+      after: kept(after),
+    });
+    const paths = [...svg.matchAll(/<path d="([^"]*)"/g)].map(([, d]) =>
+      [...d.matchAll(/-?\d+(?:\.\d+)?/g)].map(([value]) => Number(value)),
+    );
+    expect(paths).toHaveLength(4);
+    // 0 degrees is the middle of the axis, between 66 and 774 px
+    for (const numbers of paths) expect(Math.min(...numbers.filter((_, k) => k % 2 === 0))).toBeCloseTo(420, 0);
+  });
+
   it('writes the deviations: the mean square of 1 - cos is 1.5, that of a shift its square', () => {
     const svg = fitPlot(figure);
     expect(svg).toContain('before (1.22)');

@@ -140,21 +140,34 @@ function rootMeanSquare(values: readonly number[]): number {
   return Math.sqrt(values.reduce((sum, value) => sum + value * value, 0) / values.length);
 }
 
-/** A smooth periodic curve through values whose slopes are not known: at each angle that of the parabola through it and its neighbours. */
+/** Degrees without a value above which nothing is drawn between two angles, if that is also well above the usual spacing. */
+const WIDEST = 45;
+
+/**
+ * A smooth curve through values whose slopes are not known: at each angle that of the parabola through it and its nearest neighbours. It goes round the
+ * turn but not across a stretch of angles where nothing is known.
+ */
 function smoothCurve(angles: readonly number[], values: readonly number[]): readonly (readonly CurveSegment[])[] {
   const count = angles.length;
+  const place = (n: number): number => (n + count) % count;
+  const ahead = angles.map((angle, n) => (((angles[place(n + 1)] - angle) % 360) + 360) % 360);
+  const usual = [...ahead].sort((p, q) => p - q)[Math.floor(count / 2)];
+  const gap = ahead.map((width) => width > WIDEST && width > 1.5 * usual);
+  const slope = (n: number): number => (values[place(n + 1)] - values[place(n)]) / ((ahead[place(n)] * Math.PI) / 180);
+  /** Slope at the point between two intervals, from the secants of both. */
+  const between = (p: number, q: number): number =>
+    (slope(p) * ahead[place(q)] + slope(q) * ahead[place(p)]) / (ahead[place(p)] + ahead[place(q)]);
+  /** Slope at the outer end of interval `end`, whose other neighbour is the interval `inner`. */
+  const outer = (end: number, inner: number): number => (gap[place(inner)] ? slope(end) : 2 * slope(end) - between(end, inner));
   const points = angles.map((angle, n) => {
-    const before = (n + count - 1) % count;
-    const after = (n + 1) % count;
-    const back = ((((angle - angles[before]) % 360) + 360) % 360) * (Math.PI / 180);
-    const ahead = ((((angles[after] - angle) % 360) + 360) % 360) * (Math.PI / 180);
-    const torque = ((values[after] - values[n]) * (back / ahead) + (values[n] - values[before]) * (ahead / back)) / (back + ahead);
-    return { ...FREE, angle, energy: values[n], relativeEnergy: values[n], torque };
+    const starts = gap[place(n - 1)];
+    const torque = starts ? (gap[n] ? 0 : outer(n, n + 1)) : gap[n] ? outer(n - 1, n - 2) : between(n - 1, n);
+    return { ...FREE, angle, energy: values[n], relativeEnergy: values[n], torque, breakAfter: gap[n] };
   });
   return curveParts(points).smooth;
 }
 
-const FREE = { converged: true, residual: null, breakAfter: false, beyond: null, before: null, coordinates: [] };
+const FREE = { converged: true, residual: null, beyond: null, before: null, coordinates: [] };
 
 function describe(
   { title, unit, angles, before, after }: FitFigure,
